@@ -11,3 +11,7 @@ export const add = (a: Vec3, b: Vec3): Vec3 => [a[0] + b[0], a[1] + b[1], a[2] +
 export const subtract = (a: Vec3, b: Vec3): Vec3 => [a[0] - b[0], a[1] - b[1], a[2] - b[2]];
 export const cross = (a: Vec3, b: Vec3): Vec3 => [a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]];
 export const apply = (m: Mat3, a: Vec3): Vec3 => [dot(m[0], a), dot(m[1], a), dot(m[2], a)];
+export const opposite = (a: Vec3): Vec3 => [-a[0], -a[1], -a[2]];
+
+/** A vector of length 1 along another, which must not be zero. */
+export const unitOf = (a: Vec3): Vec3 => scale(1 / norm(a), a);
