@@ -1,0 +1,110 @@
+import { type EventColumns } from '../relativity/events';
+import { searchCliques } from './clique-search';
+import { isSurelyCrowded, mostSets } from './crowding';
+import { type CoincidenceKernel, RowList } from './kernel';
+
+/** An event that is the earliest of more sets than are listed. */
+export interface Crowd {
+  /** Row of the event. */
+  readonly event: number;
+  /** Sites of the triggers that are near it and not before it, its own included. */
+  readonly sites: number;
+  /** Those triggers, itself included. */
+  readonly events: number;
+  /** At least so many sets begin with it. */
+  readonly setsAtLeast: number;
+}
+
+/** Who hears of what begins with an event. */
+export interface SetListener {
+  /** A set: the first `fold` of `rows`, ascending. The array is used again for the next set. */
+  set(rows: Int32Array, fold: number): void;
+  crowd(crowd: Crowd): void;
+}
+
+/** What limits the sets. */
+export interface SetLimits {
+  readonly minimumFold: number;
+  /** At least 1; an event that is the earliest of more sets than this is crowded, and none of them is listed. */
+  readonly limit: number;
+}
+
+/**
+ * Makes the function that finds all sets whose earliest trigger is a given one, in the order of their rows.
+ *
+ * Sets are handed over one event at a time, so memory holds at most `limit` of them, whatever the log. Crowding is judged from the
+ * event's own neighbours alone.
+ */
+export function setsFrom(
+  kernel: CoincidenceKernel,
+  events: EventColumns,
+  limits: SetLimits,
+): (event: number, listener: SetListener) => void {
+  const later = new RowList();
+  const earlier = new RowList();
+  const pair = new Int32Array(2);
+  const leastOthers = limits.minimumFold - 1;
+  const siteOf = (row: number): number => events.site[row] ?? 0;
+  const near = (a: number, b: number): boolean => kernel.near(a, b);
+  const perSite = new Int32Array(kernel.siteCount);
+
+  /** The common case of a quiet network: one neighbour, and a set unless an earlier trigger is near both. */
+  function fromOne(event: number, listener: SetListener): void {
+    if (leastOthers > 1) return;
+    const other = later.rows[0] ?? 0;
+    const earlierCount = kernel.earlierNear(event, earlier);
+    for (let k = 0; k < earlierCount; k++) if (kernel.near(earlier.rows[k] ?? 0, other)) return;
+    pair[0] = event;
+    pair[1] = other;
+    listener.set(pair, 2);
+  }
+
+  function crowdAt(event: number, laterCount: number): Crowd {
+    perSite[siteOf(event)] = 1;
+    const sites = perSite.reduce((sum, triggers) => sum + Math.sign(triggers), 0);
+    return { event, sites, events: laterCount + 1, setsAtLeast: limits.limit + 1 };
+  }
+
+  function fromMany(event: number, laterCount: number, listener: SetListener): void {
+    const earlierCount = kernel.earlierNear(event, earlier);
+    const laterRows = later.rows.subarray(0, laterCount);
+    const earlierRows = earlier.rows.subarray(0, earlierCount);
+    perSite.fill(0);
+    for (const row of laterRows) perSite[siteOf(row)] = (perSite[siteOf(row)] ?? 0) + 1;
+    const triggers = { rows: laterRows, siteOf, perSite };
+    if (mostSets(perSite) > limits.limit && earlierRows.every((row) => (perSite[siteOf(row)] ?? 0) > 0)) {
+      const sites = perSite.reduce((sum, count) => sum + Math.sign(count), 0);
+      if (sites >= leastOthers && isSurelyCrowded(triggers, near, limits.limit)) {
+        listener.crowd(crowdAt(event, laterCount));
+        return;
+      }
+    }
+    const sets: Int32Array[] = [];
+    const found = (others: Int32Array, length: number): void => {
+      const rows = new Int32Array(length + 1);
+      rows[0] = event;
+      rows.set(others.subarray(0, length), 1);
+      sets.push(rows.sort());
+    };
+    const graph = { later: laterRows, earlier: earlierRows, near, siteOf };
+    const count = searchCliques(graph, { leastOthers, limit: limits.limit, found });
+    if (count > limits.limit) listener.crowd(crowdAt(event, laterCount));
+    else for (const rows of sets.sort(compareRows)) listener.set(rows, rows.length);
+  }
+
+  return (event, listener) => {
+    const laterCount = kernel.laterNear(event, later);
+    if (laterCount === 1) fromOne(event, listener);
+    else if (laterCount > 1) fromMany(event, laterCount, listener);
+  };
+}
+
+/** Sets by their first differing row; a maximal set is never the beginning of another. */
+export function compareRows(a: Int32Array, b: Int32Array): number {
+  const length = Math.min(a.length, b.length);
+  for (let k = 0; k < length; k++) {
+    const apart = (a[k] ?? 0) - (b[k] ?? 0);
+    if (apart !== 0) return apart;
+  }
+  return a.length - b.length;
+}
