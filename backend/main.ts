@@ -1,0 +1,75 @@
+import { createServer, type Server } from 'node:http';
+import { type AddressInfo } from 'node:net';
+import { pino } from 'pino';
+import { makeApp } from './app';
+import { readConfig, type Config } from './config';
+import { closeDb, openDb, UnusableDatabase, type Db } from './db';
+import { ensureDeployment } from './deployment';
+import { frontendFolder } from './paths';
+import { VERSION } from './version';
+
+const HEADERS_TIMEOUT_MS = 10_000;
+const REQUEST_TIMEOUT_MS = 30_000;
+const FINISH_MS = 3_000; // what requests in flight may take once the server is told to end
+const END_MS = 4_500; // by when it has ended whatever happens; whoever started it may count on 5 s
+const UNUSABLE = 2;
+
+/** Ends the process for what its user can mend: one line, and a status of its own. */
+function refuse(text: string): never {
+  process.stderr.write(`skewline: ${text}\n`);
+  process.exit(UNUSABLE);
+}
+
+process.umask(0o077); // whatever is written is the owner's alone
+const read = readConfig(process.env);
+const config: Config = read.ok ? read.value : refuse(read.problem.text);
+const log = pino({ level: config.logLevel }, pino.destination({ dest: 2, sync: true }));
+
+let db: Db | undefined;
+// The port is taken before the database is touched: another server that holds it may be using the same one.
+const server = createServer({ headersTimeout: HEADERS_TIMEOUT_MS, requestTimeout: REQUEST_TIMEOUT_MS });
+server.on('error', (fault) => refuse(listenFault(fault)));
+server.listen(config.port, config.host, () => {
+  db = openOrRefuse(config.dataDir);
+  ensureDeployment(db, VERSION);
+  server.on('request', makeApp({ db, log, version: VERSION, production: config.production, frontend: frontendFolder }));
+  process.stdout.write(`Skewline is at ${urlOf(server)}\n`);
+});
+for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, end);
+
+function openOrRefuse(dataDir: string): Db {
+  try {
+    return openDb(dataDir);
+  } catch (fault) {
+    if (fault instanceof UnusableDatabase) refuse(fault.message);
+    throw fault;
+  }
+}
+
+function listenFault({ code }: NodeJS.ErrnoException): string {
+  const { port, host } = config;
+  if (code === 'EADDRINUSE') return `PORT=${port} is taken on ${host}: set PORT to a free one, or to 0 for any.`;
+  if (code === 'EACCES') return `PORT=${port} is not open to this user: set PORT to one from 1024 to 65535.`;
+  return `HOST=${JSON.stringify(host)} cannot be listened on (${code ?? 'unknown fault'}): it must be an address or name of this machine.`;
+}
+
+function urlOf(listening: Server): string {
+  const { address, port, family } = listening.address() as AddressInfo;
+  const everywhere = address === '0.0.0.0' || address === '::';
+  return `http://${everywhere ? 'localhost' : family === 'IPv6' ? `[${address}]` : address}:${port}/`;
+}
+
+let ending = false;
+function end(): void {
+  if (ending) return;
+  ending = true;
+  setTimeout(() => {
+    log.error('the server did not end in time');
+    process.exit(1);
+  }, END_MS).unref();
+  setTimeout(() => server.closeAllConnections(), FINISH_MS).unref();
+  server.close(() => {
+    if (db) closeDb(db);
+    process.exit(0);
+  });
+}

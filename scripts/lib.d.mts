@@ -1,0 +1,2 @@
+export declare const root: string;
+export declare function buildBackend(): void;
