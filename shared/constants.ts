@@ -2,7 +2,7 @@
 export const C_M_S = 299_792_458;
 
 /** SI seconds in a day of a uniform scale. Source: SI Brochure, 9th edition (2019), table 8. */
-export const DAY_S = 86_400;
+export const S_PER_DAY = 86_400;
 
 /** TAI minus GPS time, s, exact by convention. Source: IS-GPS-200 (GPS time equals UTC at 1980-01-06, when TAI-UTC was 19 s). */
 export const TAI_MINUS_GPS_S = 19;

@@ -1,4 +1,4 @@
-import { DAY_S } from '../constants';
+import { S_PER_DAY } from '../constants';
 import { type ClockRecord, type ClockSegment } from './clock-record';
 import { addDecimals, decimalOf, digitsAt, floorDivide, nearestDivide, shiftDecimal, splitDecimal, type Decimal } from './decimal';
 import { compareInstants, instantOf, PS_PER_S, type Instant } from './instant';
@@ -29,8 +29,8 @@ interface ExactTerms {
 }
 
 const BIG_PS_PER_S = BigInt(PS_PER_S);
-const PS_PER_DAY = BigInt(DAY_S) * BIG_PS_PER_S;
-const PS_PER_NS_PER_DAY = 1000 / DAY_S;
+const PS_PER_DAY = BigInt(S_PER_DAY) * BIG_PS_PER_S;
+const PS_PER_NS_PER_DAY = 1000 / S_PER_DAY;
 /** Ten roundings of 1.1e-16 cover those in the rate term, in the time since `at`, and in their sum. */
 const ROUNDING = 1.2e-15;
 
@@ -85,7 +85,7 @@ export function segmentAt(clock: readonly PreparedSegment[], reading: Instant): 
 
 /** Days of 86,400 SI seconds from the segment's `at` to the reading less its delay: the time on which the rate and its error act. */
 export function daysSinceAt(prepared: PreparedSegment, reading: Instant): number {
-  return secondsSinceAt(prepared, reading) / DAY_S;
+  return secondsSinceAt(prepared, reading) / S_PER_DAY;
 }
 
 /**

@@ -1,4 +1,4 @@
-import { DAY_S } from '../constants';
+import { S_PER_DAY } from '../constants';
 import { problemOf, valueOf, type Outcome } from '../outcome';
 import { civilFromDays } from './calendar';
 import { type Instant } from './instant';
@@ -23,8 +23,8 @@ type DayTimeWriter = (day: number, secondOfDay: number, ps: number) => string;
 export function createTaiWriter(decimals: number = MAX_DECIMALS): (instant: Instant) => string {
   const write = createDayTimeWriter(decimals);
   return (instant) => {
-    const day = Math.floor(instant.taiS / DAY_S);
-    return write(day, instant.taiS - day * DAY_S, instant.ps);
+    const day = Math.floor(instant.taiS / S_PER_DAY);
+    return write(day, instant.taiS - day * S_PER_DAY, instant.ps);
   };
 }
 

@@ -1,9 +1,9 @@
-import { DAY_S, TAI_MINUS_GPS_S } from '../constants';
+import { S_PER_DAY, TAI_MINUS_GPS_S } from '../constants';
 import { type Instant } from './instant';
 
-const WEEK_S = 7 * DAY_S;
+const WEEK_S = 7 * S_PER_DAY;
 /** 1980-01-06T00:00:00 GPS in TAI seconds since 1970. Source: IS-GPS-200. */
-const GPS_EPOCH_TAI_S = 3657 * DAY_S + TAI_MINUS_GPS_S;
+const GPS_EPOCH_TAI_S = 3657 * S_PER_DAY + TAI_MINUS_GPS_S;
 
 /** GPS time as receivers give it: full weeks since 1980-01-06 (not folded into 10 or 13 bits) and time of week. */
 export interface GpsWeekTime {

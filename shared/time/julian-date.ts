@@ -1,4 +1,4 @@
-import { DAY_S, JD_OF_1970 } from '../constants';
+import { S_PER_DAY, JD_OF_1970 } from '../constants';
 import { PS_PER_S } from './instant';
 import { type DayTime } from './scales';
 
@@ -14,5 +14,5 @@ export interface JulianDate {
  * The fraction is good to 1e-16 day (10 ps), the midnight exact. Source: IAU 1997 Resolution B1.
  */
 export function julianDateOf(time: DayTime): JulianDate {
-  return { midnightJd: time.day + JD_OF_1970, fractionOfDay: (time.secondOfDay + time.ps / PS_PER_S) / DAY_S };
+  return { midnightJd: time.day + JD_OF_1970, fractionOfDay: (time.secondOfDay + time.ps / PS_PER_S) / S_PER_DAY };
 }

@@ -1,4 +1,4 @@
-import { DAY_S, NTP_TO_1970_DAYS } from '../constants';
+import { S_PER_DAY, NTP_TO_1970_DAYS } from '../constants';
 import { problemOf, valueOf, type Outcome, type Problem } from '../outcome';
 import { quoted } from '../quoted';
 import { compareInstants, type Instant } from './instant';
@@ -99,8 +99,9 @@ function readRow(line: string, into: Lines): string | undefined {
   const ntpS = Number(ntpDigits);
   const taiMinusUtcS = Number(taiMinusUtcDigits);
   const last = into.steps.at(-1);
-  const fromDay = ntpS / DAY_S - NTP_TO_1970_DAYS;
-  if (!Number.isInteger(fromDay)) return `${ntpDigits} is not the beginning of a UTC day; NTP seconds of a row are a multiple of ${DAY_S}`;
+  const fromDay = ntpS / S_PER_DAY - NTP_TO_1970_DAYS;
+  if (!Number.isInteger(fromDay))
+    return `${ntpDigits} is not the beginning of a UTC day; NTP seconds of a row are a multiple of ${S_PER_DAY}`;
   if (last === undefined && (ntpS !== FIRST_ROW_NTP_S || taiMinusUtcS !== FIRST_TAI_MINUS_UTC_S)) {
     return `the first row is ${ntpDigits} ${taiMinusUtcDigits}; it must be ${FIRST_ROW_NTP_S} ${FIRST_TAI_MINUS_UTC_S} (1 Jan 1972)`;
   }
@@ -108,7 +109,7 @@ function readRow(line: string, into: Lines): string | undefined {
   if (last !== undefined && Math.abs(taiMinusUtcS - last.taiMinusUtcS) !== 1) {
     return `TAI-UTC goes from ${last.taiMinusUtcS} to ${taiMinusUtcS} s; a step is one second up or down`;
   }
-  into.steps.push({ fromDay, fromTaiS: fromDay * DAY_S + taiMinusUtcS, taiMinusUtcS });
+  into.steps.push({ fromDay, fromTaiS: fromDay * S_PER_DAY + taiMinusUtcS, taiMinusUtcS });
   into.digitsOfRows += ntpDigits + taiMinusUtcDigits;
   return undefined;
 }
@@ -130,8 +131,8 @@ function judge(lines: Lines, lastLine: number): Outcome<LeapSecondTable> {
 
 /** NTP seconds do not count leap seconds, so the day is a plain division. */
 function ofNtp(ntpS: number, steps: readonly LeapSecondStep[]): Instant | undefined {
-  const utcS = ntpS - NTP_TO_1970_DAYS * DAY_S;
-  const step = stepOnDay(steps, Math.floor(utcS / DAY_S));
+  const utcS = ntpS - NTP_TO_1970_DAYS * S_PER_DAY;
+  const step = stepOnDay(steps, Math.floor(utcS / S_PER_DAY));
   return step && { taiS: utcS + step.taiMinusUtcS, ps: 0 };
 }
 
@@ -153,7 +154,7 @@ export function taiMinusUtcOnDay(table: LeapSecondTable, day: number): number | 
 export function secondsInUtcDay(table: LeapSecondTable, day: number): number {
   const today = taiMinusUtcOnDay(table, day);
   const tomorrow = taiMinusUtcOnDay(table, day + 1);
-  return today === undefined || tomorrow === undefined ? DAY_S : DAY_S + tomorrow - today;
+  return today === undefined || tomorrow === undefined ? S_PER_DAY : S_PER_DAY + tomorrow - today;
 }
 
 /** Where an instant lies in UTC: the UTC day (days since 1970-01-01) and the whole second within it, up to 86,400 in a leap second. */
@@ -164,8 +165,8 @@ export function utcDayAt(table: LeapSecondTable, taiS: number): { readonly day: 
   const utcS = taiS - step.taiMinusUtcS;
   // A leap second still belongs to the last day before the next step, though 86,400 s of that day have gone by.
   const lastDay = (table.steps[index + 1]?.fromDay ?? Infinity) - 1;
-  const day = Math.min(Math.floor(utcS / DAY_S), lastDay);
-  return { day, secondOfDay: utcS - day * DAY_S };
+  const day = Math.min(Math.floor(utcS / S_PER_DAY), lastDay);
+  return { day, secondOfDay: utcS - day * S_PER_DAY };
 }
 
 /**

@@ -1,4 +1,4 @@
-import { DAY_S } from '../constants';
+import { S_PER_DAY } from '../constants';
 import { type Instant } from './instant';
 import { utcDayAt, type LeapSecondTable } from './leap-seconds';
 
@@ -10,5 +10,5 @@ import { utcDayAt, type LeapSecondTable } from './leap-seconds';
  */
 export function posixSecondsAt(instant: Instant, table: LeapSecondTable): number | undefined {
   const utc = utcDayAt(table, instant.taiS);
-  return utc && utc.day * DAY_S + utc.secondOfDay;
+  return utc && utc.day * S_PER_DAY + utc.secondOfDay;
 }

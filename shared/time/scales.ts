@@ -1,4 +1,4 @@
-import { DAY_S, TAI_MINUS_GPS_S, TT_MINUS_TAI_PS } from '../constants';
+import { S_PER_DAY, TAI_MINUS_GPS_S, TT_MINUS_TAI_PS } from '../constants';
 import { problemOf, valueOf, type Outcome } from '../outcome';
 import { civilFromDays, daysFromCivil, isCivilDate, type CivilDate } from './calendar';
 import { instantOf, PS_PER_S, type Instant } from './instant';
@@ -33,14 +33,14 @@ const SCALE_MINUS_TAI_PS = { TAI: 0, GPS: -TAI_MINUS_GPS_S * PS_PER_S, TT: TT_MI
 
 /** The instant at which a day (days since 1970-01-01) of a scale begins; undefined for UTC before 1972. Exact. */
 export function startOfDay(day: number, scale: Scale, table: LeapSecondTable): Instant | undefined {
-  if (scale !== 'UTC') return instantOf(day * DAY_S, -SCALE_MINUS_TAI_PS[scale]);
+  if (scale !== 'UTC') return instantOf(day * S_PER_DAY, 0 - SCALE_MINUS_TAI_PS[scale]);
   const taiMinusUtcS = taiMinusUtcOnDay(table, day);
-  return taiMinusUtcS === undefined ? undefined : { taiS: day * DAY_S + taiMinusUtcS, ps: 0 };
+  return taiMinusUtcS === undefined ? undefined : { taiS: day * S_PER_DAY + taiMinusUtcS, ps: 0 };
 }
 
 /** SI seconds in a day (days since 1970-01-01) of a scale: 86,400, in UTC one more or less where the list says so. */
 export function secondsInDay(day: number, scale: Scale, table: LeapSecondTable): number {
-  return scale === 'UTC' ? secondsInUtcDay(table, day) : DAY_S;
+  return scale === 'UTC' ? secondsInUtcDay(table, day) : S_PER_DAY;
 }
 
 /**
@@ -54,8 +54,8 @@ export function dayTimeAt(instant: Instant, scale: Scale, table: LeapSecondTable
     return utc && { day: utc.day, secondOfDay: utc.secondOfDay, ps: instant.ps };
   }
   const shifted = instantOf(instant.taiS, instant.ps + SCALE_MINUS_TAI_PS[scale]);
-  const day = Math.floor(shifted.taiS / DAY_S);
-  return { day, secondOfDay: shifted.taiS - day * DAY_S, ps: shifted.ps };
+  const day = Math.floor(shifted.taiS / S_PER_DAY);
+  return { day, secondOfDay: shifted.taiS - day * S_PER_DAY, ps: shifted.ps };
 }
 
 /**
@@ -73,7 +73,7 @@ export function timeOfDayFault(
 ): 'time-of-day' | 'no-leap-second' | undefined {
   if (hour > 23 || minute > 59 || second > 60) return 'time-of-day';
   const secondOfDay = hour * 3600 + minute * 60 + second;
-  if (second === 60) return secondOfDay === DAY_S && lengthS > DAY_S ? undefined : 'no-leap-second';
+  if (second === 60) return secondOfDay === S_PER_DAY && lengthS > S_PER_DAY ? undefined : 'no-leap-second';
   return secondOfDay < lengthS ? undefined : 'time-of-day';
 }
 

@@ -1,0 +1,40 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { addPicoseconds, compareInstants, instantOf, picosecondsBetween, PS_PER_S, secondsBetween } from './instant';
+
+describe('an instant', () => {
+  it.each([
+    [0, 0, 0, 0],
+    [5, PS_PER_S - 1, 5, PS_PER_S - 1],
+    [5, PS_PER_S, 6, 0],
+    [5, -1, 4, PS_PER_S - 1],
+    [5, -PS_PER_S, 4, 0],
+    [-1, 2.5 * PS_PER_S, 1, 0.5 * PS_PER_S],
+    [1.7e9, -8_999 * PS_PER_S - 1, 1.7e9 - 9000, PS_PER_S - 1],
+  ])('carries %i s and %i ps', (taiS, ps, carriedS, carriedPs) => {
+    expect(instantOf(taiS, ps)).toEqual({ taiS: carriedS, ps: carriedPs });
+  });
+
+  it('is ordered by seconds, then picoseconds', () => {
+    const a = { taiS: 7, ps: 5 };
+    expect(compareInstants(a, { taiS: 7, ps: 5 })).toBe(0);
+    expect(compareInstants(a, { taiS: 7, ps: 6 })).toBeLessThan(0);
+    expect(compareInstants({ taiS: 8, ps: 0 }, a)).toBeGreaterThan(0);
+  });
+
+  it('moves by picoseconds and the difference gives them back, signs swapped when the two are', () => {
+    const ps = fc.integer({ min: -1000 * PS_PER_S, max: 1000 * PS_PER_S });
+    fc.assert(
+      fc.property(fc.integer({ min: -1e10, max: 1e10 }), fc.integer({ min: 0, max: PS_PER_S - 1 }), ps, (taiS, within, moved) => {
+        const a = { taiS, ps: within };
+        const b = addPicoseconds(a, moved);
+        expect(b.ps).toBeGreaterThanOrEqual(0);
+        expect(b.ps).toBeLessThan(PS_PER_S);
+        expect(picosecondsBetween(a, b)).toBe(moved);
+        expect(picosecondsBetween(b, a) + moved).toBe(0);
+        // physics.md: good to 1 ps up to 1,000 s.
+        expect(Math.abs(secondsBetween(a, b) - moved / PS_PER_S)).toBeLessThan(1e-12);
+      }),
+    );
+  });
+});
