@@ -6,7 +6,7 @@ import { fourVelocity } from './velocity';
 
 /**
  * The Sun's velocity against the cosmic microwave background: speed in km/s (standard error 0.11), galactic longitude and latitude of where
- * it goes, in degrees (0.011 and 0.005). Source: Planck Collaboration 2020, Astron. Astrophys. 641, A1, table 3.
+ * it goes, in degrees (0.011 and 0.005). Source: Planck Collaboration 2020, Astron. Astrophys. 641, A1, table 2.
  */
 export const SUN_AGAINST_BACKGROUND = { speedKmS: 369.82, galacticLongitudeDeg: 264.021, galacticLatitudeDeg: 48.253 } as const;
 

@@ -19,7 +19,8 @@ export function unitFromAngles(angles: SkyAngles): Vec3 {
 export function anglesOf(a: Vec3): SkyAngles {
   const longitudeDeg = Math.atan2(a[1], a[0]) / RAD_PER_DEG;
   return {
-    longitudeDeg: longitudeDeg < 0 ? longitudeDeg + 360 : longitudeDeg,
+    // An angle just below 0 would round to 360 itself.
+    longitudeDeg: longitudeDeg < 0 ? (longitudeDeg + 360) % 360 : longitudeDeg,
     latitudeDeg: Math.atan2(a[2], Math.hypot(a[0], a[1])) / RAD_PER_DEG,
   };
 }

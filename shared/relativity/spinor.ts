@@ -1,4 +1,4 @@
-import { add, cross, dot, norm, opposite, scale, subtract, type Vec3 } from './vector';
+import { add, cross, dot, norm, opposite, scale, subtract, unitOf, type Vec3 } from './vector';
 import { type FourVelocity, fourVelocity } from './velocity';
 
 /**
@@ -67,5 +67,5 @@ export interface Rotation {
 export function rotationOf(a: Spinor): Rotation {
   const sine = norm(a.turn);
   if (sine === 0) return { angleRad: 0, axis: [0, 0, 1] };
-  return { angleRad: 2 * Math.atan2(sine, Math.abs(a.scalar)), axis: scale((a.scalar < 0 ? -1 : 1) / sine, a.turn) };
+  return { angleRad: 2 * Math.atan2(sine, Math.abs(a.scalar)), axis: unitOf(a.scalar < 0 ? opposite(a.turn) : a.turn) };
 }

@@ -14,4 +14,7 @@ export const apply = (m: Mat3, a: Vec3): Vec3 => [dot(m[0], a), dot(m[1], a), do
 export const opposite = (a: Vec3): Vec3 => [-a[0], -a[1], -a[2]];
 
 /** A vector of length 1 along another, which must not be zero. */
-export const unitOf = (a: Vec3): Vec3 => scale(1 / norm(a), a);
+export const unitOf = (a: Vec3): Vec3 => {
+  const length = norm(a);
+  return [a[0] / length, a[1] / length, a[2] / length];
+};
