@@ -65,20 +65,29 @@ export function setsFrom(
     return { event, sites, events: laterCount + 1, setsAtLeast: limits.limit + 1 };
   }
 
-  function fromMany(event: number, laterCount: number, listener: SetListener): void {
-    const earlierCount = kernel.earlierNear(event, earlier);
-    const laterRows = later.rows.subarray(0, laterCount);
-    const earlierRows = earlier.rows.subarray(0, earlierCount);
+  /**
+   * The quick proof of a crowd needs a later trigger of every site that is near the event at all; where all sites of the network have one,
+   * the earlier triggers need not be looked for.
+   */
+  function isCrowdedAtOnce(event: number, laterRows: Int32Array): boolean {
     perSite.fill(0);
     for (const row of laterRows) perSite[siteOf(row)] = (perSite[siteOf(row)] ?? 0) + 1;
-    const triggers = { rows: laterRows, siteOf, perSite };
-    if (mostSets(perSite) > limits.limit && earlierRows.every((row) => (perSite[siteOf(row)] ?? 0) > 0)) {
-      const sites = perSite.reduce((sum, count) => sum + Math.sign(count), 0);
-      if (sites >= leastOthers && isSurelyCrowded(triggers, near, limits.limit)) {
-        listener.crowd(crowdAt(event, laterCount));
-        return;
-      }
+    const sites = perSite.reduce((sum, triggers) => sum + Math.sign(triggers), 0);
+    if (sites < leastOthers || mostSets(perSite) <= limits.limit) return false;
+    if (sites < kernel.siteCount - 1) {
+      const earlierCount = kernel.earlierNear(event, earlier);
+      for (let k = 0; k < earlierCount; k++) if (perSite[siteOf(earlier.rows[k] ?? 0)] === 0) return false;
     }
+    return isSurelyCrowded({ rows: laterRows, siteOf, perSite }, near, limits.limit);
+  }
+
+  function fromMany(event: number, laterCount: number, listener: SetListener): void {
+    const laterRows = later.rows.subarray(0, laterCount);
+    if (isCrowdedAtOnce(event, laterRows)) {
+      listener.crowd(crowdAt(event, laterCount));
+      return;
+    }
+    const earlierRows = earlier.rows.subarray(0, kernel.earlierNear(event, earlier));
     const sets: Int32Array[] = [];
     const found = (others: Int32Array, length: number): void => {
       const rows = new Int32Array(length + 1);

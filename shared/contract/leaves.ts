@@ -1,0 +1,36 @@
+import * as z from 'zod';
+import { CODE_RIGHT, isCode } from '../reconcile/code';
+
+/**
+ * Leaves of schemas whose message is not what was wrong but what would be right; the path and the value are put before it by
+ * `firstProblem`.
+ */
+
+/** A finite number that passes a check, with its unit and limits in words. */
+export const numberThat = (right: string, check: (value: number) => boolean = () => true) =>
+  z.custom<number>((value) => typeof value === 'number' && Number.isFinite(value) && check(value), { error: right });
+
+export const notNegative = (unit: string) => numberThat(`a number of ${unit}, 0 or more`, (value) => value >= 0);
+
+export const text = (right: string) => z.custom<string>((value) => typeof value === 'string', { error: right });
+
+export const oneOf = <const T extends string>(...allowed: readonly T[]) =>
+  z.custom<T>((value) => allowed.some((word) => word === value), { error: `one of ${allowed.map((word) => `"${word}"`).join(', ')}` });
+
+export const code = () => z.custom<string>((value) => typeof value === 'string' && isCode(value), { error: `a code of ${CODE_RIGHT}` });
+
+export const listOf = <T extends z.ZodType>(item: T, what: string) => z.array(item, { error: `a list of ${what}` });
+
+/** Three finite numbers. */
+export const triple = (right: string) =>
+  z.custom<readonly [number, number, number]>(
+    (value) => Array.isArray(value) && value.length === 3 && value.every((part) => typeof part === 'number' && Number.isFinite(part)),
+    { error: right },
+  );
+
+/** An object that refuses fields it does not know. */
+export const record = <T extends z.ZodRawShape>(shape: T) => z.strictObject(shape, { error: (issue) => recordError(issue, shape) });
+
+function recordError(issue: { readonly code?: string; readonly keys?: readonly string[] }, shape: z.ZodRawShape): string {
+  return issue.code === 'unrecognized_keys' ? `known here: ${Object.keys(shape).join(', ')}` : 'an object { }';
+}

@@ -1,0 +1,169 @@
+import { isCode } from './code';
+import { daysSinceAt, eventInstant, segmentAt } from '../time/correction';
+import { compareInstants } from '../time/instant';
+import { type LeapSecondTable } from '../time/leap-seconds';
+import { createReadingParser, type ReadingFault, resolutionSigmaNs } from '../time/reading';
+import { type Network } from './network';
+
+/** Why a record is set aside by itself, in the order in which the reasons are looked for. */
+export type RecordFault =
+  'columns' | 'site' | 'sequence' | 'series' | 'kind' | ReadingFault | 'sigma' | 'amplitude' | 'before-clock-record' | 'outside-run';
+
+/** Why a record is set aside: a fault of its own, or another content under the same identity. */
+export type SetAsideReason = RecordFault | 'conflict';
+
+/** All reasons, in the order in which a record is looked at. */
+export const SET_ASIDE_REASONS: readonly SetAsideReason[] = [
+  'columns',
+  'site',
+  'sequence',
+  'series',
+  'kind',
+  'reading-empty',
+  'reading-form',
+  'date',
+  'time-of-day',
+  'no-leap-second',
+  'before-1972',
+  'sigma',
+  'amplitude',
+  'before-clock-record',
+  'outside-run',
+  'conflict',
+];
+
+/** What a record is: triggers form coincidences, pulses of known origin and tests do not. */
+export const KINDS = ['trigger', 'reference', 'test'] as const;
+export type Kind = (typeof KINDS)[number];
+
+/** Where the standard error of a reading comes from. */
+export const SIGMA_SOURCES = ['record', 'site', 'resolution'] as const;
+export type SigmaSource = (typeof SIGMA_SOURCES)[number];
+
+/** Where a log has the fields that mean something; -1 for a column that it does not have. */
+export interface RecordLayout {
+  readonly width: number;
+  readonly site: number;
+  readonly sequence: number;
+  readonly series: number;
+  readonly reading: number;
+  readonly sigma: number;
+  readonly amplitude: number;
+  readonly kind: number;
+  /** The site of a log that names it once for all its records. */
+  readonly ofSite: string | undefined;
+}
+
+/** A record as reconciled: when, how sure, and by what; written into the same object again and again, since millions pass. */
+export interface ReconciledRecord {
+  /** Row of the site in the network. */
+  site: number;
+  series: string;
+  /** The sequence without leading zeros. */
+  sequence: string;
+  /** Index in KINDS. */
+  kind: number;
+  taiS: number;
+  ps: number;
+  readingSigmaNs: number;
+  /** Index in SIGMA_SOURCES. */
+  sigmaSource: number;
+  /** Row of the clock segment in the error tables, -1 for an exact clock. */
+  segment: number;
+  sinceEpochDays: number;
+  /** NaN where none is given. */
+  amplitude: number;
+}
+
+export const emptyRecord = (): ReconciledRecord => ({
+  site: 0,
+  series: '',
+  sequence: '',
+  kind: 0,
+  taiS: 0,
+  ps: 0,
+  readingSigmaNs: 0,
+  sigmaSource: 0,
+  segment: -1,
+  sinceEpochDays: 0,
+  amplitude: NaN,
+});
+
+const WHOLE_NUMBER = /^\d+$/;
+const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?$/;
+
+/** A field as a finite number, or NaN. */
+function numberOf(text: string): number {
+  const value = NUMBER.test(text) ? Number(text) : NaN;
+  return Number.isFinite(value) ? value : NaN;
+}
+
+function withoutLeadingZeros(digits: string): string {
+  if (digits.length === 1 || digits.charCodeAt(0) !== 48) return digits;
+  return digits.replace(/^0+(?=\d)/, '');
+}
+
+/** Turns the fields of one record into an event's time, or says why the record is set aside. */
+export type RecordReconciler = (fields: readonly string[], layout: RecordLayout, into: ReconciledRecord) => RecordFault | undefined;
+
+/**
+ * Makes the one way from a record of a log to the time of an event: reading, delay, clock record, run.
+ *
+ * The function keeps what it knows of each site's last date, and nothing else: its answer depends on the record alone.
+ *
+ * @param network the sites, clocks and the run
+ * @param leapSeconds for readings in UTC
+ * @returns a function that writes a good record into `into` and answers undefined, or answers the first fault
+ */
+export function createReconciler(network: Network, leapSeconds: LeapSecondTable): RecordReconciler {
+  const rows = new Map(network.sites.map((site, row) => [site.code, row]));
+  const parsers = network.sites.map((site) => createReadingParser(site.scale, leapSeconds));
+  const at = (fields: readonly string[], column: number): string => (column < 0 ? '' : (fields[column] ?? ''));
+
+  function identify(fields: readonly string[], layout: RecordLayout, into: ReconciledRecord): RecordFault | undefined {
+    if (fields.length !== layout.width) return 'columns';
+    const code = layout.site < 0 ? layout.ofSite : at(fields, layout.site);
+    const row = code === undefined || (layout.ofSite !== undefined && code !== layout.ofSite) ? undefined : rows.get(code);
+    if (row === undefined) return 'site';
+    const sequence = at(fields, layout.sequence);
+    if (!WHOLE_NUMBER.test(sequence)) return 'sequence';
+    const series = at(fields, layout.series);
+    if (series !== '' && !isCode(series)) return 'series';
+    const kind = at(fields, layout.kind);
+    const kindIndex = kind === '' ? 0 : KINDS.findIndex((name) => name === kind);
+    if (kindIndex < 0) return 'kind';
+    into.site = row;
+    into.sequence = withoutLeadingZeros(sequence);
+    into.series = series;
+    into.kind = kindIndex;
+    return undefined;
+  }
+
+  return (fields, layout, into) => {
+    const fault = identify(fields, layout, into);
+    if (fault) return fault;
+    const site = network.sites[into.site];
+    const reading = parsers[into.site]?.(at(fields, layout.reading)) ?? 'reading-empty';
+    if (!site || typeof reading === 'string') return typeof reading === 'string' ? reading : 'site';
+    const sigmaText = at(fields, layout.sigma);
+    const sigmaNs = sigmaText === '' ? (site.readingSigmaNs ?? resolutionSigmaNs(reading.decimals)) : numberOf(sigmaText);
+    if (!(sigmaNs >= 0)) return 'sigma';
+    const amplitudeText = at(fields, layout.amplitude);
+    const amplitude = amplitudeText === '' ? NaN : numberOf(amplitudeText);
+    if (amplitudeText !== '' && Number.isNaN(amplitude)) return 'amplitude';
+    const holds = segmentAt(site.clock, reading);
+    const segment = site.clock[holds];
+    if (!segment) return 'before-clock-record';
+    const instant = eventInstant(segment, reading);
+    if (compareInstants(instant, network.from) < 0) return 'outside-run';
+    if (network.to && compareInstants(instant, network.to) > 0) return 'outside-run';
+    into.taiS = instant.taiS;
+    into.ps = instant.ps;
+    into.readingSigmaNs = Math.abs(sigmaNs); // -0 is 0
+    into.sigmaSource = sigmaText !== '' ? 0 : site.readingSigmaNs === undefined ? 2 : 1;
+    into.segment = site.firstSegmentRow < 0 ? -1 : site.firstSegmentRow + holds;
+    into.sinceEpochDays = into.segment < 0 ? 0 : daysSinceAt(segment, reading);
+    into.amplitude = amplitude;
+    return undefined;
+  };
+}
