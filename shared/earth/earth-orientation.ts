@@ -20,8 +20,8 @@ export interface EarthOrientation {
 /** No table may hold a pole farther from the origin than this on either axis, radians (2 arcseconds; the largest seen is 0.6). */
 export const MOST_POLE_RAD = (2 * Math.PI) / 648_000;
 
-/** No table may let UT1 - TAI change by more than this in a second (the largest seen is 5e-8); a leap second left in is 1.2e-5. */
-export const MOST_SLOWING = 5e-7;
+/** No table may let UT1 - TAI change by more than this from one day to the next, seconds (the largest seen is 0.005); a leap second is 1. */
+export const MOST_UT1_CHANGE_S_PER_DAY = 0.05;
 
 /**
  * The orientation where no table is loaded: UT1 - TAI as given and constant, the pole at the origin.

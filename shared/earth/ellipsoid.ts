@@ -18,6 +18,9 @@ export const WGS84: Ellipsoid = { semiMajorM: 6_378_137, inverseFlattening: 298.
 
 const RAD_PER_DEG = Math.PI / 180;
 
+/** A point nearer to the equator's plane than this is taken as in it: squares of less would vanish below the smallest double. */
+const PLANE_M = 1e-12;
+
 /** Squared first eccentricity, e2 = f (2 - f). */
 export function eccentricitySquared(ellipsoid: Ellipsoid): number {
   const flattening = 1 / ellipsoid.inverseFlattening;
@@ -48,8 +51,7 @@ export function geodeticToItrs(place: Geodetic, ellipsoid: Ellipsoid = WGS84): V
  * @param itrsM ITRS x, y, z, metres, anywhere, the geocentre included
  * @param ellipsoid WGS 84 unless another is given
  * @returns latitude in [-90, 90], longitude in (-180, 180] degrees (0 on the axis), height in metres; back through `geodeticToItrs` it
- *   gives the same point to 1e-7 m. Of the points of the ellipsoid that are nearest to a point of the equator's plane within 43 km of
- *   the geocentre the northern one is taken.
+ *   gives the same point to 1e-7 m
  *
  * Source: Vermeille 2011, An analytical method to transform geocentric into geodetic coordinates, Journal of Geodesy 85, 105.
  */
@@ -59,11 +61,11 @@ export function itrsToGeodetic(itrsM: Vec3, ellipsoid: Ellipsoid = WGS84): Geode
   const axisDistanceM = Math.hypot(xM, yM);
   const e2 = eccentricitySquared(ellipsoid);
   const e4 = e2 * e2;
-  const longitudeDeg = axisDistanceM === 0 ? 0 : Math.atan2(yM, xM) / RAD_PER_DEG;
+  const longitudeDeg = longitudeOf(xM, yM);
   const p = (axisDistanceM / aM) ** 2;
   const q = (1 - e2) * (zM / aM) ** 2;
 
-  if (q === 0 && p <= e4) return nearestOnMeridian(axisDistanceM, longitudeDeg, ellipsoid);
+  if (Math.abs(zM) < PLANE_M && p <= e4) return nearestFromPlane(p, zM < 0, longitudeDeg, ellipsoid);
 
   const r = (p + q - e4) / 6;
   const u = vermeilleRoot(r, e4 * p * q);
@@ -74,9 +76,16 @@ export function itrsToGeodetic(itrsM: Vec3, ellipsoid: Ellipsoid = WGS84): Geode
   const hypotenuseM = Math.hypot(dM, zM);
   return {
     latitudeDeg: (2 * Math.atan2(zM, dM + hypotenuseM)) / RAD_PER_DEG,
-    longitudeDeg: longitudeDeg === -180 ? 180 : longitudeDeg,
+    longitudeDeg,
     heightM: ((k + e2 - 1) / k) * hypotenuseM,
   };
+}
+
+/** In (-180, 180], and 0 on the axis, where every longitude is as good. */
+function longitudeOf(xM: number, yM: number): number {
+  if (xM === 0 && yM === 0) return 0;
+  const longitudeDeg = Math.atan2(yM, xM) / RAD_PER_DEG;
+  return longitudeDeg === -180 ? 180 : longitudeDeg;
 }
 
 /** Vermeille's u: the real root outside the evolute of the meridian ellipse, the trigonometric one inside it. */
@@ -91,16 +100,15 @@ function vermeilleRoot(r: number, e4pq: number): number {
   return -4 * r * Math.sin(angle) * Math.cos(Math.PI / 6 + angle);
 }
 
-/** In the equator's plane inside the evolute's cusps the nearest point lies off the equator: the northern one of the two. */
-function nearestOnMeridian(axisDistanceM: number, longitudeDeg: number, ellipsoid: Ellipsoid): Geodetic {
+/** In the equator's plane inside the evolute's cusps the nearest point lies off the equator: in the south below the plane, else north. */
+function nearestFromPlane(p: number, south: boolean, longitudeDeg: number, ellipsoid: Ellipsoid): Geodetic {
   const e2 = eccentricitySquared(ellipsoid);
-  const p = (axisDistanceM / ellipsoid.semiMajorM) ** 2;
-  const below = Math.sqrt(e2 - p);
-  const sine = Math.sqrt(e2 * e2 - p);
+  const inside = Math.sqrt(e2 - p);
+  const latitudeRad = 2 * Math.atan2(Math.sqrt(e2 * e2 - p), Math.sqrt(e2) * inside + Math.sqrt((1 - e2) * p));
   return {
-    latitudeDeg: (2 * Math.atan2(sine, Math.sqrt(e2) * below + Math.sqrt((1 - e2) * p))) / RAD_PER_DEG,
+    latitudeDeg: (south ? -latitudeRad : latitudeRad) / RAD_PER_DEG,
     longitudeDeg,
-    heightM: -ellipsoid.semiMajorM * Math.sqrt(1 - e2) * (below / Math.sqrt(e2)),
+    heightM: -ellipsoid.semiMajorM * Math.sqrt(1 - e2) * (inside / Math.sqrt(e2)),
   };
 }
 

@@ -1,5 +1,5 @@
 import { type Outcome, problemOf, valueOf } from '../outcome';
-import { type EarthOrientation, MOST_SLOWING, type OrientationValues } from './earth-orientation';
+import { type EarthOrientation, MOST_UT1_CHANGE_S_PER_DAY, type OrientationValues } from './earth-orientation';
 
 /** One day of an Earth-orientation table. */
 export interface OrientationRow {
@@ -23,11 +23,11 @@ function checkRows(rows: readonly OrientationRow[]): ReturnType<typeof problemOf
       return problemOf('orientation-order', `MJD ${row.mjd}`, `follows MJD ${before.mjd}; a table holds each day once, in order`);
     }
     const changeS = row.values.ut1MinusTaiS - before.values.ut1MinusTaiS;
-    if (Math.abs(changeS) > MOST_SLOWING * S_PER_DAY) {
+    if (Math.abs(changeS) > MOST_UT1_CHANGE_S_PER_DAY) {
       return problemOf(
         'orientation-jump',
         `MJD ${row.mjd}`,
-        `UT1 - TAI changes by ${changeS.toFixed(6)} s in a day, at most ${MOST_SLOWING * S_PER_DAY} s can be right: the leap-second list and this table do not belong together`,
+        `UT1 - TAI changes by ${changeS.toFixed(6)} s in a day, at most ${MOST_UT1_CHANGE_S_PER_DAY} s can be right: the leap-second list and this table do not belong together`,
       );
     }
   }
