@@ -1,0 +1,132 @@
+import { type IntervalClass, verdictOf, type Verdict } from '#shared/relativity/verdict';
+import { intervalM2, properDistanceM, properTimeS } from '#shared/relativity/interval';
+import { frameDtNs, frameSigmaNs, orderFrom, turningOf } from '#shared/relativity/order';
+import { type Pair, pairOf } from '#shared/relativity/pair';
+import { type FourVelocity } from '#shared/relativity/velocity';
+import { type Instant } from '#shared/time/instant';
+import { createTaiWriter } from '#shared/time/format';
+import { type Network } from '#shared/reconcile/network';
+import { type ResultFile } from './result-folder';
+import { type SortedEvents } from './sorted-events';
+
+/** Column names of the tables, without `set` where a table of pairs has none. */
+const PAIR_COLUMNS =
+  'a,b,dt_ns,distance_m,sigma_dt_ns,sigma_gap_ns,margin_sigma,reverse_margin_sigma,interval_m2,class,proper,turning_speed,turning_sigma,toward_x,toward_y,toward_z';
+
+export const HEADERS = {
+  events: 'site,series,sequence,kind,tai,sigma_ns,sigma_from,x_m,y_m,z_m,amplitude\n',
+  coincidences: 'set,fold,sites,first_tai,span_ns,events\n',
+  pairs: `set,${PAIR_COLUMNS}\n`,
+  neighbours: `${PAIR_COLUMNS}\n`,
+  orders: 'set,a,b,frame,dt_ns,sigma_ns,order\n',
+  crowded: 'event,sites,events,sets_at_least\n',
+  setAside: 'file,line,reason,text\n',
+} as const;
+
+/** The instant of a row. */
+export const instantOfEvent = ({ events }: SortedEvents, event: number): Instant => ({
+  taiS: events.taiS[event] ?? 0,
+  ps: events.ps[event] ?? 0,
+});
+
+/** Makes the function that writes an event as a line of `events.csv`. */
+export function eventLines(network: Network, sorted: SortedEvents): (event: number) => string {
+  const codes = network.sites.map(({ code }) => code);
+  const taiText = createTaiWriter();
+  const { events, amplitude } = sorted;
+  return (event) => {
+    const size = amplitude[event] ?? NaN;
+    return (
+      `${codes[events.site[event] ?? 0] ?? ''},${sorted.seriesText(event)},${sorted.sequenceText(event)},${sorted.kindText(event)},` +
+      `${taiText(instantOfEvent(sorted, event))},${events.sigmaNs[event] ?? 0},${sorted.sigmaSourceText(event)},` +
+      `${events.xM[event] ?? 0},${events.yM[event] ?? 0},${events.zM[event] ?? 0},${Number.isNaN(size) ? '' : size}\n`
+    );
+  };
+}
+
+function verdictColumns(pair: Pair, verdict: Verdict): string {
+  const interval = intervalM2(pair.dtNs, pair.distanceM);
+  const head =
+    `${pair.dtNs},${pair.distanceM},${pair.sigmaDtNs},${verdict.sigmaGapNs},${verdict.marginSigma},${verdict.reverseMarginSigma},` +
+    `${interval},${verdict.class},`;
+  switch (verdict.class) {
+    case 'timelike':
+      return `${head}${properTimeS(interval)},,,,,`;
+    case 'undecided':
+      return `${head},,,,,`;
+    case 'spacelike': {
+      const { speedC, sigmaC, toward } = turningOf(pair);
+      return `${head}${properDistanceM(interval)},${speedC},${sigmaC},${toward[0]},${toward[1]},${toward[2]}`;
+    }
+  }
+}
+
+/** How many pairs of each class were written. */
+export type ClassCounts = Record<IntervalClass, number>;
+
+/** A frame at the instant of a set. */
+interface FrameAtSet {
+  readonly code: string;
+  readonly velocity: FourVelocity;
+}
+
+/**
+ * Writes pairs: their numbers, and their orders in the frames of the network.
+ *
+ * @param network rule, frames and errors
+ * @param sorted the events; pairs are (earlier, later) in their order
+ */
+export class PairWriter {
+  readonly counts: ClassCounts = { timelike: 0, spacelike: 0, undecided: 0 };
+
+  constructor(
+    private readonly network: Network,
+    private readonly sorted: SortedEvents,
+  ) {}
+
+  /** All pairs of a set, and their orders in every frame, taken at the set's first event. `rows` ascend. */
+  writeSet(set: string, rows: ArrayLike<number>, files: { pairs: ResultFile; orders: ResultFile }): void {
+    const frames = rows.length > 0 ? this.framesAt(rows[0] ?? 0) : [];
+    const names = Array.from(rows, (row) => this.sorted.name(row));
+    for (let first = 0; first < rows.length; first++) {
+      for (let second = first + 1; second < rows.length; second++) {
+        const pair = this.pairAt(rows[first] ?? 0, rows[second] ?? 0);
+        const label = `${set},${names[first] ?? ''},${names[second] ?? ''},`;
+        const verdict = verdictOf(pair, this.network.rule.sigmas);
+        this.counts[verdict.class]++;
+        files.pairs.write(`${label}${verdictColumns(pair, verdict)}\n`);
+        for (const { code, velocity } of frames) files.orders.write(`${label}${code},${this.orderColumns(pair, velocity)}\n`);
+      }
+    }
+  }
+
+  /** One pair without a set; answers its class. */
+  writePair(a: number, b: number, file: ResultFile): IntervalClass {
+    const pair = this.pairAt(a, b);
+    const verdict = verdictOf(pair, this.network.rule.sigmas);
+    file.write(`${this.sorted.name(a)},${this.sorted.name(b)},${verdictColumns(pair, verdict)}\n`);
+    return verdict.class;
+  }
+
+  private pairAt(a: number, b: number): Pair {
+    return pairOf(this.sorted.events, this.network.errors, a, b);
+  }
+
+  private orderColumns(pair: Pair, velocity: FourVelocity): string {
+    const dtNs = frameDtNs(pair, velocity);
+    const sigmaNs = frameSigmaNs(pair, velocity);
+    return `${dtNs},${sigmaNs},${orderFrom(dtNs, sigmaNs, this.network.rule.sigmas)}`;
+  }
+
+  private framesAt(event: number): readonly FrameAtSet[] {
+    const instant = instantOfEvent(this.sorted, event);
+    return this.network.frames.codes.map((code) => ({ code, velocity: velocityAt(this.network, code, instant) }));
+  }
+}
+
+/** A frame's velocity at an instant; a frame that cannot be had there ends the command. */
+export function velocityAt(network: Network, code: string, instant: Instant): FourVelocity {
+  const velocity = network.frames.velocityAt(code, instant);
+  if (!velocity.ok) throw new Error(`${velocity.problem.where}: ${velocity.problem.text}`);
+  return velocity.value;
+}

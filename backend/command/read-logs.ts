@@ -1,0 +1,139 @@
+import { statSync } from 'node:fs';
+import { basename } from 'node:path';
+import { type LeapSecondTable } from '#shared/time/leap-seconds';
+import { createReconciler, emptyRecord, type RecordLayout } from '#shared/reconcile/record';
+import { type Network } from '#shared/reconcile/network';
+import { addCell, columnSeed, type ContentHash } from './content-hash';
+import { readRecords } from './log-file';
+import { type Pace } from './pace';
+import { RecordStore } from './record-store';
+import { type ReadLog } from './set-aside-table';
+import { UsageProblem } from './usage-problem';
+
+/** A log named on the command line; `site` for one that has no column for it. */
+export interface LogArgument extends ReadLog {
+  readonly site: string | undefined;
+  readonly sizeBytes: number;
+}
+
+const NEEDED = ['sequence', 'reading'] as const;
+const SITE_ARGUMENT = /^([A-Za-z0-9_-]{1,24})=(.+)$/s;
+/** Files are counted in 16 bits. */
+const MOST_LOGS = 65_535;
+
+/**
+ * Reads the log arguments: `LOG.csv`, or `ORL=LOG.csv` for a log without a site column.
+ *
+ * @returns one entry an argument; a site that does not exist or a file that cannot be read is a usage problem
+ */
+export function logArguments(texts: readonly string[], network: Network): readonly LogArgument[] {
+  if (texts.length > MOST_LOGS) throw new UsageProblem(`${texts.length} logs; at most ${MOST_LOGS} are read at once`);
+  const codes = new Set(network.sites.map(({ code }) => code));
+  return texts.map((text) => {
+    const [, site, sitePath] = SITE_ARGUMENT.exec(text) ?? [];
+    if (site !== undefined && !codes.has(site))
+      throw new UsageProblem(`${text}: "${site}" is no site of the network; before the = stands one of ${[...codes].join(', ')}`);
+    const path = sitePath ?? text;
+    return { path, name: basename(path), site, sizeBytes: sizeOf(path) };
+  });
+}
+
+function sizeOf(path: string): number {
+  try {
+    const stat = statSync(path);
+    if (stat.isFile()) return stat.size;
+  } catch (fault) {
+    throw new UsageProblem(`${path}: cannot be read (${fault instanceof Error ? fault.message : String(fault)}); a CSV file is needed`);
+  }
+  throw new UsageProblem(`${path}: is not a file; a log is read twice, so it must be a file and no pipe or folder`);
+}
+
+/** What is known of a log from its header. */
+interface LogHeader {
+  readonly layout: RecordLayout;
+  /** For the content of each column; undefined for the site's, which belongs to the identity. */
+  readonly seeds: readonly (ContentHash | undefined)[];
+}
+
+function headerOf(fields: readonly string[], log: LogArgument, line: number): LogHeader {
+  const fault = (text: string): UsageProblem => new UsageProblem(`${log.path}: line ${line}: ${text}`);
+  const doubled = fields.find((name, at) => fields.indexOf(name) !== at);
+  if (doubled !== undefined) throw fault(`the column ${JSON.stringify(doubled)} stands twice; each column needs a name of its own`);
+  for (const name of NEEDED) {
+    if (!fields.includes(name))
+      throw fault(`the header ${JSON.stringify(fields.join(','))} has no column ${name}; needed are site, sequence and reading`);
+  }
+  if (!fields.includes('site') && log.site === undefined)
+    throw fault(`the header ${JSON.stringify(fields.join(','))} has no column site; name the site as in ORL=${log.name}`);
+  return {
+    layout: {
+      width: fields.length,
+      site: fields.indexOf('site'),
+      sequence: fields.indexOf('sequence'),
+      series: fields.indexOf('series'),
+      reading: fields.indexOf('reading'),
+      sigma: fields.indexOf('sigma_ns'),
+      amplitude: fields.indexOf('amplitude'),
+      kind: fields.indexOf('kind'),
+      ofSite: log.site,
+    },
+    seeds: fields.map((name) => (name === 'site' ? undefined : columnSeed(name))),
+  };
+}
+
+const BROKEN: readonly string[] = [];
+
+/**
+ * Reads all logs into a store: each record is accepted, or set aside with its reason.
+ *
+ * @returns the store, not yet finished; a log without a usable header is a usage problem
+ */
+export async function readLogs(
+  logs: readonly LogArgument[],
+  network: Network,
+  leapSeconds: LeapSecondTable,
+  watch: { pace: Pace; onBytes: (done: number) => void },
+): Promise<RecordStore> {
+  const store = new RecordStore(network.sites.length);
+  const reconcile = createReconciler(network, leapSeconds);
+  const record = emptyRecord();
+  const content = { first: 0, second: 0 };
+  let doneBytes = 0;
+  for (const [file, log] of logs.entries()) {
+    let header: LogHeader | undefined;
+    await readRecords(
+      log.path,
+      (fields, place, isWhole) => {
+        if (!header) {
+          if (!isWhole)
+            throw new UsageProblem(`${log.path}: line ${place.line}: a quote in the header is not closed; the header must be whole`);
+          header = headerOf(fields, log, place.line);
+          return;
+        }
+        record.site = -1;
+        const fault = reconcile(isWhole ? fields : BROKEN, header.layout, record);
+        if (fault) {
+          store.setAside(fault, record.site, file, place);
+          return;
+        }
+        content.first = 0;
+        content.second = 0;
+        for (let column = 0; column < fields.length; column++) {
+          const seed = header.seeds[column];
+          if (seed) addCell(seed, fields[column] ?? '', content);
+        }
+        store.put(record, content, file, place);
+      },
+      {
+        pace: watch.pace,
+        onBytes: (bytes) => {
+          doneBytes += bytes;
+          watch.onBytes(doneBytes);
+        },
+      },
+    );
+    if (!header)
+      throw new UsageProblem(`${log.path}: is empty; its first line must be a header such as site,sequence,reading,sigma_ns,amplitude`);
+  }
+  return store;
+}

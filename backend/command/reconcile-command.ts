@@ -1,0 +1,187 @@
+import { parseNetworkFile } from '#shared/contract/network-file';
+import { buildNetwork } from '#shared/contract/build-network';
+import { type Network } from '#shared/reconcile/network';
+import { earthBarycentricVelocityMS } from '../frames/ephemeris';
+import { VERSION } from '../version';
+import { writeCoincidences, writeNeighbours } from './coincidence-tables';
+import { eventLines, HEADERS, PairWriter } from './event-tables';
+import { type GroundTables, loadGroundTables, readOption } from './ground-tables';
+import { readLiveTime } from './live-time';
+import { type Pace, paceUntil } from './pace';
+import { grouped, type Progress } from './progress';
+import { logArguments, readLogs } from './read-logs';
+import { type FoundRecords } from './record-store';
+import { ResultFolder } from './result-folder';
+import { writeSetAside } from './set-aside-table';
+import { type SortedEvents, sortEvents } from './sorted-events';
+import { summaryOf } from './summary';
+import { UsageProblem } from './usage-problem';
+
+/** What the command line asks for. */
+export interface ReconcileOptions {
+  readonly network: string;
+  readonly out: string;
+  readonly logs: readonly string[];
+  readonly live?: string | undefined;
+  readonly leapSeconds?: string | undefined;
+  readonly earthOrientation?: string | undefined;
+  /** An event that is the earliest of more sets than this is crowded; at least 1. */
+  readonly limit: number;
+}
+
+/** The world around the command. */
+export interface CommandContext {
+  readonly signal: AbortSignal;
+  readonly progress: Progress;
+  /** Hears of warnings and counts, a line each. */
+  readonly say: (line: string) => void;
+}
+
+/** Lines of events written between two breaths. */
+const STRETCH = 4096;
+
+function loadNetwork(path: string, tables: GroundTables, say: (line: string) => void): Network {
+  const text = readOption('--network', path);
+  let input: unknown;
+  try {
+    input = JSON.parse(text);
+  } catch (fault) {
+    throw new UsageProblem(`${path}: is not JSON (${fault instanceof Error ? fault.message : String(fault)})`);
+  }
+  const file = parseNetworkFile(input);
+  if (!file.ok) throw UsageProblem.of(file.problem, path);
+  const { leapSeconds, rotationFor } = tables;
+  const network = buildNetwork(file.value, { leapSeconds, rotationFor, earthBarycentricVelocityMS });
+  if (!network.ok) throw UsageProblem.of(network.problem, path);
+  for (const { where, text: what } of network.warnings) say(`warning: ${where}: ${what}`);
+  return network.value;
+}
+
+/** The rows of each selection, ascending; an event that is not among the accepted ones is a usage problem. */
+function selectionRows(network: Network, sorted: SortedEvents, path: string): readonly { code: string; rows: readonly number[] }[] {
+  if (network.selections.length === 0) return [];
+  const rows = new Map<string, number>(network.selections.flatMap(({ events }) => events.map((name) => [name, -1])));
+  for (let event = 0; event < sorted.events.count; event++) {
+    const name = sorted.name(event);
+    if (rows.has(name)) rows.set(name, event);
+  }
+  return network.selections.map(({ code, events }, at) => ({
+    code,
+    rows: events
+      .map((name, k) => {
+        const row = rows.get(name) ?? -1;
+        if (row < 0)
+          throw new UsageProblem(
+            `${path}: selections[${at}].events[${k}]: is ${JSON.stringify(name)}; it must be the name of an accepted event, such as ORL:17`,
+          );
+        return row;
+      })
+      .sort((a, b) => a - b),
+  }));
+}
+
+async function writeEvents(
+  network: Network,
+  sorted: SortedEvents,
+  folder: ResultFolder,
+  watch: { pace: Pace; progress: Progress },
+): Promise<void> {
+  const file = folder.file('events.csv');
+  const lineOf = eventLines(network, sorted);
+  file.write(HEADERS.events);
+  watch.progress.begin('writing events', sorted.events.count);
+  for (let event = 0; event < sorted.events.count; event++) {
+    file.write(lineOf(event));
+    if (event % STRETCH !== 0) continue;
+    watch.progress.at(event);
+    await watch.pace.breathe();
+  }
+}
+
+/**
+ * Reconciles logs into results, from files to files: nothing is written to the folder unless everything could be.
+ *
+ * @returns how many records are set aside
+ */
+export async function reconcileFiles(options: ReconcileOptions, context: CommandContext): Promise<void> {
+  const { progress, say } = context;
+  const pace = paceUntil(context.signal);
+  const tables = loadGroundTables(options);
+  const network = loadNetwork(options.network, tables, say);
+  const logs = logArguments(options.logs, network);
+  const live = options.live === undefined ? undefined : await readLiveTime(options.live, network, tables.leapSeconds, pace);
+  const folder = new ResultFolder(options.out);
+  try {
+    progress.begin(
+      'reading logs, bytes',
+      logs.reduce((bytes, { sizeBytes }) => bytes + sizeBytes, 0),
+    );
+    const store = await readLogs(logs, network, tables.leapSeconds, { pace, onBytes: progress.at });
+    const found = store.finish();
+    progress.begin('placing events', found.rows.length);
+    const sorted = await sortEvents(network, tables.rotationFor(network.from), found, { pace, onEvents: progress.at });
+    const selections = selectionRows(network, sorted, options.network);
+    await writeEvents(network, sorted, folder, { pace, progress });
+    const results = await writePairs(network, sorted, selections, folder, { pace, progress, limit: options.limit });
+    const setAside = folder.file('set-aside.csv');
+    setAside.write(HEADERS.setAside);
+    await writeSetAside(found, logs, setAside, pace);
+    const hashes = folder.finishFiles();
+    const summary = summaryOf({ network, version: VERSION, tables, found, sorted, live, ...results, hashes });
+    folder.file('summary.json').write(`${JSON.stringify(summary, null, 2)}\n`);
+    folder.finishFiles();
+    context.signal.throwIfAborted();
+    folder.publish([...hashes.keys(), 'summary.json']);
+    progress.end();
+    say(closingLine(found, sorted, results.coincidences.byFold));
+  } catch (fault) {
+    progress.end();
+    folder.discard();
+    throw fault;
+  }
+}
+
+async function writePairs(
+  network: Network,
+  sorted: SortedEvents,
+  selections: readonly { code: string; rows: readonly number[] }[],
+  folder: ResultFolder,
+  watch: { pace: Pace; progress: Progress; limit: number },
+) {
+  const file = (name: string, header: string) => {
+    const made = folder.file(name);
+    made.write(header);
+    return made;
+  };
+  const files = {
+    coincidences: file('coincidences.csv', HEADERS.coincidences),
+    pairs: file('pairs.csv', HEADERS.pairs),
+    orders: file('orders.csv', HEADERS.orders),
+    crowded: file('crowded.csv', HEADERS.crowded),
+  };
+  const neighbours = file('neighbours.csv', HEADERS.neighbours);
+  const { pace, progress } = watch;
+  const pairs = new PairWriter(network, sorted);
+  progress.begin('finding coincidences', sorted.events.count);
+  const coincidences = await writeCoincidences(network, sorted, { limit: watch.limit, pairs, files, pace, onEvents: progress.at });
+  for (const { code, rows } of selections) {
+    pairs.writeSet(code, rows, files);
+    await pace.breathe();
+  }
+  const withinNs = network.neighboursWithinNs;
+  progress.begin('writing neighbours', sorted.events.count);
+  const written =
+    withinNs === undefined
+      ? undefined
+      : await writeNeighbours(sorted, coincidences.inCoincidence, { withinNs, pairs, file: neighbours, pace, onEvents: progress.at });
+  return { coincidences, pairs: pairs.counts, neighbours: written };
+}
+
+function closingLine(found: FoundRecords, sorted: SortedEvents, byFold: ReadonlyMap<number, number>): string {
+  const repeated = found.counts.repeated.reduce((total, count) => total + count, 0);
+  const sets = [...byFold.values()].reduce((total, count) => total + count, 0);
+  return (
+    `${grouped(sorted.events.count)} events, ${grouped(sets)} coincidences; ` +
+    `${grouped(found.setAsideCount)} records set aside, ${grouped(repeated)} repeated`
+  );
+}

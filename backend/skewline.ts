@@ -1,0 +1,87 @@
+import { Command, CommanderError, InvalidArgumentError } from 'commander';
+import { faultText } from './command/result-folder';
+import { reconcileFiles } from './command/reconcile-command';
+import { terminalProgress } from './command/progress';
+import { UsageProblem } from './command/usage-problem';
+import { VERSION } from './version';
+
+/** Exit status: unusable arguments or files, and everything else that went wrong. */
+const UNUSABLE = 2;
+const FAILED = 1;
+
+const DEFAULT_LIMIT = 10_000;
+
+const say = (line: string): void => void process.stderr.write(`${line}\n`);
+
+/** An abort signal that Ctrl-C and SIGTERM set off. */
+function stopSignal(): AbortSignal {
+  const controller = new AbortController();
+  for (const name of ['SIGINT', 'SIGTERM'] as const)
+    process.once(name, () => controller.abort(new Error(`stopped by ${name}; nothing was written`)));
+  return controller.signal;
+}
+
+function limitOf(text: string): number {
+  const value = Number(text);
+  if (!/^\d+$/.test(text) || !Number.isSafeInteger(value) || value < 1)
+    throw new InvalidArgumentError('it must be a whole number, at least 1.');
+  return value;
+}
+
+interface ReconcileFlags {
+  network: string;
+  out: string;
+  live?: string;
+  leapSeconds?: string;
+  earthOrientation?: string;
+  limit: number;
+}
+
+function program(): Command {
+  const skewline = new Command('skewline')
+    .description(
+      'Reconciles the trigger logs of a distributed detector network: one time, chosen inertial frames, coincidences, and the causal order of every pair.',
+    )
+    .version(VERSION)
+    .showHelpAfterError('(skewline --help tells what is possible)')
+    .exitOverride();
+  skewline
+    .command('reconcile')
+    .summary('from log files to events, coincidences, pairs and orders')
+    .description(
+      'Reads a network file and the trigger logs of its sites, and writes events, coincidences, pairs, orders in frames, neighbours, crowded events, what was set aside and a summary to a folder. The files are described in the README.',
+    )
+    .argument('<log...>', 'CSV logs; ORL=path.csv for a log without a site column')
+    .requiredOption('--network <file>', 'the network: sites, clocks, frames, rule (JSON)')
+    .requiredOption('--out <folder>', 'where the results go; each file appears whole or not at all')
+    .option('--live <file>', 'spans in which sites could trigger (CSV: site,from,to)')
+    .option('--leap-seconds <file>', 'an IERS leap-seconds.list (default: the one shipped)')
+    .option('--earth-orientation <file>', 'an IERS finals2000A file (default: UT1 constant over the run, pole 0)')
+    .option('--limit <n>', 'an event that is the earliest of more sets than this is listed as crowded', limitOf, DEFAULT_LIMIT)
+    .addHelpText(
+      'after',
+      `
+Example:
+  npx skewline reconcile --network network.json --out results ORL.csv VES=vestmark.csv
+
+Exit status: 0 done (records set aside are counted on stderr), 2 unusable arguments or network file, 1 anything else.`,
+    )
+    .action(async (logs: string[], flags: ReconcileFlags) => {
+      await reconcileFiles({ ...flags, logs }, { signal: stopSignal(), progress: terminalProgress(process.stderr), say });
+    });
+  return skewline;
+}
+
+/** Runs the command line and answers the exit status. */
+async function run(args: readonly string[]): Promise<number> {
+  try {
+    await program().parseAsync(args, { from: 'user' });
+    return 0;
+  } catch (fault) {
+    if (fault instanceof CommanderError) return fault.exitCode === 0 ? 0 : UNUSABLE;
+    say(`skewline: ${faultText(fault)}`);
+    return fault instanceof UsageProblem ? UNUSABLE : FAILED;
+  }
+}
+
+process.exitCode = await run(process.argv.slice(2));
