@@ -10,6 +10,7 @@ import { VERSION } from './version';
 
 const HEADERS_TIMEOUT_MS = 10_000;
 const REQUEST_TIMEOUT_MS = 30_000;
+const LOOK_FOR_LATE_MS = 1_000;
 const FINISH_MS = 3_000; // what requests in flight may take once the server is told to end
 const END_MS = 4_500; // by when it has ended whatever happens; whoever started it may count on 5 s
 const UNUSABLE = 2;
@@ -27,7 +28,11 @@ const log = pino({ level: config.logLevel }, pino.destination({ dest: 2, sync: t
 
 let db: Db | undefined;
 // The port is taken before the database is touched: another server that holds it may be using the same one.
-const server = createServer({ headersTimeout: HEADERS_TIMEOUT_MS, requestTimeout: REQUEST_TIMEOUT_MS });
+const server = createServer({
+  headersTimeout: HEADERS_TIMEOUT_MS,
+  requestTimeout: REQUEST_TIMEOUT_MS,
+  connectionsCheckingInterval: LOOK_FOR_LATE_MS,
+});
 server.on('error', (fault) => refuse(listenFault(fault)));
 server.listen(config.port, config.host, () => {
   db = openOrRefuse(config.dataDir);

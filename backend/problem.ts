@@ -6,7 +6,8 @@ export function sendProblem(res: Response, status: number, title: string, detail
 }
 
 /** The end of every way that leads nowhere. */
-export const notFound: RequestHandler = (req, res) => sendProblem(res, 404, 'Not found', `Nothing is served at ${req.method} ${req.path}.`);
+export const notFound: RequestHandler = (req, res) =>
+  sendProblem(res, 404, 'Not found', `Nothing is served at ${req.method} ${req.baseUrl}${req.path}.`);
 
 /** Faults of a request are told as they are; of our own faults only the id goes out, the rest into the log. */
 export const failed: ErrorRequestHandler = (fault: unknown, req, res, next) => {

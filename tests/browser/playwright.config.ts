@@ -1,0 +1,16 @@
+import { defineConfig } from '@playwright/test';
+
+export default defineConfig({
+  testDir: '.',
+  testMatch: '*.e2e.ts',
+  outputDir: '../../test-results/browser',
+  reporter: [['line'], ['json', { outputFile: '../../test-results/browser.json' }]],
+  forbidOnly: Boolean(process.env['CI']),
+  workers: 1,
+  timeout: 60_000,
+  use: {
+    browserName: 'chromium',
+    launchOptions: { executablePath: process.env['CHROMIUM'] ?? '/usr/bin/chromium' },
+    screenshot: 'only-on-failure',
+  },
+});

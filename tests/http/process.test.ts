@@ -1,0 +1,210 @@
+import { type AddressInfo, connect, createServer } from 'node:net';
+import { chmodSync, mkdirSync, readdirSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
+import Database from 'better-sqlite3';
+import { describe, expect, it } from 'vitest';
+import { newFolder } from '../support/folder';
+import { type Ended, runServer, startServer } from '../support/server';
+
+const END_MS = 5_000; // what whoever stops the server may count on
+const USABLE_LINE = /^skewline: [^\n]+\n$/;
+
+const refused = (env: Readonly<Record<string, string>>): Promise<Ended> => runServer({ DATA_DIR: newFolder('refused'), ...env }).ended;
+
+describe('a configuration that cannot be used', () => {
+  it.each([
+    [{ PORT: 'http' }, 'PORT="http" cannot be used: it must be a whole number from 0 to 65535, where 0 takes any free port.'],
+    [{ PORT: '65536' }, 'PORT="65536" cannot be used: it must be a whole number from 0 to 65535, where 0 takes any free port.'],
+    [{ PORT: '-1' }, 'PORT="-1" cannot be used: it must be a whole number from 0 to 65535, where 0 takes any free port.'],
+    [{ HOST: 'my host' }, 'HOST="my host" cannot be used: it must be an address or name of this machine, such as 127.0.0.1 or ::1.'],
+    [
+      { HOST: '192.0.2.1', PORT: '0' },
+      'HOST="192.0.2.1" cannot be listened on (EADDRNOTAVAIL): it must be an address or name of this machine.',
+    ],
+    [{ LOG_LEVEL: 'loud' }, 'LOG_LEVEL="loud" cannot be used: it must be one of fatal, error, warn, info, debug, trace, silent.'],
+    [{ NODE_ENV: 'live' }, 'NODE_ENV="live" cannot be used: it must be one of development, production, test.'],
+  ])('is one line and status 2: %j', async (env, line) => {
+    const { code, stdout, stderr } = await refused(env);
+    expect(stderr).toBe(`skewline: ${line}\n`);
+    expect(stdout).toBe('');
+    expect(code).toBe(2);
+  });
+
+  it('is told before anything is written', async () => {
+    const folder = join(newFolder('untouched'), 'data');
+    await refused({ DATA_DIR: folder, PORT: 'x' });
+    expect(statSync(folder, { throwIfNoEntry: false })).toBeUndefined();
+  });
+
+  it('is a port that is taken', async () => {
+    const holder = createServer();
+    await new Promise<void>((resolve) => holder.listen(0, '127.0.0.1', resolve));
+    const { port } = holder.address() as AddressInfo;
+    try {
+      const { code, stderr } = await refused({ PORT: String(port) });
+      expect(stderr).toBe(`skewline: PORT=${port} is taken on 127.0.0.1: set PORT to a free one, or to 0 for any.\n`);
+      expect(code).toBe(2);
+    } finally {
+      holder.close();
+    }
+  });
+
+  it('is a data folder that is a file', async () => {
+    const file = join(newFolder('file'), 'data');
+    writeFileSync(file, '');
+    const { code, stderr } = await refused({ PORT: '0', DATA_DIR: file });
+    expect(stderr).toMatch(USABLE_LINE);
+    expect(stderr).toContain(`DATA_DIR="${file}" cannot be used: it must be a folder that can be written`);
+    expect(code).toBe(2);
+  });
+});
+
+describe('a database that cannot be used', () => {
+  it('is one that a newer program made, and it is left as it was', async () => {
+    const folder = newFolder('newer');
+    await (await startServer({ DATA_DIR: folder })).stop();
+    const file = join(folder, 'skewline.sqlite');
+    const newer = new Database(file);
+    newer.prepare("INSERT INTO __drizzle_migrations (hash, created_at) VALUES ('of the future', 9999999999999)").run();
+    newer.close();
+    const before = statSync(file).mtimeMs;
+    const { code, stderr } = await refused({ PORT: '0', DATA_DIR: folder });
+    expect(stderr).toMatch(USABLE_LINE);
+    expect(stderr).toContain('was made by a newer Skewline (1 of its migrations are unknown here)');
+    expect(code).toBe(2);
+    expect(statSync(file).mtimeMs).toBe(before);
+  });
+
+  it('is a file that is none', async () => {
+    const folder = newFolder('garbage');
+    writeFileSync(join(folder, 'skewline.sqlite'), 'this is a letter to a friend, '.repeat(200));
+    const { code, stderr } = await refused({ PORT: '0', DATA_DIR: folder });
+    expect(stderr).toMatch(USABLE_LINE);
+    expect(stderr).toContain('is damaged (SQLITE_NOTADB)');
+    expect(code).toBe(2);
+  });
+});
+
+describe('the data folder', () => {
+  it('is made for its owner alone', async () => {
+    const folder = join(newFolder('modes'), 'deep', 'data');
+    const server = await startServer({ DATA_DIR: folder });
+    try {
+      expect(statSync(folder).mode & 0o777).toBe(0o700);
+      const files = readdirSync(folder);
+      expect(files).toContain('skewline.sqlite');
+      for (const name of files) expect(statSync(join(folder, name)).mode & 0o777, name).toBe(0o600);
+    } finally {
+      await server.stop();
+    }
+  });
+
+  it('keeps its database closed to others when it was found open', async () => {
+    const folder = newFolder('wide');
+    mkdirSync(folder, { recursive: true });
+    writeFileSync(join(folder, 'skewline.sqlite'), '');
+    chmodSync(join(folder, 'skewline.sqlite'), 0o644);
+    await (await startServer({ DATA_DIR: folder })).stop();
+    expect(statSync(join(folder, 'skewline.sqlite')).mode & 0o777).toBe(0o600);
+  });
+
+  it('is the same deployment after a restart', async () => {
+    const folder = newFolder('restart');
+    const asked = async (): Promise<unknown> => {
+      const server = await startServer({ DATA_DIR: folder });
+      const body: unknown = await (await fetch(new URL('/api/health', server.url))).json();
+      await server.stop();
+      return body;
+    };
+    expect(await asked()).toEqual(await asked());
+  });
+});
+
+describe('a database that goes while the server runs', () => {
+  const statusAfter = async (harm: (file: string) => void): Promise<{ status: number; body: unknown; log: string }> => {
+    const folder = newFolder('gone');
+    const server = await startServer({ DATA_DIR: folder });
+    harm(join(folder, 'skewline.sqlite'));
+    const res = await fetch(new URL('/api/health', server.url));
+    const body: unknown = await res.json();
+    return { status: res.status, body, log: (await server.stop()).stderr };
+  };
+  const unavailable = {
+    type: 'about:blank',
+    title: 'Database unavailable',
+    status: 503,
+    id: expect.stringMatching(/^[0-9a-f-]{36}$/) as string,
+  };
+
+  it('is told when the file was deleted', async () => {
+    const { status, body } = await statusAfter((file) => rmSync(file));
+    expect(status).toBe(503);
+    expect(body).toEqual({ ...unavailable, detail: expect.stringContaining('moved, replaced or deleted') as string });
+  });
+
+  it('is told when another file stands in its place', async () => {
+    const { status } = await statusAfter((file) => {
+      writeFileSync(`${file}.new`, '');
+      renameSync(`${file}.new`, file);
+    });
+    expect(status).toBe(503);
+  });
+
+  it('is told when it no longer answers, with the reason in the log alone', async () => {
+    const { status, body, log } = await statusAfter((file) => {
+      const other = new Database(file);
+      other.exec('DROP TABLE deployment');
+      other.close();
+    });
+    expect(status).toBe(503);
+    expect(body).toEqual({ ...unavailable, detail: expect.stringContaining('does not answer') as string });
+    expect(log).toContain('no such table: deployment');
+    expect(log).toContain((body as { id: string }).id);
+  });
+});
+
+describe('the end', () => {
+  it.each(['SIGTERM', 'SIGINT'] as const)('comes within 5 s of %s, with status 0 and everything in the database file', async (signal) => {
+    const folder = newFolder('end');
+    const server = await startServer({ DATA_DIR: folder });
+    await fetch(new URL('/api/health', server.url)); // leaves an idle connection
+    const startMs = performance.now();
+    const { code, stderr } = await server.stop(signal);
+    expect(performance.now() - startMs).toBeLessThan(END_MS);
+    expect(code).toBe(0);
+    expect(stderr).toBe('');
+    expect(readdirSync(folder)).toEqual(['skewline.sqlite']); // the write-ahead log is gone
+  });
+
+  it('comes within 5 s although a client has not finished its request', async () => {
+    const server = await startServer({ DATA_DIR: newFolder('end-busy') });
+    const { port } = new URL(server.url);
+    const socket = connect(Number(port), '127.0.0.1');
+    socket.on('error', () => undefined);
+    await new Promise<void>((resolve) => socket.write('GET / HTTP/1.1\r\nHost: x\r\n', () => { resolve(); })); // prettier-ignore
+    const startMs = performance.now();
+    const { code } = await server.stop();
+    expect(performance.now() - startMs).toBeLessThan(END_MS);
+    expect(code).toBe(0);
+    socket.destroy();
+  });
+
+  it('prints one URL and nothing else on the way', async () => {
+    const server = await startServer({ DATA_DIR: newFolder('words') });
+    await fetch(server.url);
+    const { stdout, stderr } = await server.stop();
+    expect(stdout).toBe(`Skewline is at ${server.url}\n`);
+    expect(stderr).toBe('');
+  });
+});
+
+describe('the log', () => {
+  it('has one line for each request, without its query and headers', async () => {
+    const server = await startServer({ DATA_DIR: newFolder('log'), LOG_LEVEL: 'debug' });
+    await fetch(new URL('/api/health?token=secret', server.url), { headers: { authorization: 'secret' } });
+    const lines = (await server.stop()).stderr.trim().split('\n');
+    expect(lines).toHaveLength(1);
+    expect(lines[0]).not.toContain('secret');
+    expect(JSON.parse(lines[0]!)).toMatchObject({ req: { method: 'GET', path: '/api/health' }, res: { status: 200 } });
+  });
+});
