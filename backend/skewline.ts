@@ -1,5 +1,5 @@
 import { Command, CommanderError, InvalidArgumentError } from 'commander';
-import { faultText } from './command/result-folder';
+import { faultText } from './command/fault-text';
 import { reconcileFiles } from './command/reconcile-command';
 import { terminalProgress } from './command/progress';
 import { UsageProblem } from './command/usage-problem';
@@ -24,7 +24,7 @@ function stopSignal(): AbortSignal {
 function limitOf(text: string): number {
   const value = Number(text);
   if (!/^\d+$/.test(text) || !Number.isSafeInteger(value) || value < 1)
-    throw new InvalidArgumentError('it must be a whole number, at least 1.');
+    throw new InvalidArgumentError('It must be a whole number, at least 1.');
   return value;
 }
 
@@ -43,7 +43,15 @@ function program(): Command {
       'Reconciles the trigger logs of a distributed detector network: one time, chosen inertial frames, coincidences, and the causal order of every pair.',
     )
     .version(VERSION)
-    .showHelpAfterError('(skewline --help tells what is possible)')
+    .configureOutput({
+      outputError: (text) =>
+        say(
+          `skewline: ${text
+            .replace(/^error: /, '')
+            .trim()
+            .replaceAll('\n', ' ')}`,
+        ),
+    })
     .exitOverride();
   skewline
     .command('reconcile')

@@ -1,5 +1,4 @@
 import { createHash } from 'node:crypto';
-import { readFileSync } from 'node:fs';
 import { constantOrientation, type EarthOrientation } from '#shared/earth/earth-orientation';
 import { readFinalsFile } from '#shared/earth/finals-file';
 import { type EarthRotation, earthRotation } from '#shared/earth/rotation';
@@ -8,6 +7,7 @@ import { createTaiWriter } from '#shared/time/format';
 import { compareInstants, type Instant } from '#shared/time/instant';
 import { type LeapSecondTable, parseLeapSeconds, taiMinusUtcOnDay, utcDayAt } from '#shared/time/leap-seconds';
 import { SHIPPED_LEAP_SECONDS_LIST } from '#shared/time/shipped-leap-seconds';
+import { readOption } from './readable-file';
 import { UsageProblem } from './usage-problem';
 
 /** The tables of time and Earth that a reconciliation rests on, and what is to be said of them. */
@@ -22,15 +22,6 @@ export interface GroundTables {
 }
 
 const sha256 = (text: string): string => createHash('sha256').update(text).digest('hex');
-
-/** Reads a text file named by an option; a file that cannot be read is a usage problem. */
-export function readOption(option: string, path: string): string {
-  try {
-    return readFileSync(path, 'utf8');
-  } catch (fault) {
-    throw new UsageProblem(`${option}: ${path} cannot be read (${fault instanceof Error ? fault.message : String(fault)})`);
-  }
-}
 
 /**
  * Loads the leap-second list (the shipped one unless a file is named) and the Earth-orientation table, if one is named.

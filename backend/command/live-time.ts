@@ -3,6 +3,7 @@ import { compareInstants, type Instant, secondsBetween } from '#shared/time/inst
 import { type LeapSecondTable } from '#shared/time/leap-seconds';
 import { parseStatedTime } from '#shared/time/stated-time';
 import { readRecords } from './log-file';
+import { checkReadable } from './readable-file';
 import { type Pace } from './pace';
 import { UsageProblem } from './usage-problem';
 
@@ -61,6 +62,7 @@ export async function readLiveTime(path: string, network: Network, table: LeapSe
     if (!time.ok) throw UsageProblem.of(time.problem, path);
     return time.value.instant;
   };
+  checkReadable(path, '--live: ');
   await readRecords(
     path,
     (fields, { line }, isWhole) => {

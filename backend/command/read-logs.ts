@@ -1,4 +1,3 @@
-import { statSync } from 'node:fs';
 import { basename } from 'node:path';
 import { type LeapSecondTable } from '#shared/time/leap-seconds';
 import { createReconciler, emptyRecord, type RecordLayout } from '#shared/reconcile/record';
@@ -6,6 +5,7 @@ import { type Network } from '#shared/reconcile/network';
 import { addCell, columnSeed, type ContentHash } from './content-hash';
 import { readRecords } from './log-file';
 import { type Pace } from './pace';
+import { checkReadable } from './readable-file';
 import { RecordStore } from './record-store';
 import { type ReadLog } from './set-aside-table';
 import { UsageProblem } from './usage-problem';
@@ -34,18 +34,8 @@ export function logArguments(texts: readonly string[], network: Network): readon
     if (site !== undefined && !codes.has(site))
       throw new UsageProblem(`${text}: "${site}" is no site of the network; before the = stands one of ${[...codes].join(', ')}`);
     const path = sitePath ?? text;
-    return { path, name: basename(path), site, sizeBytes: sizeOf(path) };
+    return { path, name: basename(path), site, sizeBytes: checkReadable(path) };
   });
-}
-
-function sizeOf(path: string): number {
-  try {
-    const stat = statSync(path);
-    if (stat.isFile()) return stat.size;
-  } catch (fault) {
-    throw new UsageProblem(`${path}: cannot be read (${fault instanceof Error ? fault.message : String(fault)}); a CSV file is needed`);
-  }
-  throw new UsageProblem(`${path}: is not a file; a log is read twice, so it must be a file and no pipe or folder`);
 }
 
 /** What is known of a log from its header. */

@@ -5,10 +5,12 @@ import { earthBarycentricVelocityMS } from '../frames/ephemeris';
 import { VERSION } from '../version';
 import { writeCoincidences, writeNeighbours } from './coincidence-tables';
 import { eventLines, HEADERS, PairWriter } from './event-tables';
-import { type GroundTables, loadGroundTables, readOption } from './ground-tables';
+import { faultText } from './fault-text';
+import { type GroundTables, loadGroundTables } from './ground-tables';
 import { readLiveTime } from './live-time';
 import { type Pace, paceUntil } from './pace';
 import { grouped, type Progress } from './progress';
+import { readOption } from './readable-file';
 import { logArguments, readLogs } from './read-logs';
 import { type FoundRecords } from './record-store';
 import { ResultFolder } from './result-folder';
@@ -46,7 +48,7 @@ function loadNetwork(path: string, tables: GroundTables, say: (line: string) => 
   try {
     input = JSON.parse(text);
   } catch (fault) {
-    throw new UsageProblem(`${path}: is not JSON (${fault instanceof Error ? fault.message : String(fault)})`);
+    throw new UsageProblem(`${path}: is not JSON (${faultText(fault)})`);
   }
   const file = parseNetworkFile(input);
   if (!file.ok) throw UsageProblem.of(file.problem, path);

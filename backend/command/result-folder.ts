@@ -1,6 +1,7 @@
 import { createHash, type Hash } from 'node:crypto';
 import { closeSync, existsSync, fsyncSync, mkdirSync, mkdtempSync, openSync, renameSync, rmSync, statSync, writeSync } from 'node:fs';
 import { basename, dirname, join, resolve } from 'node:path';
+import { faultText } from './fault-text';
 import { UsageProblem } from './usage-problem';
 
 /** Characters that are gathered before they are written. */
@@ -99,6 +100,3 @@ function makeStage(folder: string, path: string, isNew: boolean): string {
     throw new UsageProblem(`--out: "${path}" cannot be made (${faultText(fault)}); it must be a place where you may write`);
   }
 }
-
-/** A system fault in a few words, without a stack. */
-export const faultText = (fault: unknown): string => (fault instanceof Error ? fault.message : String(fault));

@@ -43,6 +43,20 @@ export function timeAt(text: string, path: string, table: LeapSecondTable): Outc
   return time.ok ? valueOf(time.value.instant, time.warnings) : time;
 }
 
+/** The first event that stands twice in one selection. */
+function eventNamedTwice(file: NetworkFile): ReturnType<typeof problemOf> | undefined {
+  for (const [at, { events }] of (file.selections ?? []).entries()) {
+    const again = events.findIndex((name, k) => events.indexOf(name) !== k);
+    if (again >= 0)
+      return problemOf(
+        'network-twice',
+        `selections[${at}].events[${again}]`,
+        `is "${events[again] ?? ''}" for the second time; it must be an event that the selection does not name yet`,
+      );
+  }
+  return undefined;
+}
+
 /** The run's times and the origin. */
 function readRun(file: NetworkFile, table: LeapSecondTable): Outcome<{ from: Instant; to: Instant | undefined; origin: Instant }> {
   const warnings: Problem[] = [];
@@ -72,7 +86,7 @@ function readSites(file: NetworkFile, clocks: ClockRows, rotation: EarthRotation
     }
     const { geodetic, itrs_m } = site.position;
     const itrsM: Vec3 = geodetic
-      ? geodeticToItrs({ latitudeDeg: geodetic.latitude_deg, longitudeDeg: geodetic.longitude_deg, heightM: geodetic.height_m })
+      ? geodeticToItrs({ latitudeDeg: geodetic.latitude_deg, longitudeDeg: geodetic.longitude_deg, heightM: geodetic.height_m ?? 0 })
       : (itrs_m ?? [0, 0, 0]);
     sites.push({
       code: site.code,
@@ -119,6 +133,8 @@ export function buildNetwork(file: NetworkFile, ground: NetworkGround): Outcome<
     twice(file.sites, 'sites') ??
     twice(file.selections, 'selections');
   if (doubled) return doubled;
+  const namedTwice = eventNamedTwice(file);
+  if (namedTwice) return namedTwice;
   const run = readRun(file, ground.leapSeconds);
   if (!run.ok) return run;
   const clocks = readClocks(file, ground.leapSeconds);

@@ -21,12 +21,8 @@ export const code = () => z.custom<string>((value) => typeof value === 'string' 
 
 export const listOf = <T extends z.ZodType>(item: T, what: string) => z.array(item, { error: `a list of ${what}` });
 
-/** Three finite numbers. */
-export const triple = (right: string) =>
-  z.custom<readonly [number, number, number]>(
-    (value) => Array.isArray(value) && value.length === 3 && value.every((part) => typeof part === 'number' && Number.isFinite(part)),
-    { error: right },
-  );
+/** Three finite numbers; `right` says what the list holds, each part what it is. */
+export const triple = (right: string, part: string) => z.tuple([numberThat(part), numberThat(part), numberThat(part)], { error: right });
 
 /** An object that refuses fields it does not know. */
 export const record = <T extends z.ZodRawShape>(shape: T) => z.strictObject(shape, { error: (issue) => recordError(issue, shape) });

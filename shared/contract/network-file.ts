@@ -40,9 +40,9 @@ const position = record({
   geodetic: record({
     latitude_deg: numberThat('degrees from -90 to 90', (value) => Math.abs(value) <= 90),
     longitude_deg: numberThat('degrees from -360 to 360', (value) => Math.abs(value) <= 360),
-    height_m: numberThat('metres above the ellipsoid'),
+    height_m: numberThat('metres above the ellipsoid').optional(),
   }).optional(),
-  itrs_m: triple('a list of three numbers: Earth-fixed x, y, z in metres').optional(),
+  itrs_m: triple('a list of three numbers: Earth-fixed x, y, z in metres', 'a number of metres').optional(),
 }).refine(({ geodetic, itrs_m }) => (geodetic === undefined) !== (itrs_m === undefined), {
   error: 'either "geodetic" or "itrs_m", and not both',
 });
@@ -80,7 +80,7 @@ const toward = record({
 const speed = (unit: string) => notNegative(unit).optional();
 
 const velocity = record({
-  beta: triple('a list of three numbers in c').optional(),
+  beta: triple('a list of three numbers in c', 'a number in c').optional(),
   speed_c: speed('c'),
   speed_km_s: speed('km/s'),
   rapidity: speed('rapidity'),
@@ -130,7 +130,10 @@ export const networkFileSchema = record({
   run: record({ name: text('a text').optional(), from: time(), to: time().optional() }),
   origin: record({ time: time().optional() }).optional(),
   references: listOf(record({ code: code(), sigma_ns: notNegative('nanoseconds').optional() }), 'references').optional(),
-  clocks: listOf(record({ code: code(), segments: listOf(segment, 'clock segments') }), 'clocks').optional(),
+  clocks: listOf(
+    record({ code: code(), segments: listOf(segment, 'clock segments').min(1, { error: 'a list with at least one segment' }) }),
+    'clocks',
+  ).optional(),
   sites: listOf(site, 'sites'),
   frames: listOf(frame, 'frames').optional(),
   rule,
