@@ -28,6 +28,9 @@ export interface PlainNetwork {
   readonly sites: readonly PlainSite[];
   readonly segments: readonly PlainSegment[];
   readonly referenceSigmaNs: readonly number[];
+  /** Gamma-betas of the window's frame at the base instant, and how much they change until `spreadPs`. */
+  readonly frame: readonly number[];
+  readonly frameChange: readonly number[];
   /** All events lie in [0, spreadPs] after the base instant. */
   readonly spreadPs: number;
 }
@@ -41,8 +44,6 @@ export interface PlainEvent {
   readonly readingSigmaNs: number;
   readonly segment: number;
   readonly sinceEpochDays: number;
-  /** Gamma-betas of the window's frame at the event. */
-  readonly frame: readonly number[];
 }
 
 /** What the finder should say: rows of the events in their order. */
@@ -55,6 +56,10 @@ export const BASE_S = 1_700_000_000;
 
 export const placeOf = (site: PlainSite, atPs: number): number[] =>
   site.placeM.map((x, axis) => x + ((site.velocityMS[axis] ?? 0) * atPs) / 1e12);
+
+/** The window's frame as taken at an event: gamma-betas. */
+export const frameAt = (network: PlainNetwork, atPs: number): number[] =>
+  network.frame.map((u, axis) => u + ((network.frameChange[axis] ?? 0) * atPs) / network.spreadPs);
 
 /** Time, then site, series, sequence. */
 export function inOrder(events: readonly PlainEvent[]): PlainEvent[] {
@@ -132,7 +137,10 @@ export function boundsOf(network: PlainNetwork): KernelInput['bounds'] {
 
 /** The kernel's input for events that are in order. */
 export function kernelInputOf(network: PlainNetwork, sorted: readonly PlainEvent[]): KernelInput {
-  const velocities = sorted.flatMap(({ frame }) => [Math.sqrt(1 + length(frame) ** 2), ...frame]);
+  const velocities = sorted.flatMap(({ atPs }) => {
+    const frame = frameAt(network, atPs);
+    return [Math.sqrt(1 + length(frame) ** 2), ...frame];
+  });
   return {
     events: columnsOf(network, sorted),
     errors: errorTablesOf(network),
@@ -180,8 +188,9 @@ export function plainNear(network: PlainNetwork, a: PlainEvent, b: PlainEvent): 
   const dx = minus(placeOf(q, b.atPs), placeOf(p, a.atPs));
   if (window.kind === 'fixed') {
     if (!hasMovingFrame(network.rule)) return dtNs <= window.widthNs;
-    const gamma = Math.sqrt(1 + length(a.frame) ** 2);
-    const along = a.frame.reduce((sum, u, axis) => sum + u * dx[axis]!, 0);
+    const frame = frameAt(network, a.atPs);
+    const gamma = Math.sqrt(1 + length(frame) ** 2);
+    const along = frame.reduce((sum, u, axis) => sum + u * dx[axis]!, 0);
     return Math.abs(gamma * dtNs - (along / C_M_S) * 1e9) <= window.widthNs;
   }
   const positionNs2 = ((p.positionSigmaM ** 2 + q.positionSigmaM ** 2) * 1e18) / C_M_S ** 2;
@@ -218,7 +227,8 @@ export function plainFindings(network: PlainNetwork, sorted: readonly PlainEvent
   return { sets, crowds };
 }
 
-const spread = (min: number, max: number): fc.Arbitrary<number> => fc.integer({ min: 0, max: 1e6 }).map((k) => min + ((max - min) * k) / 1e6);
+const spread = (min: number, max: number): fc.Arbitrary<number> =>
+  fc.integer({ min: 0, max: 1e6 }).map((k) => min + ((max - min) * k) / 1e6);
 const vector = (size: number): fc.Arbitrary<number[]> => fc.array(spread(-size, size), { minLength: 3, maxLength: 3 });
 
 /** What kinds of networks are drawn, with the scales that make their windows overlap. */
@@ -308,6 +318,8 @@ export function networkAndEvents(draw: Draw = {}): fc.Arbitrary<{ network: Plain
         { minLength: 3, maxLength: 3 },
       ),
       referenceSigmaNs: fc.constant([4, 0]),
+      frame: fc.oneof(still, vector(1)),
+      frameChange: fc.oneof(still, vector(0.5)),
       spreadPs: fc.constant(spreadPs + 1e6),
     });
     return network.chain((made) =>
@@ -323,7 +335,6 @@ export function networkAndEvents(draw: Draw = {}): fc.Arbitrary<{ network: Plain
             readingSigmaNs: fc.constantFrom(...readingSigmaNs),
             segment: fc.integer({ min: -1, max: 2 }),
             sinceEpochDays: fc.constantFrom(0, 0.5, 3),
-            frame: fc.oneof(still, vector(1)),
           }),
           { minLength: least, maxLength: most, size: 'max', selector: (e) => `${e.site}:${e.series}:${e.sequence}` },
         )

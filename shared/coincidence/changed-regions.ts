@@ -1,0 +1,77 @@
+import { type HeldEvents } from './held-events';
+import { type Region } from './region-search';
+import { earlierBy, laterBy } from './settlement';
+import { type WindowBounds } from './window-bounds';
+
+/** Where changes act. */
+export interface ChangeContext {
+  readonly held: HeldEvents;
+  readonly bounds: WindowBounds;
+  /** Widest window without errors, ns. */
+  readonly geometryNs: number;
+  /** How many events at the beginning of the order are settled: those are never asked for. */
+  readonly settled: number;
+}
+
+interface OpenRegion {
+  readonly from: number;
+  to: number;
+  readonly changed: number[];
+}
+
+/**
+ * Splits changes into regions: stretches of the order that hold everything that the changes can act on, and all its neighbours.
+ *
+ * An event acts on what begins with itself and with those that it may be near. Whether those are coincidences depends on their own
+ * neighbours. So a region holds what is within two windows of a change, and asks for the events within one.
+ *
+ * @param changed slots in the order of events, gone ones among them
+ * @returns regions one after the other, without a common event
+ */
+export function* regionsAround(changed: readonly number[], context: ChangeContext): Generator<Region> {
+  const { held, geometryNs, bounds } = context;
+  const farthestNs = held.farthestReachNs();
+  let open: OpenRegion | undefined;
+  for (const slot of changed) {
+    const instant = held.instantOf(slot);
+    const twiceNs = 2 * geometryNs + ((held.reachNs[slot] ?? 0) + 3 * farthestNs) * bounds.reachFactor;
+    const from = held.countBefore(earlierBy(instant, twiceNs), 'before it only');
+    const to = held.countBefore(laterBy(instant, twiceNs), 'at it too');
+    if (open && from <= open.to) {
+      open.to = Math.max(open.to, to);
+      open.changed.push(slot);
+      continue;
+    }
+    if (open) yield asked(open, context);
+    open = { from, to, changed: [slot] };
+  }
+  if (open) yield asked(open, context);
+}
+
+function asked({ from, to, changed }: OpenRegion, context: ChangeContext): Region {
+  const region = { from, to, wanted: new Uint8Array(to - from) };
+  for (const slot of changed) mark(slot, region, context);
+  return region;
+}
+
+/** Asks for every event that is not settled and whose window may hold the changed one. */
+function mark(changed: number, region: Region, { held, bounds, geometryNs, settled }: ChangeContext): void {
+  const { possibleNs, siteCount, reachFactor } = bounds;
+  const { site } = held.columns;
+  const ownReachNs = held.reachNs[changed] ?? 0;
+  const mostNs = geometryNs + (ownReachNs + held.farthestReachNs()) * reachFactor;
+  const siteRow = (site[changed] ?? 0) * siteCount;
+  const consider = (position: number): boolean => {
+    const slot = held.slotAt(position);
+    const dtNs = Math.abs(held.apartNs(changed, slot));
+    if (dtNs > mostNs) return false;
+    const possible = possibleNs[siteRow + (site[slot] ?? 0)] ?? -1;
+    const mayBeNear = possible >= 0 && dtNs <= possible + (ownReachNs + (held.reachNs[slot] ?? 0)) * reachFactor;
+    if (mayBeNear || slot === changed) region.wanted[position - region.from] = 1;
+    return true;
+  };
+  const here = held.countBefore(held.instantOf(changed), 'before it only');
+  const first = Math.max(region.from, settled);
+  for (let position = Math.max(here, first); position < region.to && consider(position); position++);
+  for (let position = here - 1; position >= first && consider(position); position--);
+}
