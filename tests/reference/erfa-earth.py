@@ -1,6 +1,6 @@
 """Makes erfa-earth.json: python3 erfa-earth.py > erfa-earth.json (Debian packages python3-erfa and python3-numpy).
 
-The full IAU 2006/2000A model and the Earth ephemeris of ERFA at random instants from 1980 to 2040, for comparison.
+The full IAU 2006/2000A model of ERFA at random instants from 1980 to 2040 and its Earth ephemeris from 1900 to 2100, for comparison.
 """
 import json
 
@@ -13,6 +13,7 @@ RAD_PER_ARCSEC = np.pi / 648000
 AU_M = 149597870700
 PS = 10**12
 FROM_S, TO_S = 315532800, 2240524800  # 1980-01-01, 2041-01-01
+EPHEMERIS_FROM_S, EPHEMERIS_TO_S = -2208988800, 4102444800  # 1900-01-01, 2100-01-01
 
 
 def whole(least, end):
@@ -99,13 +100,13 @@ def geodetic_row(number):
 
 
 def barycentric_row():
-    tai_s, ps = whole(FROM_S, TO_S), whole(0, PS)
+    tai_s, ps = whole(EPHEMERIS_FROM_S, EPHEMERIS_TO_S), whole(0, PS)
     _, earth = erfa.epv00(*tt(tai_s, ps))
     return dict(taiS=tai_s, ps=ps, placeM=(earth['p'] * AU_M).tolist(), velocityMS=(earth['v'] * (AU_M / 86400)).tolist())
 
 
 print(json.dumps(dict(
-    about='The full IAU 2006/2000A model and the Earth ephemeris of ERFA at random instants from 1980 to 2040',
+    about='The full IAU 2006/2000A model of ERFA at random instants from 1980 to 2040 and its Earth ephemeris from 1900 to 2100',
     library=f'ERFA {erfa.version.erfa_version} through pyerfa {erfa.__version__}, numpy {np.__version__}, seed {SEED}',
     status='library',
     functions=dict(
