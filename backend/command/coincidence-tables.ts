@@ -1,4 +1,4 @@
-import { createHash } from 'node:crypto';
+import { hash } from 'node:crypto';
 import { compareText } from '#shared/compare-text';
 import { coincidenceSweep } from '#shared/coincidence/batch-finder';
 import { windowBounds } from '#shared/coincidence/window-bounds';
@@ -73,7 +73,7 @@ function windowVelocities(network: Network, sorted: SortedEvents, { events, rows
 /** The stable name of a set: first 12 hex digits of SHA-256 over the rule's code and the event names sorted by code unit, one a line. */
 export function setName(ruleCode: string, eventNames: readonly string[]): string {
   const text = [ruleCode, ...eventNames.toSorted(compareText)].join('\n');
-  return createHash('sha256').update(text).digest('hex').slice(0, 12);
+  return hash('sha256', text).slice(0, 12);
 }
 
 /** What was found. */
@@ -129,14 +129,19 @@ export async function writeCoincidences(
       const first = instantOfEvent(sorted, rows[0] ?? 0);
       const spanPs = picosecondsBetween(first, instantOfEvent(sorted, rows.at(-1) ?? 0));
       const sites = rows.map((row) => codes[sorted.events.site[row] ?? 0] ?? '').join(' ');
-      files.coincidences.write(`${set},${fold},${sites},${taiText(first)},${spanPs / 1e3},${names.join(' ')}\n`);
+      files.coincidences.text(set).comma().number(fold).comma().text(sites).comma().text(taiText(first)).comma();
+      files.coincidences
+        .number(spanPs / 1e3)
+        .comma()
+        .text(names.join(' '))
+        .endLine();
       options.pairs.writeSet(set, rows, files);
       byFold.set(fold, (byFold.get(fold) ?? 0) + 1);
       for (const row of rows) inCoincidence[row] = 1;
     },
     crowd: (crowd: { event: number; sites: number; events: number; setsAtLeast: number }): void => {
       crowded++;
-      files.crowded.write(`${sorted.name(allRows(crowd.event))},${crowd.sites},${crowd.events},${crowd.setsAtLeast}\n`);
+      files.crowded.text(`${sorted.name(allRows(crowd.event))},${crowd.sites},${crowd.events},${crowd.setsAtLeast}\n`);
     },
   };
   for (let from = 0; from < triggers.events.count; from += STRETCH) {

@@ -30,33 +30,44 @@ export const instantOfEvent = ({ events }: SortedEvents, event: number): Instant
 });
 
 /** Makes the function that writes an event as a line of `events.csv`. */
-export function eventLines(network: Network, sorted: SortedEvents): (event: number) => string {
+export function eventWriter(network: Network, sorted: SortedEvents, file: ResultFile): (event: number) => void {
   const codes = network.sites.map(({ code }) => code);
   const taiText = createTaiWriter();
   const { events, amplitude } = sorted;
   return (event) => {
+    file.text(codes[events.site[event] ?? 0] ?? '').comma();
+    file.text(sorted.seriesText(event)).comma();
+    file.text(sorted.sequenceText(event)).comma();
+    file.text(sorted.kindText(event)).comma();
+    file.text(taiText(instantOfEvent(sorted, event))).comma();
+    file.number(events.sigmaNs[event] ?? 0).comma();
+    file.text(sorted.sigmaSourceText(event)).comma();
+    file.number(events.xM[event] ?? 0).comma();
+    file.number(events.yM[event] ?? 0).comma();
+    file.number(events.zM[event] ?? 0).comma();
     const size = amplitude[event] ?? NaN;
-    return (
-      `${codes[events.site[event] ?? 0] ?? ''},${sorted.seriesText(event)},${sorted.sequenceText(event)},${sorted.kindText(event)},` +
-      `${taiText(instantOfEvent(sorted, event))},${events.sigmaNs[event] ?? 0},${sorted.sigmaSourceText(event)},` +
-      `${events.xM[event] ?? 0},${events.yM[event] ?? 0},${events.zM[event] ?? 0},${Number.isNaN(size) ? '' : size}\n`
-    );
+    if (!Number.isNaN(size)) file.number(size);
+    file.endLine();
   };
 }
 
-function verdictColumns(pair: Pair, verdict: Verdict): string {
+function writeVerdict(pair: Pair, verdict: Verdict, file: ResultFile): void {
   const interval = intervalM2(pair.dtNs, pair.distanceM);
-  const head =
-    `${pair.dtNs},${pair.distanceM},${pair.sigmaDtNs},${verdict.sigmaGapNs},${verdict.marginSigma},${verdict.reverseMarginSigma},` +
-    `${interval},${verdict.class},`;
+  file.number(pair.dtNs).comma().number(pair.distanceM).comma();
+  file.number(pair.sigmaDtNs).comma().number(verdict.sigmaGapNs).comma();
+  file.number(verdict.marginSigma).comma().number(verdict.reverseMarginSigma).comma();
+  file.number(interval).comma().text(verdict.class).comma();
   switch (verdict.class) {
     case 'timelike':
-      return `${head}${properTimeS(interval)},,,,,`;
+      file.number(properTimeS(interval)).text(',,,,,\n');
+      return;
     case 'undecided':
-      return `${head},,,,,`;
+      file.text(',,,,,\n');
+      return;
     case 'spacelike': {
       const { speedC, sigmaC, toward } = turningOf(pair);
-      return `${head}${properDistanceM(interval)},${speedC},${sigmaC},${toward[0]},${toward[1]},${toward[2]}`;
+      file.number(properDistanceM(interval)).comma().number(speedC).comma().number(sigmaC).comma();
+      file.number(toward[0]).comma().number(toward[1]).comma().number(toward[2]).endLine();
     }
   }
 }
@@ -94,8 +105,8 @@ export class PairWriter {
         const label = `${set},${names[first] ?? ''},${names[second] ?? ''},`;
         const verdict = verdictOf(pair, this.network.rule.sigmas);
         this.counts[verdict.class]++;
-        files.pairs.write(`${label}${verdictColumns(pair, verdict)}\n`);
-        for (const { code, velocity } of frames) files.orders.write(`${label}${code},${this.orderColumns(pair, velocity)}\n`);
+        writeVerdict(pair, verdict, files.pairs.text(label));
+        for (const { code, velocity } of frames) this.writeOrder(pair, velocity, files.orders.text(label).text(code).comma());
       }
     }
   }
@@ -104,7 +115,7 @@ export class PairWriter {
   writePair(a: number, b: number, file: ResultFile): IntervalClass {
     const pair = this.pairAt(a, b);
     const verdict = verdictOf(pair, this.network.rule.sigmas);
-    file.write(`${this.sorted.name(a)},${this.sorted.name(b)},${verdictColumns(pair, verdict)}\n`);
+    writeVerdict(pair, verdict, file.text(this.sorted.name(a)).comma().text(this.sorted.name(b)).comma());
     return verdict.class;
   }
 
@@ -112,10 +123,16 @@ export class PairWriter {
     return pairOf(this.sorted.events, this.network.errors, a, b);
   }
 
-  private orderColumns(pair: Pair, velocity: FourVelocity): string {
+  private writeOrder(pair: Pair, velocity: FourVelocity, file: ResultFile): void {
     const dtNs = frameDtNs(pair, velocity);
     const sigmaNs = frameSigmaNs(pair, velocity);
-    return `${dtNs},${sigmaNs},${orderFrom(dtNs, sigmaNs, this.network.rule.sigmas)}`;
+    file
+      .number(dtNs)
+      .comma()
+      .number(sigmaNs)
+      .comma()
+      .text(orderFrom(dtNs, sigmaNs, this.network.rule.sigmas))
+      .endLine();
   }
 
   private framesAt(event: number): readonly FrameAtSet[] {

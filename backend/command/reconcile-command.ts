@@ -4,7 +4,7 @@ import { type Network } from '#shared/reconcile/network';
 import { earthBarycentricVelocityMS } from '../frames/ephemeris';
 import { VERSION } from '../version';
 import { writeCoincidences, writeNeighbours } from './coincidence-tables';
-import { eventLines, HEADERS, PairWriter } from './event-tables';
+import { eventWriter, HEADERS, PairWriter } from './event-tables';
 import { faultText } from './fault-text';
 import { type GroundTables, loadGroundTables } from './ground-tables';
 import { readLiveTime } from './live-time';
@@ -89,11 +89,10 @@ async function writeEvents(
   watch: { pace: Pace; progress: Progress },
 ): Promise<void> {
   const file = folder.file('events.csv');
-  const lineOf = eventLines(network, sorted);
-  file.write(HEADERS.events);
+  const writeEvent = eventWriter(network, sorted, file.text(HEADERS.events));
   watch.progress.begin('writing events', sorted.events.count);
   for (let event = 0; event < sorted.events.count; event++) {
-    file.write(lineOf(event));
+    writeEvent(event);
     if (event % STRETCH !== 0) continue;
     watch.progress.at(event);
     await watch.pace.breathe();
@@ -126,11 +125,11 @@ export async function reconcileFiles(options: ReconcileOptions, context: Command
     await writeEvents(network, sorted, folder, { pace, progress });
     const results = await writePairs(network, sorted, selections, folder, { pace, progress, limit: options.limit });
     const setAside = folder.file('set-aside.csv');
-    setAside.write(HEADERS.setAside);
+    setAside.text(HEADERS.setAside);
     await writeSetAside(found, logs, setAside, pace);
     const hashes = folder.finishFiles();
     const summary = summaryOf({ network, version: VERSION, tables, found, sorted, live, ...results, hashes });
-    folder.file('summary.json').write(`${JSON.stringify(summary, null, 2)}\n`);
+    folder.file('summary.json').text(`${JSON.stringify(summary, null, 2)}\n`);
     folder.finishFiles();
     context.signal.throwIfAborted();
     folder.publish([...hashes.keys(), 'summary.json']);
@@ -150,11 +149,7 @@ async function writePairs(
   folder: ResultFolder,
   watch: { pace: Pace; progress: Progress; limit: number },
 ) {
-  const file = (name: string, header: string) => {
-    const made = folder.file(name);
-    made.write(header);
-    return made;
-  };
+  const file = (name: string, header: string) => folder.file(name).text(header);
   const files = {
     coincidences: file('coincidences.csv', HEADERS.coincidences),
     pairs: file('pairs.csv', HEADERS.pairs),

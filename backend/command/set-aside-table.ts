@@ -64,7 +64,7 @@ export async function writeSetAside(found: FoundRecords, logs: readonly ReadLog[
       const path = logs[setAside.file[row] ?? 0]?.path ?? '';
       const text = reread.text(path, setAside.offsetBytes[row] ?? 0, setAside.lengthBytes[row] ?? 0);
       const reason = SET_ASIDE_REASONS[setAside.reason[row] ?? 0] ?? '';
-      file.write(`${Papa.unparse([[nameOf(row), setAside.line[row] ?? 0, reason, text]], { newline: '\n' })}\n`);
+      file.text(`${Papa.unparse([[nameOf(row), setAside.line[row] ?? 0, reason, text]], { newline: '\n' })}\n`);
       if (at % STRETCH === 0) await pace.breathe();
     }
   } finally {
