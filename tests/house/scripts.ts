@@ -3,7 +3,9 @@ import { type Tree } from './tree';
 /** Faults of the scripts: one without its line in DEVELOPERS.md, or a line about one that is gone. */
 export function undocumentedScripts(tree: Tree): string[] {
   const { scripts } = JSON.parse(tree.get('package.json') ?? '{}') as { scripts: Record<string, string> };
-  const table = [...(tree.get('DEVELOPERS.md') ?? '').matchAll(/^\| `npm (?:run )?(?:-s )?([a-z:]+)[^`]*` /gm)].map((match) => match[1] ?? '');
+  const table = [...(tree.get('DEVELOPERS.md') ?? '').matchAll(/^\| `npm (?:run )?(?:-s )?([a-z:]+)[^`]*` /gm)].map(
+    (match) => match[1] ?? '',
+  );
   return [
     ...Object.keys(scripts)
       .filter((name) => !table.includes(name))

@@ -5,7 +5,7 @@ import { root } from '../../scripts/lib.mjs';
 /** Texts by their path from the root, with forward slashes. The rules take one, so that a test can hand them a faulty house. */
 export type Tree = ReadonlyMap<string, string>;
 
-const NOT_OURS = new Set(['node_modules', 'dist', '.angular', '.git', 'data', 'test-results', 'migrations']);
+const NOT_OURS = new Set(['node_modules', 'dist', '.angular', '.git', 'data', 'test-results', 'schema/migrations']);
 const TEXT = /\.(?:ts|mjs|js|json|scss|css|html|md|svg)$|^run$/;
 
 /** Every text file below a folder, without what is installed, built or stored. */
@@ -14,7 +14,7 @@ export function readTree(folder = ''): Tree {
   const visit = (path: string): void => {
     for (const entry of readdirSync(join(root, path), { withFileTypes: true })) {
       const below = path === '' ? entry.name : `${path}/${entry.name}`;
-      if (entry.isDirectory() && (path.startsWith('dist') || !NOT_OURS.has(entry.name))) visit(below);
+      if (entry.isDirectory() && !NOT_OURS.has(below)) visit(below);
       else if (entry.isFile() && TEXT.test(entry.name)) tree.set(below, readFileSync(join(root, below), 'utf8'));
     }
   };
