@@ -30,11 +30,12 @@ interface OpenRegion {
  */
 export function* regionsAround(changed: readonly number[], context: ChangeContext): Generator<Region> {
   const { held, geometryNs, bounds } = context;
-  const farthestNs = held.farthestReachNs();
+  // One width for all, so that the stretches begin and end in the order of the changes; what is gone may have reached farther than what is held.
+  const farthestNs = changed.reduce((most, slot) => Math.max(most, held.reachNs[slot] ?? 0), held.farthestReachNs());
+  const twiceNs = 2 * (geometryNs + 2 * farthestNs * bounds.reachFactor);
   let open: OpenRegion | undefined;
   for (const slot of changed) {
     const instant = held.instantOf(slot);
-    const twiceNs = 2 * geometryNs + ((held.reachNs[slot] ?? 0) + 3 * farthestNs) * bounds.reachFactor;
     const from = held.countBefore(earlierBy(instant, twiceNs), 'before it only');
     const to = held.countBefore(laterBy(instant, twiceNs), 'at it too');
     if (open && from <= open.to) {

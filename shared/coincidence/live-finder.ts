@@ -4,7 +4,7 @@ import { type Instant } from '../time/instant';
 import { regionsAround } from './changed-regions';
 import { type EventIdentity } from './event-identity';
 import { HeldEvents, type LiveEvent } from './held-events';
-import { type LiveChanges, type LiveFindings, type PutAnswer, type WithdrawAnswer } from './live-answers';
+import { type LiveChanges, type LiveFindings, type LiveSet, type PutAnswer, type WithdrawAnswer } from './live-answers';
 import { compareSets, eachSet, type Outcome, tellDifference } from './outcome';
 import { PendingChanges } from './pending-changes';
 import { eventReachNs } from './reach-bands';
@@ -65,12 +65,14 @@ class Findings {
 
   named(held: HeldEvents): LiveFindings {
     const compare = (a: number, b: number): number => held.compare(a, b);
-    const nameOf = (slot: number): EventIdentity => held.identityOf(slot);
+    const setOf = (slots: Int32Array): LiveSet => {
+      const events: EventIdentity[] = [];
+      for (const slot of slots) events.push(held.identityOf(slot));
+      return { events, fold: events.length };
+    };
     return {
-      sets: this.sets
-        .sort((a, b) => compareSets(a, b, compare))
-        .map((slots) => ({ events: Array.from(slots, nameOf), fold: slots.length })),
-      crowded: this.crowds.sort((a, b) => compare(a.event, b.event)).map((crowd) => ({ ...crowd, event: nameOf(crowd.event) })),
+      sets: this.sets.sort((a, b) => compareSets(a, b, compare)).map(setOf),
+      crowded: this.crowds.sort((a, b) => compare(a.event, b.event)).map((crowd) => ({ ...crowd, event: held.identityOf(crowd.event) })),
     };
   }
 }

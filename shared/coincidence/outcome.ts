@@ -46,6 +46,7 @@ export function tellDifference(before: Outcome, after: Outcome, compare: (a: num
   }
   const old = before && 'sets' in before ? before.sets : NONE;
   const now = after && 'sets' in after ? after.sets : NONE;
+  if (isSame(old, now)) return;
   let o = 0;
   let n = 0;
   while (o < old.length || n < now.length) {
@@ -60,3 +61,10 @@ export function tellDifference(before: Outcome, after: Outcome, compare: (a: num
 }
 
 const NONE: PackedSets = new Int32Array(0);
+
+/** Most events that are searched again begin what they began before. */
+function isSame(old: PackedSets, now: PackedSets): boolean {
+  if (old.length !== now.length) return false;
+  for (let k = 0; k < old.length; k++) if (old[k] !== now[k]) return false;
+  return true;
+}
