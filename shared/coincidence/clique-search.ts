@@ -60,13 +60,15 @@ function report(search: Search, length: number): void {
 const ended = (search: Search): boolean => search.count > search.goal.limit;
 
 /** The upper levels of a large neighbourhood: rows in lists, nearness asked for when it is needed. */
-function byLists(search: Search, depth: number, candidates: Int32Array, done: Int32Array): number {
+function byLists(search: Search, depth: number, candidates: Int32Array, allDone: Int32Array): number {
   const { near, siteOf } = search.graph;
   const [pivot] = candidates;
   if (pivot === undefined) {
-    if (done.length === 0) report(search, depth);
+    if (allDone.length === 0) report(search, depth);
     return search.count;
   }
+  const isLarge = candidates.length + allDone.length > MATRIX_ROWS;
+  const done = isLarge && candidates.length <= MATRIX_ROWS ? distinctBlockers(search.graph, candidates, allDone) : allDone;
   if (candidates.length + done.length <= MATRIX_ROWS) {
     byMatrix(search, depth, candidates, done);
     return search.count;
@@ -99,6 +101,24 @@ function byLists(search: Search, depth: number, candidates: Int32Array, done: In
     blockers = withRow(blockers, row);
   }
   return search.count;
+}
+
+/**
+ * Of the rows that are done, one for each choice of candidates that it is near: the others block nothing more. In a storm thousands are
+ * done and a few candidates are left.
+ */
+function distinctBlockers({ near }: Neighbourhood, candidates: Int32Array, done: Int32Array): Int32Array {
+  const bits = new Int32Array(wordsFor(candidates.length));
+  const seen = new Set<string>();
+  return done.filter((row) => {
+    bits.fill(0);
+    candidates.forEach((candidate, k) => {
+      if (near(candidate, row)) bits[k >> 5] = (bits[k >> 5] ?? 0) | (1 << (k & 31));
+    });
+    if (bits.every((word) => word === 0)) return false;
+    const before = seen.size;
+    return seen.add(bits.join()).size > before;
+  });
 }
 
 function withRow(rows: Int32Array, row: number): Int32Array {

@@ -62,35 +62,36 @@ function countFull(lists: readonly (readonly number[])[], near: (a: number, b: n
   const rows = lists.flat();
   const words = wordsFor(rows.length);
   const ends = lists.map((_, level) => lists.slice(0, level + 1).reduce((sum, list) => sum + list.length, 0));
-  const nearRows: (Int32Array | undefined)[] = rows.map(() => undefined);
-  const nearTo = (k: number): Int32Array => {
-    const known = nearRows[k];
-    if (known) return known;
-    const bits = new Int32Array(words);
-    rows.forEach((row, other) => {
-      if (near(rows[k] ?? 0, row)) bits[other >> 5] = (bits[other >> 5] ?? 0) | (1 << (other & 31));
-    });
-    nearRows[k] = bits;
-    return bits;
+  /** Bits of the rows of later lists that are near a row, found when they are first asked for. */
+  const matrix = new Int32Array(rows.length * words);
+  const isKnown = new Uint8Array(rows.length);
+  const findNear = (k: number, from: number): void => {
+    isKnown[k] = 1;
+    const row = rows[k] ?? 0;
+    for (let other = from; other < rows.length; other++) {
+      if (near(row, rows[other] ?? 0)) matrix[k * words + (other >> 5)] = (matrix[k * words + (other >> 5)] ?? 0) | (1 << (other & 31));
+    }
   };
-  const levels = lists.map(() => new Int32Array(words));
-  levels[0]?.fill(-1);
+  /** Side by side, for each list the rows that are near all that were chosen before. */
+  const levels = new Int32Array(lists.length * words).fill(-1, 0, words);
   let count = 0;
 
   const descend = (level: number): void => {
-    const open = levels[level] ?? new Int32Array(words);
+    const open = level * words;
+    const next = open + words;
     const begin = ends[level - 1] ?? 0;
     const end = ends[level] ?? 0;
-    const next = levels[level + 1];
+    const isLast = level === lists.length - 1;
     for (let w = begin >> 5; w << 5 < end; w++) {
-      let bits = (open[w] ?? 0) & between(begin, end, w);
-      if (!next) {
+      let bits = (levels[open + w] ?? 0) & between(begin, end, w);
+      if (isLast) {
         count += ones(bits);
         continue;
       }
       for (; bits !== 0; bits &= bits - 1) {
-        const nearBits = nearTo(w * 32 + lowest(bits));
-        for (let v = 0; v < words; v++) next[v] = (open[v] ?? 0) & (nearBits[v] ?? 0);
+        const k = w * 32 + lowest(bits);
+        if (isKnown[k] === 0) findNear(k, end);
+        for (let v = end >> 5; v < words; v++) levels[next + v] = (levels[open + v] ?? 0) & (matrix[k * words + v] ?? 0);
         descend(level + 1);
         if (count > limit) return;
       }
