@@ -12,8 +12,7 @@ export interface Problem {
 
 /** A value, perhaps with warnings, or the one problem that kept it from being a value. Faults from outside are never thrown. */
 export type Outcome<T> =
-  | { readonly ok: true; readonly value: T; readonly warnings: readonly Problem[] }
-  | { readonly ok: false; readonly problem: Problem };
+  { readonly ok: true; readonly value: T; readonly warnings: readonly Problem[] } | { readonly ok: false; readonly problem: Problem };
 
 /** Wraps a value, with warnings where there are any. */
 export function valueOf<T>(value: T, warnings: readonly Problem[] = []): Outcome<T> {

@@ -123,7 +123,8 @@ export async function writeCoincidences(
 
   const listener = {
     set: (found: Int32Array, fold: number): void => {
-      const rows = Array.from(found.subarray(0, fold), allRows);
+      const rows: number[] = [];
+      for (let k = 0; k < fold; k++) rows.push(allRows(found[k] ?? 0));
       const names = rows.map((row) => sorted.name(row));
       const set = setName(network.rule.code, names);
       const first = instantOfEvent(sorted, rows[0] ?? 0);
@@ -135,7 +136,7 @@ export async function writeCoincidences(
         .comma()
         .text(names.join(' '))
         .endLine();
-      options.pairs.writeSet(set, rows, files);
+      options.pairs.writeSet(set, rows, names, files);
       byFold.set(fold, (byFold.get(fold) ?? 0) + 1);
       for (const row of rows) inCoincidence[row] = 1;
     },

@@ -95,10 +95,9 @@ export class PairWriter {
     private readonly sorted: SortedEvents,
   ) {}
 
-  /** All pairs of a set, and their orders in every frame, taken at the set's first event. `rows` ascend. */
-  writeSet(set: string, rows: ArrayLike<number>, files: { pairs: ResultFile; orders: ResultFile }): void {
-    const frames = rows.length > 0 ? this.framesAt(rows[0] ?? 0) : [];
-    const names = Array.from(rows, (row) => this.sorted.name(row));
+  /** All pairs of a set, and their orders in every frame, taken at the set's first event. `rows` ascend; `names` are theirs. */
+  writeSet(set: string, rows: readonly number[], names: readonly string[], files: { pairs: ResultFile; orders: ResultFile }): void {
+    const frames = rows.length > 1 ? this.framesAt(rows[0] ?? 0) : [];
     for (let first = 0; first < rows.length; first++) {
       for (let second = first + 1; second < rows.length; second++) {
         const pair = this.pairAt(rows[first] ?? 0, rows[second] ?? 0);

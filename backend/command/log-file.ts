@@ -14,8 +14,8 @@ export interface RecordPlace {
 /** Who takes the records of a file, in their order; the header is the first. `isWhole` is false where the quoting is broken. */
 export type RecordTaker = (fields: string[], place: RecordPlace, isWhole: boolean) => void;
 
-/** Bytes read at once. */
-const BLOCK_BYTES = 1 << 21;
+/** Bytes read at once: few enough that a block's rows are gone before they would be kept with the old ones. */
+const BLOCK_BYTES = 1 << 17;
 
 /**
  * Longest record, bytes. An open quote that is not closed within this is taken as never closed: it swallows the rest of the file.

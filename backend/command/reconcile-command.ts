@@ -162,7 +162,8 @@ async function writePairs(
   progress.begin('finding coincidences', sorted.events.count);
   const coincidences = await writeCoincidences(network, sorted, { limit: watch.limit, pairs, files, pace, onEvents: progress.at });
   for (const { code, rows } of selections) {
-    pairs.writeSet(code, rows, files);
+    const names = rows.map((row) => sorted.name(row));
+    pairs.writeSet(code, rows, names, files);
     await pace.breathe();
   }
   const withinNs = network.neighboursWithinNs;

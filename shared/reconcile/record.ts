@@ -113,7 +113,8 @@ export type RecordReconciler = (fields: readonly string[], layout: RecordLayout,
  *
  * @param network the sites, clocks and the run
  * @param leapSeconds for readings in UTC
- * @returns a function that writes a good record into `into` and answers undefined, or answers the first fault
+ * @returns a function that writes a good record into `into` and answers undefined, or answers the first fault; `into.site` is written as soon as
+ *   the site is known
  */
 export function createReconciler(network: Network, leapSeconds: LeapSecondTable): RecordReconciler {
   const rows = new Map(network.sites.map((site, row) => [site.code, row]));
@@ -125,6 +126,7 @@ export function createReconciler(network: Network, leapSeconds: LeapSecondTable)
     const code = layout.site < 0 ? layout.ofSite : at(fields, layout.site);
     const row = code === undefined || (layout.ofSite !== undefined && code !== layout.ofSite) ? undefined : rows.get(code);
     if (row === undefined) return 'site';
+    into.site = row;
     const sequence = at(fields, layout.sequence);
     if (!WHOLE_NUMBER.test(sequence)) return 'sequence';
     const series = at(fields, layout.series);
@@ -132,7 +134,6 @@ export function createReconciler(network: Network, leapSeconds: LeapSecondTable)
     const kind = at(fields, layout.kind);
     const kindIndex = kind === '' ? 0 : KINDS.findIndex((name) => name === kind);
     if (kindIndex < 0) return 'kind';
-    into.site = row;
     into.sequence = withoutLeadingZeros(sequence);
     into.series = series;
     into.kind = kindIndex;

@@ -1,5 +1,6 @@
 import { C_M_S } from '../constants';
 import { type Pair } from './pair';
+import { rootOfSquares } from './root-of-squares';
 import { dot, norm, scale, type Vec3 } from './vector';
 import { type FourVelocity } from './velocity';
 
@@ -27,7 +28,7 @@ export function turningOf(pair: Pair): Turning {
   const timeSigmaM = (pair.sigmaDtNs * C_M_S) / 1e9;
   return {
     speedC,
-    sigmaC: Math.hypot(timeSigmaM, speedC * pair.sigmaDM) / pair.distanceM,
+    sigmaC: rootOfSquares(timeSigmaM, speedC * pair.sigmaDM) / pair.distanceM,
     toward: scale(1 / pair.distanceM, pair.dxM),
   };
 }
@@ -44,7 +45,7 @@ export function frameDtNs(pair: Pair, velocity: FourVelocity): number {
 
 /** Standard error of the time from a to b in a frame, ns: gamma sqrt(sigma_dt^2 + beta^2 sigma_d^2 / c^2). */
 export function frameSigmaNs(pair: Pair, velocity: FourVelocity): number {
-  return Math.hypot(velocity.gamma * pair.sigmaDtNs, ((norm(velocity.gammaBeta) * pair.sigmaDM) / C_M_S) * 1e9);
+  return rootOfSquares(velocity.gamma * pair.sigmaDtNs, ((norm(velocity.gammaBeta) * pair.sigmaDM) / C_M_S) * 1e9);
 }
 
 /** The order of a pair in a frame: a tie when its time difference there is within `sigmas` of its own standard errors. */

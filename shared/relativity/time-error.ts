@@ -26,6 +26,10 @@ function referenceOf(e: EventColumns, t: ErrorTables, i: number): number {
   return segment < 0 ? -1 : (t.segmentReference[segment] ?? -1);
 }
 
+function referenceVarianceNs2(t: ErrorTables, reference: number): number {
+  return reference < 0 ? 0 : square(t.referenceSigmaNs[reference] ?? 0);
+}
+
 const square = (x: number): number => x * x;
 
 /**
@@ -37,23 +41,21 @@ const square = (x: number): number => x * x;
  * @returns one standard error each, ns; the clock's term holds offset, rate and covariance at the event's epoch
  */
 export function errorTerms(e: EventColumns, t: ErrorTables, i: number): readonly ErrorTerm[] {
-  const reference = referenceOf(e, t, i);
   return [
     { name: 'reading', sigmaNs: e.readingSigmaNs[i] ?? 0 },
     { name: 'delay', sigmaNs: t.siteDelaySigmaNs[e.site[i] ?? 0] ?? 0 },
     { name: 'clock', sigmaNs: Math.sqrt(clockVarianceNs2(e, t, i)) },
-    { name: 'reference', sigmaNs: reference < 0 ? 0 : (t.referenceSigmaNs[reference] ?? 0) },
+    { name: 'reference', sigmaNs: Math.sqrt(referenceVarianceNs2(t, referenceOf(e, t, i))) },
   ];
 }
 
 /** Variance of an event's time, all terms together, ns^2. */
 export function timeVarianceNs2(e: EventColumns, t: ErrorTables, i: number): number {
-  const reference = referenceOf(e, t, i);
   return (
     square(e.readingSigmaNs[i] ?? 0) +
     square(t.siteDelaySigmaNs[e.site[i] ?? 0] ?? 0) +
     clockVarianceNs2(e, t, i) +
-    (reference < 0 ? 0 : square(t.referenceSigmaNs[reference] ?? 0))
+    referenceVarianceNs2(t, referenceOf(e, t, i))
   );
 }
 
@@ -83,9 +85,7 @@ export function differenceVarianceNs2(e: EventColumns, t: ErrorTables, i: number
   const referenceI = referenceOf(e, t, i);
   const referenceJ = referenceOf(e, t, j);
   if (referenceI === referenceJ) return variance;
-  if (referenceI >= 0) variance += square(t.referenceSigmaNs[referenceI] ?? 0);
-  if (referenceJ >= 0) variance += square(t.referenceSigmaNs[referenceJ] ?? 0);
-  return variance;
+  return variance + (referenceVarianceNs2(t, referenceI) + referenceVarianceNs2(t, referenceJ));
 }
 
 /** Variance of the distance of two events from the errors of their sites' positions, m^2; 0 within a site. */

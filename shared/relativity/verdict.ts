@@ -1,5 +1,6 @@
 import { C_M_S } from '../constants';
 import { type Pair } from './pair';
+import { rootOfSquares } from './root-of-squares';
 
 /** What can be said of a pair: the order is the same for everyone, depends on the frame, or cannot be told. */
 export type IntervalClass = 'timelike' | 'spacelike' | 'undecided';
@@ -38,7 +39,7 @@ const inSigmas = (valueNs: number, sigmaNs: number): number => (valueNs === 0 ? 
  */
 export function verdictOf(pair: Pair, sigmas: number): Verdict {
   const lightNs = (pair.distanceM / C_M_S) * 1e9;
-  const sigmaGapNs = Math.hypot(pair.sigmaDtNs, (pair.sigmaDM / C_M_S) * 1e9);
+  const sigmaGapNs = rootOfSquares(pair.sigmaDtNs, (pair.sigmaDM / C_M_S) * 1e9);
   const gapNs = pair.dtNs - lightNs;
   const boundNs = sigmas * sigmaGapNs + gapRoundingNs(pair);
   return {
