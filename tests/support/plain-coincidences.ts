@@ -299,6 +299,8 @@ export function networkAndEvents(draw: Draw = {}): fc.Arbitrary<{ network: Plain
       delaySigmaNs: fc.constantFrom(0, 2),
       positionSigmaM: fc.constantFrom(0, 0.5),
     });
+    // A fleet keeps its distances while it moves, so that its bounds are tight.
+    const fleetMS = fc.option(vector(kind.speedMS));
     const network = fc.record({
       rule: fc.record({
         code: fc.constant('rule'),
@@ -307,7 +309,9 @@ export function networkAndEvents(draw: Draw = {}): fc.Arbitrary<{ network: Plain
         window: kind.window,
       }),
       limit: fc.constantFrom(1, 2, 5, 30, 10_000),
-      sites: fc.array(site, { minLength: 2, maxLength: 6, size: 'max' }),
+      sites: fc
+        .tuple(fc.array(site, { minLength: 2, maxLength: 6, size: 'max' }), fleetMS)
+        .map(([sites, velocityMS]) => (velocityMS ? sites.map((one) => ({ ...one, velocityMS })) : sites)),
       segments: fc.array(
         fc.record({
           offsetSigmaNs: fc.constantFrom(0, 12),
