@@ -42,21 +42,50 @@ export function setsFrom(
 ): (event: number, listener: SetListener) => void {
   const later = new RowList();
   const earlier = new RowList();
-  const pair = new Int32Array(2);
+  const small = [new Int32Array(2), new Int32Array(3)];
+  const few = [new Int32Array(1), new Int32Array(1), new Int32Array(2)] as const;
   const leastOthers = limits.minimumFold - 1;
   const siteOf = (row: number): number => events.site[row] ?? 0;
   const near = (a: number, b: number): boolean => kernel.near(a, b);
   const perSite = new Int32Array(kernel.siteCount);
 
-  /** The common case of a quiet network: one neighbour, and a set unless an earlier trigger is near both. */
-  function fromOne(event: number, listener: SetListener): void {
-    if (leastOthers > 1) return;
-    const other = later.rows[0] ?? 0;
+  /** Whether a trigger before the event is near it and all of the first `count` rows of `rows`: a set of these is then not maximal. */
+  function isBlocked(earlierCount: number, rows: Int32Array, count: number): boolean {
+    for (let k = 0; k < earlierCount; k++) {
+      const blocker = earlier.rows[k] ?? 0;
+      let joined = 0;
+      while (joined < count && kernel.near(blocker, rows[joined] ?? 0)) joined++;
+      if (joined === count) return true;
+    }
+    return false;
+  }
+
+  /** Hands over the event and `others`, unless it is too small or an earlier trigger could join it. */
+  function handOver(event: number, others: Int32Array, earlierCount: number, listener: SetListener): void {
+    if (others.length < leastOthers || isBlocked(earlierCount, others, others.length)) return;
+    const rows = small[others.length - 1] ?? new Int32Array(others.length + 1);
+    rows[0] = event;
+    rows.set(others, 1);
+    listener.set(rows, rows.length);
+  }
+
+  /** The common cases of a quiet network, one neighbour or two, need no search. */
+  function fromFew(event: number, laterCount: number, listener: SetListener): void {
     const earlierCount = kernel.earlierNear(event, earlier);
-    for (let k = 0; k < earlierCount; k++) if (kernel.near(earlier.rows[k] ?? 0, other)) return;
-    pair[0] = event;
-    pair[1] = other;
-    listener.set(pair, 2);
+    const [one, two, both] = few;
+    const first = later.rows[0] ?? 0;
+    const second = later.rows[1] ?? 0;
+    if (laterCount === 2 && kernel.near(first, second)) {
+      both[0] = first;
+      both[1] = second;
+      handOver(event, both, earlierCount, listener);
+      return;
+    }
+    one[0] = first;
+    handOver(event, one, earlierCount, listener);
+    if (laterCount === 1) return;
+    two[0] = second;
+    handOver(event, two, earlierCount, listener);
   }
 
   function crowdAt(event: number, laterCount: number): Crowd {
@@ -103,8 +132,10 @@ export function setsFrom(
 
   return (event, listener) => {
     const laterCount = kernel.laterNear(event, later);
-    if (laterCount === 1) fromOne(event, listener);
-    else if (laterCount > 1) fromMany(event, laterCount, listener);
+    if (laterCount === 0) return;
+    // Two sets at most begin with an event that has two neighbours, which only a limit of 1 calls a crowd.
+    if (laterCount === 1 || (laterCount === 2 && limits.limit > 1)) fromFew(event, laterCount, listener);
+    else fromMany(event, laterCount, listener);
   };
 }
 

@@ -9,7 +9,7 @@ const ENTRIES = [
   /(?:^|\/)[^/]+\.config\.ts$/,
   /\.d\.ts$/,
   /^tests\/support\/(?:build|random)\.ts$/,
-  /^tests\/.*\.(?:test|e2e)\.ts$/,
+  /^tests\/.*\.(?:test|e2e|bench|long)\.ts$/,
   /\.spec\.ts$/,
 ];
 

@@ -1,0 +1,24 @@
+// npm run bench: the ratios of speed, each against a baseline measured beside it in the same run. TRIGGERS=5000000 for a larger log.
+import { readdirSync } from 'node:fs';
+import { join } from 'node:path';
+import { buildBackend, checkNode, installPackages, root, run } from './lib.mjs';
+
+checkNode();
+installPackages();
+buildBackend();
+const { build } = await import('esbuild');
+const folder = 'tests/bench';
+await build({
+  absWorkingDir: root,
+  entryPoints: readdirSync(join(root, folder))
+    .filter((file) => file.endsWith('.bench.ts'))
+    .map((file) => `${folder}/${file}`),
+  outdir: 'dist/bench',
+  bundle: true,
+  platform: 'node',
+  target: 'node20',
+  format: 'esm',
+  packages: 'external',
+  logLevel: 'warning',
+});
+for (const name of ['finder', 'command']) run(process.execPath, [`dist/bench/${name}.bench.js`], { stdout: 1 });
