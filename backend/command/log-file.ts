@@ -1,3 +1,4 @@
+import { isAscii } from 'node:buffer';
 import { closeSync, fstatSync, openSync, readSync } from 'node:fs';
 import Papa from 'papaparse';
 import { type Pace } from './pace';
@@ -27,13 +28,16 @@ const CR = 0x0d;
 const QUOTE = 0x22;
 const BYTE_ORDER_MARK = Buffer.from([0xef, 0xbb, 0xbf]);
 
+const NOT_ASCII = /[^\0-\x7f]/;
+
 const CSV = { delimiter: ',', newline: '\n', quoteChar: '"', escapeChar: '"' } as const;
 
 /**
  * Reads a CSV file (RFC 4180, UTF-8; LF or CRLF) record by record, with the place of each.
  *
- * Empty lines and a byte order mark are skipped. A quote that is followed by something else than a separator spoils its own line and no other;
- * a quote that is never closed spoils everything from its record's first line on. Either is handed over as a record that is not whole.
+ * Empty lines and a byte order mark are skipped; bytes that are not UTF-8 become U+FFFD in the fields. A quote that is followed by something
+ * else than a separator spoils its own line and no other; a quote that is never closed spoils everything from its record's first line on.
+ * Either is handed over as a record that is not whole.
  *
  * @param path a file that can be read twice
  * @param take called for each record
@@ -47,7 +51,7 @@ export async function readRecords(
   const descriptor = openSync(path, 'r');
   try {
     const sizeBytes = fstatSync(descriptor).size;
-    const reader = new BlockReader(take, sizeBytes);
+    const reader = new BlockReader(take, sizeBytes, lastBytes(descriptor, sizeBytes));
     const block = Buffer.allocUnsafe(BLOCK_BYTES);
     for (;;) {
       const bytes = readSync(descriptor, block, 0, BLOCK_BYTES, null);
@@ -69,10 +73,13 @@ class BlockReader {
   private offsetBytes = 0;
   private line = 1;
   private isFirst = true;
+  private isAscii = true;
 
   constructor(
     private readonly take: RecordTaker,
     private readonly fileBytes: number,
+    /** The last two bytes of the file. */
+    private readonly fileEnd: Buffer,
   ) {}
 
   add(block: Buffer): void {
@@ -99,68 +106,61 @@ class BlockReader {
   /** Everything from here to the end of the file is one record that is not whole. */
   private swallow(): void {
     this.isSwallowed = true;
-    let lengthBytes = Math.max(this.fileBytes - this.offsetBytes, this.rest.length);
-    if (lengthBytes === this.rest.length) lengthBytes -= lineEndBytes(this.rest);
-    this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes }, false);
+    const leftBytes = this.fileBytes - this.offsetBytes;
+    const [bytes, end] = leftBytes > this.rest.length ? [leftBytes, this.fileEnd] : [this.rest.length, this.rest];
+    this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes: bytes - lineEndBytes(end) }, false);
   }
 
-  /** Hands over the records in `bytes`, whole lines or the end of the file, and returns how many bytes they took. */
+  /**
+   * Hands over the records in `bytes`, whole lines or the end of the file, and returns how many bytes they took.
+   *
+   * Each byte is read as one character, so that places are exact whatever the bytes are; fields are made UTF-8 when they are handed over.
+   */
   private parse(bytes: Buffer, isEnd: boolean): number {
     if (bytes.length === 0) return 0;
-    if (!bytes.includes(QUOTE)) {
-      this.parsePlain(bytes);
-      return bytes.length;
-    }
-    return this.parseQuoted(bytes, isEnd);
+    this.isAscii = isAscii(bytes);
+    const text = bytes.toString('latin1');
+    if (bytes.includes(QUOTE)) return this.parseQuoted(text, isEnd);
+    this.parsePlain(text);
+    return bytes.length;
   }
 
   /** Without quotes a record is a line, and its length is that of its fields and the commas between them. */
-  private parsePlain(bytes: Buffer): void {
-    const text = bytes.toString('utf8');
-    const isAscii = text.length === bytes.length;
+  private parsePlain(text: string): void {
     const rows = Papa.parse<string[]>(text, CSV).data;
     // A line end closes the last record; what the parser sees behind it is no line.
     if (text.endsWith('\n')) rows.pop();
     for (const fields of rows) {
-      const lengthBytes = isAscii ? charactersOf(fields) : Buffer.byteLength(fields.join(','));
-      this.handOver(fields, lengthBytes, lengthBytes + 1, 1);
+      const characters = charactersOf(fields);
+      const hasReturn = withoutReturn(fields);
+      this.handOver(fields, hasReturn ? characters - 1 : characters, characters + 1, 1);
     }
   }
 
+  /** `lengthBytes` without the line end, `wholeBytes` with it. */
   private handOver(fields: string[], lengthBytes: number, wholeBytes: number, lines: number): void {
-    const last = fields.at(-1) ?? '';
-    const hasReturn = last.endsWith('\r');
-    if (hasReturn) fields[fields.length - 1] = last.slice(0, -1);
-    if (fields.length > 1 || fields[0] !== '')
-      this.take(fields, { line: this.line, offsetBytes: this.offsetBytes, lengthBytes: lengthBytes - (hasReturn ? 1 : 0) }, true);
+    if (!this.isAscii) makeUtf8(fields);
+    if (lengthBytes > 0) this.take(fields, { line: this.line, offsetBytes: this.offsetBytes, lengthBytes }, true);
     this.offsetBytes += wholeBytes;
     this.line += lines;
   }
 
-  private parseQuoted(bytes: Buffer, isEnd: boolean): number {
-    let text = bytes.toString('utf8');
-    let taken = 0;
+  private parseQuoted(whole: string, isEnd: boolean): number {
+    let text = whole;
     while (text !== '') {
       const step = this.parseUntilBroken(text, isEnd);
-      taken += Buffer.byteLength(text.slice(0, step.characters));
       text = text.slice(step.characters);
       if (step.isOpen) break;
       if (!step.isBroken) continue;
       const end = text.indexOf('\n');
       const spoilt = end < 0 ? text : text.slice(0, end + 1);
-      const lengthBytes = Buffer.byteLength(spoilt);
-      const place = {
-        line: this.line,
-        offsetBytes: this.offsetBytes,
-        lengthBytes: lengthBytes - lineEndBytes(Buffer.from(spoilt.slice(-2))),
-      };
-      this.take([], place, false);
-      this.offsetBytes += lengthBytes;
+      const lengthBytes = spoilt.length - lineEndOf(spoilt).length;
+      this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes }, false);
+      this.offsetBytes += spoilt.length;
       this.line++;
-      taken += lengthBytes;
       text = text.slice(spoilt.length);
     }
-    return taken;
+    return whole.length - text.length;
   }
 
   /** Parses until the text ends, a quote stands open at its end, or a quote is broken; says how many characters were handed over. */
@@ -175,11 +175,10 @@ class BlockReader {
         else if (errors.some(({ code }) => code === 'MissingQuotes')) isOpen = true;
         else {
           const raw = text.slice(characters, meta.cursor);
-          const isClosed = raw.endsWith('\n');
-          if (raw !== '' && (isClosed || isEnd)) {
-            const wholeBytes = Buffer.byteLength(raw);
-            const returns = raw.endsWith('\r\n') && !(data.at(-1) ?? '').endsWith('\r') ? 1 : 0;
-            this.handOver(data, wholeBytes - (isClosed ? 1 : 0) - returns, wholeBytes, lineEnds(raw));
+          if (raw !== '' && (raw.endsWith('\n') || isEnd)) {
+            const end = lineEndOf(raw);
+            if (end !== '\n' && !endsQuoted(raw, end, data)) withoutReturn(data);
+            this.handOver(data, raw.length - end.length, raw.length, lineEnds(raw));
             characters = meta.cursor;
           }
           return;
@@ -201,6 +200,35 @@ function charactersOf(fields: readonly string[]): number {
   let length = fields.length - 1;
   for (const field of fields) length += field.length;
   return length;
+}
+
+/** Takes the carriage return of a CRLF, or of the end of the file, from the last field; says whether there was one. */
+function withoutReturn(fields: string[]): boolean {
+  const last = fields.at(-1) ?? '';
+  if (!last.endsWith('\r')) return false;
+  fields[fields.length - 1] = last.slice(0, -1);
+  return true;
+}
+
+/** Whether the last field of a record is quoted as a whole: then the parser has left out what stands behind the quote, and all is the field's. */
+const endsQuoted = (raw: string, end: string, fields: readonly string[]): boolean =>
+  raw.endsWith(`"${(fields.at(-1) ?? '').replaceAll('"', '""')}"${end}`);
+
+function makeUtf8(fields: string[]): void {
+  for (const [at, field] of fields.entries()) {
+    if (NOT_ASCII.test(field)) fields[at] = Buffer.from(field, 'latin1').toString('utf8');
+  }
+}
+
+/** The line end of a record, or the carriage return that stands at the end of the file in its place. */
+function lineEndOf(raw: string): string {
+  if (raw.endsWith('\r\n')) return '\r\n';
+  return raw.endsWith('\n') ? '\n' : raw.endsWith('\r') ? '\r' : '';
+}
+
+function lastBytes(descriptor: number, sizeBytes: number): Buffer {
+  const end = Buffer.alloc(2);
+  return end.subarray(0, readSync(descriptor, end, 0, 2, Math.max(0, sizeBytes - 2)));
 }
 
 function lineEndBytes(bytes: Buffer): number {
