@@ -29,12 +29,16 @@ export function addCell(seed: ContentHash, text: string, into: ContentHash): voi
   if (text === '') return;
   let first = seed.first;
   let second = seed.second;
+  let length = text.length;
   for (let at = 0; at < text.length; at++) {
     const character = text.charCodeAt(at);
-    if (character === 13 && text.charCodeAt(at + 1) === 10) continue;
+    if (character === 13 && text.charCodeAt(at + 1) === 10) {
+      length--;
+      continue;
+    }
     first = Math.imul(first ^ character, FIRST_PRIME);
     second = Math.imul(second ^ (second >>> 13) ^ character, SECOND_PRIME);
   }
   into.first = (into.first + mixed(first)) | 0;
-  into.second = (into.second + mixed(second ^ text.length)) | 0;
+  into.second = (into.second + mixed(second ^ length)) | 0;
 }
