@@ -31,7 +31,7 @@ export async function duckdbRangeJoin({ events, errors }: QuietColumns, widestNs
       `create table e as select * from read_csv('${file}', header = true, columns = {'t': 'BIGINT', 'site': 'SMALLINT', 'x': 'DOUBLE', 'y': 'DOUBLE', 'z': 'DOUBLE', 'v': 'DOUBLE'})`,
     );
     const widestPs = Math.ceil(widestNs * 1e3);
-    const join = async (): Promise<{ pairs: number; ms: number }> => {
+    const ask = async (): Promise<{ pairs: number; ms: number }> => {
       const started = performance.now();
       const rows = await connection.runAndReadAll(`
         select count(*) from e a join e b on b.t >= a.t and b.t <= a.t + ${widestPs}
@@ -40,9 +40,9 @@ export async function duckdbRangeJoin({ events, errors }: QuietColumns, widestNs
             + ${sigmas} * sqrt(a.v + b.v)`);
       return { pairs: Number(rows.getRows()[0]?.[0]), ms: performance.now() - started };
     };
-    const all = await join();
+    const all = await ask();
     await connection.run('set threads = 1');
-    const one = await join();
+    const one = await ask();
     return { version, pairs: all.pairs, allThreadsMs: all.ms, oneThreadMs: one.ms };
   } finally {
     rmSync(folder, { recursive: true });
