@@ -134,8 +134,13 @@ export class ResultFolder {
     return hashes;
   }
 
-  /** Moves finished files into the folder; the order is that of the names. */
+  /** Moves finished files into the folder, all or none; the order is that of the names. */
   publish(names: readonly string[]): void {
+    for (const name of names) {
+      const target = join(this.folder, name);
+      if (statSync(target, { throwIfNoEntry: false })?.isDirectory())
+        throw new UsageProblem(`--out: "${target}" is a folder; it must be a file, or a name at which one can be made`);
+    }
     if (this.isNew) mkdirSync(this.folder, { recursive: true });
     for (const name of names) renameSync(join(this.stage, name), join(this.folder, name));
     this.discard();
