@@ -1,5 +1,5 @@
 import { type HeldEvents } from './held-events';
-import { type Region } from './region-search';
+import { ALL_ASKED, GROWTH_ASKED, type Region } from './region-search';
 import { earlierBy, laterBy } from './settlement';
 import { type WindowBounds } from './window-bounds';
 
@@ -11,6 +11,10 @@ export interface ChangeContext {
   readonly geometryNs: number;
   /** How many events at the beginning of the order are settled: those are never asked for. */
   readonly settled: number;
+  /** Slots of the events that are new. */
+  readonly arrived: ReadonlySet<number>;
+  /** Was an event crowded before the changes? */
+  readonly isCrowded: (slot: number) => boolean;
 }
 
 interface OpenRegion {
@@ -50,29 +54,37 @@ export function* regionsAround(changed: readonly number[], context: ChangeContex
 }
 
 function asked({ from, to, changed }: OpenRegion, context: ChangeContext): Region {
-  const region = { from, to, wanted: new Uint8Array(to - from) };
-  for (const slot of changed) mark(slot, region, context);
-  return region;
+  const wanted = new Uint8Array(to - from);
+  const arrived: number[] = [];
+  for (const slot of changed) {
+    mark(slot, { from, to, wanted }, context);
+    if (context.arrived.has(slot)) arrived.push(context.held.positionOf(slot));
+  }
+  return { from, to, wanted, arrived };
 }
 
 /** Asks for every event that is not settled and whose window may hold the changed one. */
-function mark(changed: number, region: Region, { held, bounds, geometryNs, settled }: ChangeContext): void {
+function mark(changed: number, region: Omit<Region, 'arrived'>, context: ChangeContext): void {
+  const { held, bounds, geometryNs, settled } = context;
   const { possibleNs, siteCount, reachFactor } = bounds;
   const { site } = held.columns;
   const ownReachNs = held.reachNs[changed] ?? 0;
   const mostNs = geometryNs + (ownReachNs + held.farthestReachNs()) * reachFactor;
   const siteRow = (site[changed] ?? 0) * siteCount;
-  const consider = (position: number): boolean => {
+  const isNew = context.arrived.has(changed);
+  const consider = (position: number, isBefore: boolean): boolean => {
     const slot = held.slotAt(position);
     const dtNs = Math.abs(held.apartNs(changed, slot));
     if (dtNs > mostNs) return false;
     const possible = possibleNs[siteRow + (site[slot] ?? 0)] ?? -1;
     const mayBeNear = possible >= 0 && dtNs <= possible + (ownReachNs + (held.reachNs[slot] ?? 0)) * reachFactor;
-    if (mayBeNear || slot === changed) region.wanted[position - region.from] = 1;
+    if (!mayBeNear && slot !== changed) return true;
+    const asked = isNew && isBefore && context.isCrowded(slot) ? GROWTH_ASKED : ALL_ASKED;
+    region.wanted[position - region.from] = Math.max(asked, region.wanted[position - region.from] ?? 0);
     return true;
   };
   const here = held.countBefore(held.instantOf(changed), 'before it only');
   const first = Math.max(region.from, settled);
-  for (let position = Math.max(here, first); position < region.to && consider(position); position++);
-  for (let position = here - 1; position >= first && consider(position); position--);
+  for (let position = Math.max(here, first); position < region.to && consider(position, false); position++);
+  for (let position = here - 1; position >= first && consider(position, true); position--);
 }

@@ -71,6 +71,16 @@ describe('searchCliques among many rows', () => {
     for (const earlier of [1, 700]) expect(setsOf(graph(earlier)).count).toBe(290 * 300);
   });
 
+  it('leaves out of a single site what an earlier row of another is near', () => {
+    expect(setsOf(graphOf([{ later: 600 }, { later: 0, earlier: 1 }], (a) => a < 100)).count).toBe(500);
+  });
+
+  it('leaves out what each of many different earlier rows is near', () => {
+    // Row 40 + k of the third site is near row k mod 10 of the first, and all of the second.
+    const near = (a: number, b: number): boolean => b < 40 || a >= 20 || a === (b - 40) % 10;
+    expect(setsOf(graphOf([{ later: 20 }, { later: 20 }, { later: 0, earlier: 600 }], near)).count).toBe(10 * 20);
+  });
+
   it('looks at thousands of earlier rows of a storm no more than once for each row after them', () => {
     let asked = 0;
     const graph = graphOf(Array.from({ length: 5 }, () => ({ later: 5, earlier: 2_000 })));

@@ -143,6 +143,11 @@ export class HeldEvents {
     for (const slot of leaving) this.goes(slot);
   }
 
+  /** The position of a slot in the order, or the one that it would have. */
+  positionOf(slot: number): number {
+    return this.partition((other) => this.compare(other, slot) < 0);
+  }
+
   /** How many of the ordered events come before an instant, or at it when `including`. */
   countBefore(instant: Instant, including: 'at it too' | 'before it only'): number {
     const { taiS, ps } = this.columns;
@@ -188,10 +193,6 @@ export class HeldEvents {
     const velocities = new Float64Array(4 * capacity);
     velocities.set(this.windowVelocities);
     this.windowVelocities = velocities;
-  }
-
-  private positionOf(slot: number): number {
-    return this.partition((other) => this.compare(other, slot) < 0);
   }
 
   /** How many events at the beginning of the order fulfil a condition that none after them does. */

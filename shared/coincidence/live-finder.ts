@@ -166,8 +166,10 @@ export function createLiveFinder(setup: LiveSetup): LiveFinder {
         outcomes[slot] = undefined;
       }
       const changed = [...leaving, ...arriving].sort(compare);
-      for (const region of regionsAround(changed, { held, bounds, geometryNs, settled: settledCount() })) {
-        search.run(region, errors, (slot, outcome) => {
+      const isCrowded = (slot: number): boolean => 'crowd' in (outcomes[slot] ?? {});
+      const context = { held, bounds, geometryNs, settled: settledCount(), arrived: new Set(arriving), isCrowded };
+      for (const region of regionsAround(changed, context)) {
+        search.run(region, errors, outcomes, (slot, outcome) => {
           tellDifference(outcomes[slot], outcome, compare, told);
           outcomes[slot] = outcome;
         });

@@ -3,8 +3,14 @@ import { type Crowd } from './sets-from';
 /** Sets one after the other: their fold, then their events as slots in the order of events. */
 export type PackedSets = Int32Array;
 
+/** An event that is crowded; `hasSite` is 1 for each site that the crowd counts. */
+export interface Crowding {
+  readonly crowd: Crowd;
+  readonly hasSite: Uint8Array;
+}
+
 /** What begins with an event: sets in their order, or a crowd; undefined when nothing does. */
-export type Outcome = { readonly sets: PackedSets } | { readonly crowd: Crowd } | undefined;
+export type Outcome = { readonly sets: PackedSets } | Crowding | undefined;
 
 /** Calls back with each set. */
 export function eachSet(outcome: Outcome, told: (slots: Int32Array) => void): void {
