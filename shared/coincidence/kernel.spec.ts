@@ -118,6 +118,20 @@ describe('the kernel', () => {
     expect(isNear(fixed(0), { atNs: 3 }, { atNs: 3.001 })).toBe(false);
   });
 
+  it('ends a fixed window at a width that is no whole number of nanoseconds, across a second as within it', () => {
+    const kernel = (widthNs: number, firstPs: number) =>
+      kernelOf(fixed(widthNs), [
+        { site: 0, atNs: -firstPs / 1e3 },
+        { site: 1, atNs: (Math.round(widthNs * 1e3) - firstPs) / 1e3 },
+      ]);
+    for (const widthNs of [0.001, 0.3, 0.7, 1.001, 12_345_678.9, 70_000_000.007]) {
+      for (const firstPs of [0, 1, 100, 299]) {
+        const asked = kernel(widthNs, firstPs);
+        expect([widthNs, firstPs, asked.near(0, 1), laterOf(asked, 0), earlierOf(asked, 1)]).toEqual([widthNs, firstPs, true, [1], [0]]);
+      }
+    }
+  });
+
   it('gives rows in ascending order, before and after', () => {
     const kernel = kernelOf(
       fixed(10),

@@ -1,6 +1,7 @@
 import { C_M_S } from '../constants';
 import { type ErrorTables, type EventColumns } from '../relativity/events';
 import { gapSigmaNs } from '../relativity/time-error';
+import { nanosecondsOf } from '../time/instant';
 import { eventReachNs, reachBands } from './reach-bands';
 import { type CoincidenceRule } from './rule';
 import { type WindowBounds } from './window-bounds';
@@ -95,7 +96,7 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
   /** Beyond this not near, whatever the errors; stays below 0 within a site. */
   const oneBandNs = possibleNs.map((boundNs) => (boundNs < 0 ? -1 : boundNs + 2 * mostReachNs * reachFactor));
 
-  const apartNs = (a: number, b: number): number => ((taiS[b] ?? 0) - (taiS[a] ?? 0)) * 1e9 + ((ps[b] ?? 0) - (ps[a] ?? 0)) / 1e3;
+  const apartNs = (a: number, b: number): number => nanosecondsOf((taiS[b] ?? 0) - (taiS[a] ?? 0), (ps[b] ?? 0) - (ps[a] ?? 0));
 
   /** Decides for a before b in the order of events, dt not negative. */
   function nearInOrder(a: number, b: number, dtNs: number, reachNs: number): boolean {
@@ -115,7 +116,7 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
     const siteRow = (site[event] ?? 0) * siteCount;
     let filled = 0;
     for (let other = event + 1; other < count; other++) {
-      const dtNs = ((taiS[other] ?? 0) - fromS) * 1e9 + ((ps[other] ?? 0) - fromPs) / 1e3;
+      const dtNs = nanosecondsOf((taiS[other] ?? 0) - fromS, (ps[other] ?? 0) - fromPs);
       if (dtNs > spanNs) break;
       const at = siteRow + (site[other] ?? 0);
       if (dtNs > (oneBandNs[at] ?? -1)) continue;
@@ -130,7 +131,7 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
     const siteRow = (site[event] ?? 0) * siteCount;
     let filled = 0;
     for (let other = event - 1; other >= 0; other--) {
-      const dtNs = (toS - (taiS[other] ?? 0)) * 1e9 + (toPs - (ps[other] ?? 0)) / 1e3;
+      const dtNs = nanosecondsOf(toS - (taiS[other] ?? 0), toPs - (ps[other] ?? 0));
       if (dtNs > spanNs) break;
       const at = siteRow + (site[other] ?? 0);
       if (dtNs > (oneBandNs[at] ?? -1)) continue;

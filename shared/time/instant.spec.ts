@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { addPicoseconds, compareInstants, instantOf, picosecondsBetween, PS_PER_S, secondsBetween } from './instant';
+import { addPicoseconds, compareInstants, instantOf, nanosecondsOf, picosecondsBetween, PS_PER_S, secondsBetween } from './instant';
 
 describe('an instant', () => {
   it.each([
@@ -34,6 +34,19 @@ describe('an instant', () => {
         expect(picosecondsBetween(b, a) + moved).toBe(0);
         // physics.md: good to 1 ps up to 1,000 s.
         expect(Math.abs(secondsBetween(a, b) - moved / PS_PER_S)).toBeLessThan(1e-12);
+      }),
+    );
+  });
+
+  it('is so many nanoseconds from another, the same within a second and across its end', () => {
+    const ps = fc.integer({ min: 0, max: PS_PER_S - 1 });
+    fc.assert(
+      fc.property(ps, ps, (within, apart) => {
+        const a = { taiS: 5, ps: within };
+        const b = addPicoseconds(a, apart);
+        // The double nearest to the decimal, as a file with so many nanoseconds is read.
+        const text = String(apart).padStart(4, '0');
+        expect(nanosecondsOf(b.taiS - a.taiS, b.ps - a.ps)).toBe(Number(`${text.slice(0, -3)}.${text.slice(-3)}`));
       }),
     );
   });

@@ -40,6 +40,15 @@ export function picosecondsBetween(a: Instant, b: Instant): number {
   return (b.taiS - a.taiS) * PS_PER_S + (b.ps - a.ps);
 }
 
+/**
+ * Nanoseconds in a difference of two instants, formed as whole picoseconds (exact up to 9,007 s) and rounded once: a limit of whole
+ * picoseconds is met at that picosecond, on one side of a second as on the other.
+ *
+ * @param apartS difference of the whole seconds
+ * @param apartPs difference of the picoseconds within the second, of any sign
+ */
+export const nanosecondsOf = (apartS: number, apartPs: number): number => (apartS * PS_PER_S + apartPs) / 1e3;
+
 /** The instant a whole number of picoseconds (of any sign, below 2^53) after another. */
 export function addPicoseconds(a: Instant, ps: number): Instant {
   return instantOf(a.taiS, a.ps + ps);
