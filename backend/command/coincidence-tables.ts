@@ -7,7 +7,7 @@ import { type Network } from '#shared/reconcile/network';
 import { type EventColumns } from '#shared/relativity/events';
 import { GEOCENTRIC_CODE } from '#shared/relativity/frame-definition';
 import { createTaiWriter } from '#shared/time/format';
-import { picosecondsBetween } from '#shared/time/instant';
+import { nanosecondsOf, picosecondsBetween } from '#shared/time/instant';
 import { instantOfEvent, type PairWriter, velocityAt } from './event-tables';
 import { type Pace } from './pace';
 import { type ResultFile } from './result-folder';
@@ -164,13 +164,11 @@ export async function writeNeighbours(
   options: { withinNs: number; pairs: PairWriter; file: ResultFile; pace: Pace; onEvents: (done: number) => void },
 ): Promise<number> {
   const { taiS, ps, count } = sorted.events;
-  const withinPs = options.withinNs * 1e3;
   let written = 0;
   let sinceBreath = 0;
   for (let a = 0; a < count; a++) {
     for (let b = a + 1; b < count; b++) {
-      const apartPs = ((taiS[b] ?? 0) - (taiS[a] ?? 0)) * 1e12 + ((ps[b] ?? 0) - (ps[a] ?? 0));
-      if (apartPs > withinPs) break;
+      if (nanosecondsOf((taiS[b] ?? 0) - (taiS[a] ?? 0), (ps[b] ?? 0) - (ps[a] ?? 0)) > options.withinNs) break;
       if (inCoincidence[a] === 0 && inCoincidence[b] === 0) continue;
       options.pairs.writePair(a, b, options.file);
       written++;
