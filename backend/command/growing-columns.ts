@@ -16,12 +16,17 @@ export class GrowingColumns<T extends Record<string, Column>> {
 
   /** Makes room for one more row and returns its number. */
   add(): number {
-    if (this.count === this.capacity) this.grow();
+    if (this.count === this.capacity) this.resize(Math.ceil(this.capacity * GROWTH));
     return this.count++;
   }
 
-  private grow(): void {
-    this.capacity = Math.ceil(this.capacity * GROWTH);
+  /** Makes room for at least so many rows. */
+  reserve(rows: number): void {
+    if (rows > this.capacity) this.resize(rows);
+  }
+
+  private resize(rows: number): void {
+    this.capacity = rows;
     const larger = this.make(this.capacity);
     for (const name of Object.keys(larger)) larger[name]?.set(this.columns[name] ?? []);
     this.columns = larger;

@@ -71,6 +71,9 @@ function headerOf(fields: readonly string[], log: LogArgument, line: number): Lo
   };
 }
 
+/** Room is made at once for this many records at most; logs of more let the columns grow. */
+const MOST_EXPECTED = 20_000_000;
+
 const BROKEN: readonly string[] = [];
 
 /**
@@ -88,7 +91,10 @@ export async function readLogs(
   const reconcile = createReconciler(network, leapSeconds);
   const record = emptyRecord();
   const content = { first: 0, second: 0 };
+  const allBytes = logs.reduce((bytes, { sizeBytes }) => bytes + sizeBytes, 0);
   let doneBytes = 0;
+  let records = 0;
+  let isExpected = false;
   for (const [file, log] of logs.entries()) {
     let header: LogHeader | undefined;
     await readRecords(
@@ -100,6 +106,7 @@ export async function readLogs(
           header = headerOf(fields, log, place.line);
           return;
         }
+        records++;
         record.site = -1;
         const fault = reconcile(isWhole ? fields : BROKEN, header.layout, record);
         if (fault) {
@@ -118,6 +125,8 @@ export async function readLogs(
         pace: watch.pace,
         onBytes: (bytes) => {
           doneBytes += bytes;
+          if (!isExpected) store.expect(Math.min(MOST_EXPECTED, Math.ceil((records / doneBytes) * allBytes)));
+          isExpected = true;
           watch.onBytes(doneBytes);
         },
       },

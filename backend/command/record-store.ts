@@ -74,6 +74,10 @@ export interface FoundRecords {
 }
 
 const LEAST_SLOTS = 4096;
+/** Identities whose slots stand beside each other; a power of 2. */
+const SLOT_GROUP = 8;
+/** No more slots are made on a guess, since the guess may be wrong. */
+const MOST_SLOTS = 1 << 24;
 
 /**
  * All records of the logs: what was accepted, what was said again, what is set aside, and where each stands.
@@ -100,6 +104,14 @@ export class RecordStore {
       repeated: perSite(),
       setAside: Array.from({ length: siteCount + 1 }, () => new Float64Array(SET_ASIDE_REASONS.length)),
     };
+  }
+
+  /** Makes room for about so many records, so that columns need not be copied as they grow. */
+  expect(records: number): void {
+    this.accepted.reserve(records);
+    let slots = this.slots.length;
+    while (slots < 2 * records && slots < MOST_SLOTS) slots *= 2;
+    if (slots > this.slots.length) this.rehash(slots);
   }
 
   /** A record that is at fault by itself; `site` is the row of its site, or -1 where that is unknown. */
@@ -136,7 +148,7 @@ export class RecordStore {
     columns.hashSecond[row] = content.second;
     putPlace(columns, row, file, place);
     this.slots[slot] = row + 1;
-    if (2 * this.accepted.count > this.slots.length) this.widen();
+    if (2 * this.accepted.count > this.slots.length) this.rehash(2 * this.slots.length);
   }
 
   /** Ends the collection: settles conflicts and returns what was accepted, what is set aside, and the series by their codes. */
@@ -202,19 +214,24 @@ export class RecordStore {
     }
   }
 
-  private widen(): void {
-    this.slots = new Int32Array(this.slots.length * 2);
+  private rehash(slots: number): void {
+    this.slots = new Int32Array(slots);
     const { site, series, sequence } = this.accepted.columns;
     for (let row = 0; row < this.accepted.count; row++)
       this.slots[this.slotOf(site[row] ?? 0, series[row] ?? 0, sequence[row] ?? 0)] = row + 1;
   }
 }
 
+/**
+ * Where an identity's slot is looked for. Numbers that follow each other share a group of slots, so that a log in its own order finds its
+ * slots beside each other in the cache.
+ */
 function identityHash(site: number, series: number, sequence: number): number {
-  const low = sequence | 0;
-  const high = (sequence / 4294967296) | 0;
+  const group = Math.floor(sequence / SLOT_GROUP);
+  const low = group | 0;
+  const high = (group / 4294967296) | 0;
   let hash = Math.imul(low ^ Math.imul(high, 0x9e3779b1) ^ Math.imul(site + 1, 0x85ebca6b) ^ Math.imul(series + 1, 0xc2b2ae35), 0x7feb352d);
   hash ^= hash >>> 15;
   hash = Math.imul(hash, 0x846ca68b);
-  return (hash ^ (hash >>> 16)) >>> 0;
+  return ((hash ^ (hash >>> 16)) * SLOT_GROUP + (sequence - group * SLOT_GROUP)) >>> 0;
 }
