@@ -42,7 +42,9 @@ async function tableOf(
   const file = new ResultFile('set-aside.csv', path);
   await writeSetAside(store.finish(), logs, file, { breathe: () => Promise.resolve() });
   file.finish();
-  return readFileSync(path, 'utf8');
+  const table = readFileSync(path, 'utf8');
+  rmSync(path);
+  return table;
 }
 
 describe('the table of what is set aside', () => {
