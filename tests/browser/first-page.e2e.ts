@@ -2,6 +2,7 @@ import { rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { AxeBuilder } from '@axe-core/playwright';
 import { expect } from '@playwright/test';
+import { LIMITS } from '#shared/limits';
 import { newFolder } from '../support/folder';
 import { startServer } from '../support/server';
 import { test } from './served';
@@ -23,8 +24,8 @@ for (const colorScheme of ['light', 'dark'] as const)
         await expect(page).toHaveTitle('Skewline: one order, where there is one');
         await expect(page.getByRole('heading', { level: 1 })).toHaveText('Some orders depend on the frame.');
         await expect(page.getByRole('main')).toContainText('reconciles the trigger logs of a distributed detector network');
-        await expect(page.getByRole('main')).toContainText('Not for navigation, aviation, or any safety-of-life timing.');
-        await expect(page.getByRole('main')).toContainText('neglect gravitational time dilation');
+        for (const limit of LIMITS) await expect(page.getByRole('main')).toContainText(limit);
+        expect(LIMITS.join(' ')).toMatch(/neglect gravitational time dilation.*Not for navigation, aviation, or any safety-of-life timing/);
         await expect(page.getByRole('status')).toContainText('The database answers.');
         await expect(page.getByRole('img', { name: /light cone/ })).toBeVisible();
         expect(watch.faults).toEqual([]);

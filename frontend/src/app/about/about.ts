@@ -1,4 +1,5 @@
 import { ChangeDetectionStrategy, Component } from '@angular/core';
+import { LIMITS } from '#shared/limits';
 import { TurningPicture } from '../diagrams/turning-picture';
 import { HealthPanel } from '../health/health-panel';
 import { IntervalMark } from '../ui/interval-mark';
@@ -12,4 +13,6 @@ import { Wordmark } from '../ui/wordmark';
   templateUrl: './about.html',
   styleUrl: './about.scss',
 })
-export class About {}
+export class About {
+  protected readonly limits = LIMITS;
+}
