@@ -12,9 +12,9 @@ function valueAt(input: unknown, path: readonly PropertyKey[]): unknown {
   return path.reduce<unknown>((value, part) => (typeof value === 'object' && value !== null ? Reflect.get(value, part) : undefined), input);
 }
 
-/** A value as it would stand in the file, cut when it is long. */
+/** A value as it would stand in the file, cut when it is long; a number too large for a double as the infinity that was read. */
 export function valueText(value: unknown): string {
-  const json = JSON.stringify(value);
+  const json = typeof value === 'number' ? String(value) : JSON.stringify(value);
   return json.length > LONGEST_VALUE ? `${json.slice(0, LONGEST_VALUE)}...` : json;
 }
 

@@ -105,6 +105,8 @@ const frame = record({
   error: 'with "velocity", or of "kind" "barycentric", and not both',
 });
 
+const WINDOW_KINDS = '"light-time" or "fixed"';
+
 const window = z.discriminatedUnion(
   'kind',
   [
@@ -115,7 +117,7 @@ const window = z.discriminatedUnion(
     }),
     record({ kind: z.literal('fixed'), width_ns: notNegative('nanoseconds'), frame: code().optional() }),
   ],
-  { error: 'an object { } with "kind" "light-time" or "fixed"' },
+  { error: ({ input }) => (typeof input === 'object' && input !== null ? WINDOW_KINDS : `an object { } with "kind" ${WINDOW_KINDS}`) },
 );
 
 const rule = record({
@@ -126,7 +128,7 @@ const rule = record({
 });
 
 export const networkFileSchema = record({
-  network: text('the name of the network'),
+  network: text('a text: the name of the network'),
   run: record({ name: text('a text').optional(), from: time(), to: time().optional() }),
   origin: record({ time: time().optional() }).optional(),
   references: listOf(record({ code: code(), sigma_ns: notNegative('nanoseconds').optional() }), 'references').optional(),
