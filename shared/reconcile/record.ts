@@ -116,7 +116,7 @@ export type RecordReconciler = (fields: readonly string[], layout: RecordLayout,
  * @returns a function that writes a good record into `into` and answers undefined, or answers the first fault; `into.site` is written as soon as
  *   the site is known
  */
-export function createReconciler(network: Network, leapSeconds: LeapSecondTable): RecordReconciler {
+export function createReconciler(network: Pick<Network, 'sites' | 'from' | 'to'>, leapSeconds: LeapSecondTable): RecordReconciler {
   const rows = new Map(network.sites.map((site, row) => [site.code, row]));
   const parsers = network.sites.map((site) => createReadingParser(site.scale, leapSeconds));
   const at = (fields: readonly string[], column: number): string => (column < 0 ? '' : (fields[column] ?? ''));
