@@ -39,8 +39,9 @@ function readSegment(segment: FileSegment, path: string, context: ClockContext):
   const at = segment.at === undefined ? from : readTime(segment.at, `${path}.at`, context);
   if (!at.ok) return at;
   if (segment.reference !== undefined && !context.references.has(segment.reference)) {
-    const known = [...context.references].map((code) => `"${code}"`).join(', ') || 'a code listed under references (none is)';
-    return problemOf('network-reference', `${path}.reference`, `is "${segment.reference}"; it must be one of ${known}`);
+    const known = [...context.references].map((code) => `"${code}"`).join(', ');
+    const right = known === '' ? 'left out, since no references are listed' : `one of ${known}`;
+    return problemOf('network-reference', `${path}.reference`, `is "${segment.reference}"; it must be ${right}`);
   }
   return valueOf({
     from: from.value,
