@@ -2,6 +2,7 @@ import { createHash, type Hash } from 'node:crypto';
 import { closeSync, existsSync, fsyncSync, mkdirSync, mkdtempSync, openSync, renameSync, rmSync, statSync, writeSync } from 'node:fs';
 import { basename, dirname, join, resolve } from 'node:path';
 import { faultText } from './fault-text';
+import { MOST_NUMBER_BYTES, putNumber } from './number-bytes';
 import { UsageProblem } from './usage-problem';
 
 /** Bytes that are gathered before they are written. */
@@ -47,13 +48,14 @@ export class ResultFile {
     return this;
   }
 
-  /**
-   * Adds a number so that reading it back gives the same double.
-   *
-   * JSON and String write the same digits, but String keeps each new one in a cache, which costs as much again in garbage.
-   */
+  /** Adds a number so that reading it back gives the same double. */
   number(value: number): this {
-    return this.text(Number.isInteger(value) || !Number.isFinite(value) ? String(value) : JSON.stringify(value));
+    if (this.filled + MOST_NUMBER_BYTES > BUFFER_BYTES) this.flush();
+    const end = putNumber(value, this.buffer, this.filled);
+    // JSON and String write the same digits, but String keeps each new text in a cache, which costs as much again in garbage.
+    if (end < 0) return this.text(Number.isInteger(value) || !Number.isFinite(value) ? String(value) : JSON.stringify(value));
+    this.filled = end;
+    return this;
   }
 
   comma(): this {
