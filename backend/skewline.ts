@@ -11,7 +11,11 @@ const FAILED = 1;
 
 const DEFAULT_LIMIT = 10_000;
 
-const say = (line: string): void => void process.stderr.write(`${line}\n`);
+/** One line on stderr, whatever a fault's text holds. */
+const say = (line: string): void => void process.stderr.write(`${line.trim().replaceAll(/\s*[\r\n]+\s*/g, ' ')}\n`);
+
+// Whoever read the words has gone; the work and its exit status are as before.
+for (const stream of [process.stdout, process.stderr]) stream.on('error', () => undefined);
 
 /** An abort signal that Ctrl-C and SIGTERM set off. */
 function stopSignal(): AbortSignal {
@@ -44,13 +48,7 @@ function program(): Command {
     )
     .version(VERSION)
     .configureOutput({
-      outputError: (text) =>
-        say(
-          `skewline: ${text
-            .replace(/^error: /, '')
-            .trim()
-            .replaceAll('\n', ' ')}`,
-        ),
+      outputError: (text) => say(`skewline: ${text.replace(/^error: /, '')}`),
     })
     .exitOverride();
   skewline
@@ -82,6 +80,10 @@ Exit status: 0 done (records set aside are counted on stderr), 2 unusable argume
 
 /** Runs the command line and answers the exit status. */
 async function run(args: readonly string[]): Promise<number> {
+  if (args.length === 0) {
+    say('skewline: no command is given; name one, such as reconcile (skewline --help tells more)');
+    return UNUSABLE;
+  }
   try {
     await program().parseAsync(args, { from: 'user' });
     return 0;
