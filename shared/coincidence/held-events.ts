@@ -1,6 +1,6 @@
 import { emptyEvents } from '../relativity/events';
 import { type FourVelocity } from '../relativity/velocity';
-import { type Instant } from '../time/instant';
+import { type Instant, nanosecondsOf } from '../time/instant';
 import { compareIdentities, type EventIdentity } from './event-identity';
 
 /** A trigger as a live stream brings it: what a row of `EventColumns` holds, and its name. */
@@ -22,7 +22,7 @@ const NUMBERS = ['taiS', 'ps', 'xM', 'yM', 'zM', 'site', 'readingSigmaNs', 'sigm
 const FIRST_SLOTS = 256;
 
 /** Nanoseconds from an instant to an event, formed as the kernel does. */
-export const sinceNs = (from: Instant, event: Instant): number => (event.taiS - from.taiS) * 1e9 + (event.ps - from.ps) / 1e3;
+export const sinceNs = (from: Instant, event: Instant): number => nanosecondsOf(event.taiS - from.taiS, event.ps - from.ps);
 
 /**
  * Keeps the events of a live stream: columns by slot, in which an event stays where it is as long as it is held, and the slots in the
@@ -74,7 +74,7 @@ export class HeldEvents {
   /** Nanoseconds from one slot's event to another's, formed as the kernel does. */
   apartNs(from: number, to: number): number {
     const { taiS, ps } = this.columns;
-    return ((taiS[to] ?? 0) - (taiS[from] ?? 0)) * 1e9 + ((ps[to] ?? 0) - (ps[from] ?? 0)) / 1e3;
+    return nanosecondsOf((taiS[to] ?? 0) - (taiS[from] ?? 0), (ps[to] ?? 0) - (ps[from] ?? 0));
   }
 
   /** The order of events; two slots of one identity and instant by their number. */
