@@ -17,11 +17,16 @@ const say = (line: string): void => void process.stderr.write(`${line.trim().rep
 // Whoever read the words has gone; the work and its exit status are as before.
 for (const stream of [process.stdout, process.stderr]) stream.on('error', () => undefined);
 
-/** An abort signal that Ctrl-C and SIGTERM set off. */
+/**
+ * An abort signal that Ctrl-C, SIGTERM and the end of the terminal set off.
+ *
+ * They are listened to until the process ends: Ctrl-C comes twice from a terminal in which npm hands it on, and the second may not end what the
+ * first makes the command take away.
+ */
 function stopSignal(): AbortSignal {
   const controller = new AbortController();
-  for (const name of ['SIGINT', 'SIGTERM'] as const)
-    process.once(name, () => controller.abort(new Error(`stopped by ${name}; nothing was written`)));
+  for (const name of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const)
+    process.on(name, () => controller.abort(new Error(`stopped by ${name}; nothing was written`)));
   return controller.signal;
 }
 
