@@ -54,6 +54,7 @@ function triggersOf(sorted: SortedEvents): Triggers {
       sigmaNs: double(events.sigmaNs),
       segment: pick(events.segment, new Int32Array(count)),
       sinceEpochDays: double(events.sinceEpochDays),
+      sinceEpochRestDays: double(events.sinceEpochRestDays),
     },
   };
 }

@@ -10,6 +10,7 @@ const acceptedColumns = (rows: number) => ({
   ps: new Float64Array(rows),
   readingSigmaNs: new Float64Array(rows),
   sinceEpochDays: new Float64Array(rows),
+  sinceEpochRestDays: new Float64Array(rows),
   amplitude: new Float64Array(rows),
   sequence: new Float64Array(rows),
   site: new Uint16Array(rows),
@@ -138,6 +139,7 @@ export class RecordStore {
     columns.ps[row] = record.ps;
     columns.readingSigmaNs[row] = record.readingSigmaNs;
     columns.sinceEpochDays[row] = record.sinceEpochDays;
+    columns.sinceEpochRestDays[row] = record.sinceEpochRestDays;
     columns.amplitude[row] = record.amplitude;
     columns.sequence[row] = sequence;
     columns.site[row] = record.site;

@@ -70,6 +70,7 @@ export async function sortEvents(
     sigmaNs: new Float64Array(count),
     segment: gather(accepted.segment, order, new Int32Array(count)),
     sinceEpochDays: inOrder(accepted.sinceEpochDays, order),
+    sinceEpochRestDays: inOrder(accepted.sinceEpochRestDays, order),
   };
   const flags = gather(accepted.flags, order, new Uint8Array(count));
   const sequence = inOrder(accepted.sequence, order);

@@ -14,10 +14,23 @@ export interface LiveEvent extends EventIdentity {
   readonly sigmaNs: number;
   readonly segment: number;
   readonly sinceEpochDays: number;
+  readonly sinceEpochRestDays: number;
 }
 
 /** The columns, each with a field of its name in the event. */
-const NUMBERS = ['taiS', 'ps', 'xM', 'yM', 'zM', 'site', 'readingSigmaNs', 'sigmaNs', 'segment', 'sinceEpochDays'] as const;
+const NUMBERS = [
+  'taiS',
+  'ps',
+  'xM',
+  'yM',
+  'zM',
+  'site',
+  'readingSigmaNs',
+  'sigmaNs',
+  'segment',
+  'sinceEpochDays',
+  'sinceEpochRestDays',
+] as const;
 
 const FIRST_SLOTS = 256;
 

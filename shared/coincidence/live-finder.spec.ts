@@ -27,7 +27,7 @@ const at = (ns: number): Instant => instantOf(BASE_S, Math.round(ns * 1e3));
 /** A trigger at a time in nanoseconds: `[site, sequence]`. */
 function trigger([site, sequence]: readonly [number, number], atNs: number, more: Partial<LiveEvent> = {}): LiveEvent {
   const { taiS, ps } = at(atNs);
-  const errors = { readingSigmaNs: 0, sigmaNs: 0, segment: -1, sinceEpochDays: 0 };
+  const errors = { readingSigmaNs: 0, sigmaNs: 0, segment: -1, sinceEpochDays: 0, sinceEpochRestDays: 0 };
   return { site, series: '', sequence: `${sequence}`, taiS, ps, xM: SITE_X_M[site]!, yM: 0, zM: 0, ...errors, ...more };
 }
 const unsure = (sigmaNs: number): Partial<LiveEvent> => ({ readingSigmaNs: sigmaNs, sigmaNs });

@@ -116,6 +116,7 @@ export class RegionSearch {
       into.sigmaNs[row] = columns.sigmaNs[slot] ?? 0;
       into.segment[row] = columns.segment[slot] ?? -1;
       into.sinceEpochDays[row] = columns.sinceEpochDays[slot] ?? 0;
+      into.sinceEpochRestDays[row] = columns.sinceEpochRestDays[slot] ?? 0;
     }
     if (windowVelocities.length > 0) {
       if (4 * count > this.velocities.length) this.velocities = new Float64Array(8 * count);

@@ -1,5 +1,5 @@
 import { isCode } from './code';
-import { daysSinceAt, eventInstant, segmentAt } from '../time/correction';
+import { daysSinceAt, eventInstant, restOfDaysSinceAt, segmentAt } from '../time/correction';
 import { compareInstants } from '../time/instant';
 import { type LeapSecondTable } from '../time/leap-seconds';
 import { createReadingParser, type ReadingFault, resolutionSigmaNs } from '../time/reading';
@@ -71,6 +71,7 @@ export interface ReconciledRecord {
   /** Row of the clock segment in the error tables, -1 for an exact clock. */
   segment: number;
   sinceEpochDays: number;
+  sinceEpochRestDays: number;
   /** NaN where none is given. */
   amplitude: number;
 }
@@ -86,6 +87,7 @@ export const emptyRecord = (): ReconciledRecord => ({
   sigmaSource: 0,
   segment: -1,
   sinceEpochDays: 0,
+  sinceEpochRestDays: 0,
   amplitude: NaN,
 });
 
@@ -164,6 +166,7 @@ export function createReconciler(network: Pick<Network, 'sites' | 'from' | 'to'>
     into.sigmaSource = sigmaText !== '' ? 0 : site.readingSigmaNs === undefined ? 2 : 1;
     into.segment = site.firstSegmentRow < 0 ? -1 : site.firstSegmentRow + holds;
     into.sinceEpochDays = into.segment < 0 ? 0 : daysSinceAt(segment, reading);
+    into.sinceEpochRestDays = into.segment < 0 ? 0 : restOfDaysSinceAt(segment, reading, into.sinceEpochDays);
     into.amplitude = amplitude;
     return undefined;
   };

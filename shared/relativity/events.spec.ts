@@ -7,7 +7,7 @@ describe('emptyEvents', () => {
     expect(events.count).toBe(0);
     expect([...events.segment]).toEqual([-1, -1, -1]);
     const zeros = Object.entries(events).filter(([name]) => name !== 'count' && name !== 'segment');
-    expect(zeros).toHaveLength(9);
+    expect(zeros).toHaveLength(10);
     for (const [, column] of zeros) expect([...(column as Float64Array)]).toEqual([0, 0, 0]);
   });
 

@@ -23,6 +23,8 @@ export interface EventColumns {
   readonly segment: Int32Array;
   /** Days of 86,400 s from the segment's epoch to the reading less its delay; 0 for an exact clock. */
   readonly sinceEpochDays: Float64Array;
+  /** What the double of `sinceEpochDays` leaves out, days: two readings a microsecond apart would else share half their digits. */
+  readonly sinceEpochRestDays: Float64Array;
 }
 
 /** What the events' errors refer to: one row a site, a clock segment, a reference. */
@@ -53,5 +55,6 @@ export function emptyEvents(capacity: number): EventColumns {
     sigmaNs: new Float64Array(capacity),
     segment: new Int32Array(capacity).fill(-1),
     sinceEpochDays: new Float64Array(capacity),
+    sinceEpochRestDays: new Float64Array(capacity),
   };
 }

@@ -78,7 +78,8 @@ export function differenceVarianceNs2(e: EventColumns, t: ErrorTables, i: number
   if (siteI !== siteJ) variance += square(t.siteDelaySigmaNs[siteI] ?? 0) + square(t.siteDelaySigmaNs[siteJ] ?? 0);
   const segmentI = e.segment[i] ?? -1;
   if (segmentI >= 0 && segmentI === e.segment[j]) {
-    const apartDays = (e.sinceEpochDays[j] ?? 0) - (e.sinceEpochDays[i] ?? 0);
+    const restDays = (e.sinceEpochRestDays[j] ?? 0) - (e.sinceEpochRestDays[i] ?? 0);
+    const apartDays = (e.sinceEpochDays[j] ?? 0) - (e.sinceEpochDays[i] ?? 0) + restDays;
     return variance + square((t.segmentRateSigmaNsPerDay[segmentI] ?? 0) * apartDays);
   }
   variance += clockVarianceNs2(e, t, i) + clockVarianceNs2(e, t, j);

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { EXACT_CLOCK, type ClockSegment } from './clock-record';
-import { daysSinceAt, eventInstant, prepareClock, segmentAt } from './correction';
+import { daysSinceAt, eventInstant, prepareClock, restOfDaysSinceAt, segmentAt } from './correction';
 import { addPicoseconds, instantOf, picosecondsBetween, PS_PER_S, type Instant } from './instant';
 
 const START: Instant = { taiS: 1_772_323_237, ps: 0 };
@@ -146,5 +146,26 @@ describe('the segment of a reading', () => {
     const [prepared] = prepareClock([segmentOf({})], 1e9);
     expect(daysSinceAt(prepared!, { taiS: START.taiS + 1 + 43_200, ps: 0 })).toBe(0.5);
     expect(daysSinceAt(prepared!, { taiS: START.taiS + 1 - 86_400, ps: 0 })).toBe(-1);
+  });
+
+  it('tells them so that two readings a picosecond apart, years after `at`, are a picosecond apart', () => {
+    // One rounding of a second to 1e-16 s each: 1e-4 ps.
+    const ROUNDING_PS = 1e-3;
+    fc.assert(
+      fc.property(
+        fc.integer({ min: -5 * 365 * 86_400, max: 5 * 365 * 86_400 }),
+        fc.integer({ min: 0, max: PS_PER_S - 1 }),
+        fc.integer({ min: 1, max: 10_000_000 }),
+        (sinceS, ps, apartPs) => {
+          const [prepared] = prepareClock([segmentOf({})], 0.25);
+          const first = { taiS: START.taiS + sinceS, ps };
+          const second = addPicoseconds(first, apartPs);
+          const [a, b] = [daysSinceAt(prepared!, first), daysSinceAt(prepared!, second)];
+          const rest = restOfDaysSinceAt(prepared!, second, b) - restOfDaysSinceAt(prepared!, first, a);
+          expect(Math.abs((b - a + rest) * 86_400 * PS_PER_S - apartPs)).toBeLessThan(ROUNDING_PS);
+          expect(Math.abs(rest)).toBeLessThan(1e-12);
+        },
+      ),
+    );
   });
 });

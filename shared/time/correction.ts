@@ -88,6 +88,20 @@ export function daysSinceAt(prepared: PreparedSegment, reading: Instant): number
   return secondsSinceAt(prepared, reading) / S_PER_DAY;
 }
 
+/** Days on this grid times the seconds of a day are exact, up to 2^16 days. */
+const GRID_DAYS = 2 ** -20;
+
+/**
+ * What a double of days since `at` leaves out: the two together are good to 1e-16 s, so that the time between two readings of a segment is.
+ *
+ * @param days what `daysSinceAt` said of the same reading
+ */
+export function restOfDaysSinceAt(prepared: PreparedSegment, reading: Instant, days: number): number {
+  const onGrid = Math.round(days / GRID_DAYS) * GRID_DAYS;
+  const restS = reading.taiS - prepared.epochS - onGrid * S_PER_DAY + (reading.ps - prepared.epochPs) / PS_PER_S;
+  return restS / S_PER_DAY - (days - onGrid);
+}
+
 /**
  * The instant of the event behind a reading: reading - delay - (offset + rate x (reading - delay - at)).
  *

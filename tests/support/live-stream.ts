@@ -35,6 +35,7 @@ export function liveEvent(network: PlainNetwork, event: PlainEvent): LiveEvent {
     sigmaNs: at(e.sigmaNs),
     segment: at(e.segment),
     sinceEpochDays: at(e.sinceEpochDays),
+    sinceEpochRestDays: at(e.sinceEpochRestDays),
   };
 }
 

@@ -111,6 +111,7 @@ export function columnsOf(network: PlainNetwork, sorted: readonly PlainEvent[]):
     sigmaNs: Float64Array.from(sorted, (e) => sigmaNsOf(network, e)),
     segment: Int32Array.from(sorted, (e) => e.segment),
     sinceEpochDays: Float64Array.from(sorted, (e) => (e.segment < 0 ? 0 : e.sinceEpochDays)),
+    sinceEpochRestDays: new Float64Array(sorted.length),
   };
 }
 
