@@ -1,4 +1,5 @@
 import { Router } from 'express';
+import { type HealthAnswer } from '#shared/contract/health';
 import { deployment } from '#schema/schema';
 import { appliedMigrations, watchPlace, type Db } from './db';
 import { sendProblem } from './problem';
@@ -22,7 +23,8 @@ export function healthRoutes(db: Db, version: string): Router {
       const known = db.select().from(deployment).get();
       if (!known) throw new Error('the deployment has no row');
       const migrations = appliedMigrations(db.$client).length;
-      res.json({ status: 'ok', version, database: 'answers', migrations, deployment: { createdAt: known.createdAt } });
+      const { createdAt } = known;
+      res.json({ status: 'ok', version, database: 'answers', migrations, deployment: { createdAt } } satisfies HealthAnswer);
     } catch (fault) {
       req.log.error({ err: fault }, 'database failed');
       sendProblem(res, 503, UNAVAILABLE, 'The database does not answer. Ask whoever runs the server to look for this id in its log.');

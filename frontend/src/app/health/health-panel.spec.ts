@@ -8,7 +8,13 @@ import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import { HealthPanel } from './health-panel';
 
 const ASK_EVERY_MS = 15_000;
-const answer = { version: '0.1.0', migrations: 1, deployment: { createdAt: '2026-12-01T11:23:27.998Z' } };
+const answer = {
+  status: 'ok',
+  version: '0.1.0',
+  database: 'answers',
+  migrations: 1,
+  deployment: { createdAt: '2026-12-01T11:23:27.998Z' },
+};
 const problem = { detail: 'The database file was moved.', id: '3f0c5f6e-9a53-4b44-8f0a-5d8dd3bb1a0e' };
 const unavailable = { status: 503, statusText: 'Service Unavailable' };
 

@@ -1,3 +1,6 @@
+import '../contract-settings';
+import { parseHealthAnswer } from '#shared/contract/health';
+
 /** What the server says of itself and its database. */
 export interface Health {
   /** The server's version. */
@@ -8,13 +11,12 @@ export interface Health {
   readonly createdAt: string;
 }
 
-/** Reads the answer of `GET /api/health`, and throws where it is not one. */
+/** Reads the answer of `GET /api/health`, and throws where it is not one: the field, its value and what would be right. */
 export function readHealth(body: unknown): Health {
-  const { version, migrations, deployment } = fields(body);
-  const { createdAt } = fields(deployment);
-  if (typeof version !== 'string' || typeof migrations !== 'number' || typeof createdAt !== 'string')
-    throw new Error('version, migrations and deployment.createdAt are needed');
-  return { version, migrations, createdAt };
+  const answer = parseHealthAnswer(body);
+  if (!answer.ok) throw new Error(`${answer.problem.where === '' ? 'the answer' : answer.problem.where} ${answer.problem.text}`);
+  const { version, migrations, deployment } = answer.value;
+  return { version, migrations, createdAt: deployment.createdAt };
 }
 
 /** The sentence and the id of an RFC 9457 problem, as far as the answer of a failed request is one. */
