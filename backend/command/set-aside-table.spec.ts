@@ -62,6 +62,13 @@ describe('the table of what is set aside', () => {
     expect(table.split('\n')[0]).toBe('a.csv,1,columns,"ORL,""1"""');
   });
 
+  it('has a record of megabytes whole, whatever stands where it is read in pieces', async () => {
+    const text = `"${'\u20ac'.repeat(700_000)}${'"\u{1d11e}\n'.repeat(100_000)}`; // 3 and 4 bytes a character: no piece ends where one does
+    const [row] = Papa.parse<string[]>(await tableOf([log('a.csv', text)], [[0, 1, 'columns']]), { newline: '\n' }).data;
+    expect(row?.slice(0, 3)).toEqual(['a.csv', '1', 'columns']);
+    expect(row?.[3] === text).toBe(true);
+  });
+
   it('tells two files of one name apart by their folders, however they were named', async () => {
     const one = log('one/x.csv', 'from one');
     const two = log('two/x.csv', 'from two');

@@ -1,4 +1,5 @@
 import { closeSync, openSync, readSync } from 'node:fs';
+import { StringDecoder } from 'node:string_decoder';
 import Papa from 'papaparse';
 import { compareText } from '#shared/compare-text';
 import { SET_ASIDE_REASONS } from '#shared/reconcile/record';
@@ -8,6 +9,9 @@ import { type ResultFile } from './result-folder';
 
 /** Records written between two breaths. */
 const STRETCH = 1024;
+
+/** What is read again at once: an open quote may have swallowed more than fits into a string, or into the time between two breaths. */
+const PIECE_BYTES = 1 << 20;
 
 /** A log as it was read: its path, and its name without folders. */
 export interface ReadLog {
@@ -20,7 +24,7 @@ class Rereader {
   private descriptor = -1;
   private path = '';
 
-  text(path: string, offsetBytes: number, lengthBytes: number): string {
+  bytes(path: string, offsetBytes: number, lengthBytes: number): Buffer {
     if (path !== this.path) {
       this.close();
       this.descriptor = openSync(path, 'r');
@@ -33,7 +37,7 @@ class Rereader {
       if (read === 0) throw new Error(`${path} became shorter while it was read`);
       done += read;
     }
-    return bytes.toString('utf8');
+    return bytes;
   }
 
   close(): void {
@@ -41,6 +45,21 @@ class Rereader {
     this.descriptor = -1;
     this.path = '';
   }
+}
+
+/** Writes a long text as one quoted cell at the end of its line, piece by piece. */
+async function writeQuoted(next: (fromBytes: number, mostBytes: number) => Buffer, file: ResultFile, pace: Pace): Promise<void> {
+  const decoder = new StringDecoder('utf8');
+  const put = (text: string): void => void file.text(text.replaceAll('"', '""'));
+  file.text('"');
+  for (let from = 0; ; from += PIECE_BYTES) {
+    const bytes = next(from, PIECE_BYTES);
+    put(decoder.write(bytes));
+    if (bytes.length < PIECE_BYTES) break;
+    await pace.breathe();
+  }
+  put(decoder.end());
+  file.text('"\n');
 }
 
 /**
@@ -62,9 +81,16 @@ export async function writeSetAside(found: FoundRecords, logs: readonly ReadLog[
   try {
     for (const [at, row] of rows.entries()) {
       const path = logs[setAside.file[row] ?? 0]?.path ?? '';
-      const text = reread.text(path, setAside.offsetBytes[row] ?? 0, setAside.lengthBytes[row] ?? 0);
-      const reason = SET_ASIDE_REASONS[setAside.reason[row] ?? 0] ?? '';
-      file.text(`${Papa.unparse([[nameOf(row), setAside.line[row] ?? 0, reason, text]], { newline: '\n' })}\n`);
+      const lengthBytes = setAside.lengthBytes[row] ?? 0;
+      const offsetBytes = setAside.offsetBytes[row] ?? 0;
+      const cells = [nameOf(row), setAside.line[row] ?? 0, SET_ASIDE_REASONS[setAside.reason[row] ?? 0] ?? ''];
+      if (lengthBytes > PIECE_BYTES) {
+        file.text(`${Papa.unparse([cells])},`);
+        await writeQuoted((from, most) => reread.bytes(path, offsetBytes + from, Math.min(most, lengthBytes - from)), file, pace);
+      } else {
+        const text = reread.bytes(path, offsetBytes, lengthBytes).toString('utf8');
+        file.text(`${Papa.unparse([[...cells, text]], { newline: '\n' })}\n`);
+      }
       if (at % STRETCH === 0) await pace.breathe();
     }
   } finally {
