@@ -16,6 +16,6 @@ export function coincidenceSweep(input: KernelInput, limit: number): Coincidence
   const kernel = coincidenceKernel(input);
   const setsOf = setsFrom(kernel, input.events, { minimumFold: input.rule.minimumFold, limit });
   return (from, to, listener) => {
-    for (let event = from; event < to; event++) setsOf(event, listener);
+    for (let event = kernel.nextBusy(from, to); event < to; event = kernel.nextBusy(event + 1, to)) setsOf(event, listener);
   };
 }

@@ -24,6 +24,8 @@ export interface KernelInput {
 export interface CoincidenceKernel {
   /** Are two triggers near? Their rows may come in any order; two triggers of one site never are. */
   near(a: number, b: number): boolean;
+  /** The first row from `from` on, before `to`, that may have a near trigger after it; `to` where there is none. */
+  nextBusy(from: number, to: number): number;
   /** Puts the rows after `event` that are near it into `found` from 0 on, and returns how many. */
   laterNear(event: number, found: RowList): number;
   /** The same for the rows before it. */
@@ -125,6 +127,20 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
     return filled;
   }
 
+  /** Most events of a quiet network are alone: their successor is beyond the widest window. */
+  function nextBusyInOneBand(from: number, to: number): number {
+    let atS = taiS[from] ?? 0;
+    let atPs = ps[from] ?? 0;
+    for (let event = from; event < to && event + 1 < count; event++) {
+      const nextS = taiS[event + 1] ?? 0;
+      const nextPs = ps[event + 1] ?? 0;
+      if (nanosecondsOf(nextS - atS, nextPs - atPs) <= spanNs) return event;
+      atS = nextS;
+      atPs = nextPs;
+    }
+    return to;
+  }
+
   function earlierInOneBand(event: number, found: RowList): number {
     const toS = taiS[event] ?? 0;
     const toPs = ps[event] ?? 0;
@@ -162,9 +178,10 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
 
   return {
     near: (a, b) => {
-      const [first, second] = a < b ? [a, b] : [b, a];
-      return nearInOrder(first, second, apartNs(first, second), (reachOf(first) + reachOf(second)) * reachFactor);
+      const reachNs = (reachOf(a) + reachOf(b)) * reachFactor;
+      return a < b ? nearInOrder(a, b, apartNs(a, b), reachNs) : nearInOrder(b, a, apartNs(b, a), reachNs);
     },
+    nextBusy: oneBand ? nextBusyInOneBand : (from) => from,
     laterNear: oneBand ? laterInOneBand : (event, found) => inBands(event, found, 1),
     earlierNear: oneBand ? earlierInOneBand : (event, found) => inBands(event, found, -1),
     siteCount,

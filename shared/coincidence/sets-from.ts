@@ -2,6 +2,7 @@ import { type EventColumns } from '../relativity/events';
 import { searchCliques } from './clique-search';
 import { isSurelyCrowded, mostSets } from './crowding';
 import { type CoincidenceKernel, RowList } from './kernel';
+import { WORD_ROWS, WordSearch } from './word-search';
 
 /** An event that is the earliest of more sets than are listed. */
 export interface Crowd {
@@ -42,8 +43,10 @@ export function setsFrom(
 ): (event: number, listener: SetListener) => void {
   const later = new RowList();
   const earlier = new RowList();
-  const small = [new Int32Array(2), new Int32Array(3)];
-  const few = [new Int32Array(1), new Int32Array(1), new Int32Array(2)] as const;
+  const pair = new Int32Array(2);
+  const triple = new Int32Array(3);
+  const second = new Int32Array(1);
+  const words = new WordSearch();
   const leastOthers = limits.minimumFold - 1;
   const siteOf = (row: number): number => events.site[row] ?? 0;
   const near = (a: number, b: number): boolean => kernel.near(a, b);
@@ -60,32 +63,25 @@ export function setsFrom(
     return false;
   }
 
-  /** Hands over the event and `others`, unless it is too small or an earlier trigger could join it. */
-  function handOver(event: number, others: Int32Array, earlierCount: number, listener: SetListener): void {
-    if (others.length < leastOthers || isBlocked(earlierCount, others, others.length)) return;
-    const rows = small[others.length - 1] ?? new Int32Array(others.length + 1);
+  /** Hands over the event and the first `count` rows of `others`, one or two, unless they are too few or an earlier trigger could join them. */
+  function handOver(event: number, others: Int32Array, count: 1 | 2, earlierCount: number, listener: SetListener): void {
+    if (count < leastOthers || (earlierCount > 0 && isBlocked(earlierCount, others, count))) return;
+    const rows = count === 1 ? pair : triple;
     rows[0] = event;
-    rows.set(others, 1);
-    listener.set(rows, rows.length);
+    rows[1] = others[0] ?? 0;
+    if (count === 2) rows[2] = others[1] ?? 0;
+    listener.set(rows, count + 1);
   }
 
   /** The common cases of a quiet network, one neighbour or two, need no search. */
-  function fromFew(event: number, laterCount: number, listener: SetListener): void {
+  function fromFew(event: number, laterCount: 1 | 2, listener: SetListener): void {
     const earlierCount = kernel.earlierNear(event, earlier);
-    const [one, two, both] = few;
-    const first = later.rows[0] ?? 0;
-    const second = later.rows[1] ?? 0;
-    if (laterCount === 2 && kernel.near(first, second)) {
-      both[0] = first;
-      both[1] = second;
-      handOver(event, both, earlierCount, listener);
-      return;
-    }
-    one[0] = first;
-    handOver(event, one, earlierCount, listener);
-    if (laterCount === 1) return;
-    two[0] = second;
-    handOver(event, two, earlierCount, listener);
+    const others = later.rows;
+    const areOne = laterCount === 2 && kernel.near(others[0] ?? 0, others[1] ?? 0);
+    handOver(event, others, areOne ? 2 : 1, earlierCount, listener);
+    if (laterCount === 1 || areOne) return;
+    second[0] = others[1] ?? 0;
+    handOver(event, second, 1, earlierCount, listener);
   }
 
   function crowdAt(event: number, laterCount: number): Crowd {
@@ -116,7 +112,7 @@ export function setsFrom(
       listener.crowd(crowdAt(event, laterCount));
       return;
     }
-    const earlierRows = earlier.rows.subarray(0, kernel.earlierNear(event, earlier));
+    const earlierCount = kernel.earlierNear(event, earlier);
     const sets: Int32Array[] = [];
     const found = (others: Int32Array, length: number): void => {
       const rows = new Int32Array(length + 1);
@@ -124,8 +120,11 @@ export function setsFrom(
       rows.set(others.subarray(0, length), 1);
       sets.push(rows.sort());
     };
-    const graph = { later: laterRows, earlier: earlierRows, near, siteOf };
-    const count = searchCliques(graph, { leastOthers, limit: limits.limit, found });
+    const goal = { leastOthers, limit: limits.limit, found };
+    const count =
+      laterCount + earlierCount <= WORD_ROWS
+        ? words.run({ later: later.rows, laterCount, earlier: earlier.rows, earlierCount, near }, goal)
+        : searchCliques({ later: laterRows, earlier: earlier.rows.subarray(0, earlierCount), near, siteOf }, goal);
     if (count > limits.limit) listener.crowd(crowdAt(event, laterCount));
     else for (const rows of sets.sort(compareRows)) listener.set(rows, rows.length);
   }

@@ -3,16 +3,22 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { DuckDBInstance } from '@duckdb/node-api';
 import { C_M_S } from '#shared/constants';
+import { cpuMs } from './medians';
 import { type QuietColumns } from './quiet-columns';
 
-/** How the join went. */
+/** How a join went, on one thread as the finder works. */
 export interface JoinResult {
-  readonly version: string;
   readonly pairs: number;
-  /** On one thread, as the finder works. */
-  readonly oneThreadMs: number;
-  /** On as many threads as the database chooses. */
-  readonly allThreadsMs: number;
+  readonly cpuMs: number;
+}
+
+/** The join over times as the events have them, and over times that a user has first made small. */
+export interface JoinResults {
+  readonly version: string;
+  /** TAI in picoseconds, which takes 128 bits. */
+  readonly absolute: JoinResult;
+  /** Picoseconds since the first event, which take 64. */
+  readonly sinceFirst: JoinResult;
 }
 
 /**
@@ -20,30 +26,28 @@ export interface JoinResult {
  *
  * The clocks of the quiet network are all different and share one reference, so a pair's variance is a sum of two columns.
  */
-export async function duckdbRangeJoin({ events, errors }: QuietColumns, widestNs: number, sigmas: number): Promise<JoinResult> {
+export async function duckdbRangeJoin({ events, errors }: QuietColumns, widestNs: number, sigmas: number): Promise<JoinResults> {
   const folder = mkdtempSync(join(tmpdir(), 'skewline-bench-'));
   try {
     const file = join(folder, 'events.csv');
     writeColumns(file, events, errors.referenceSigmaNs[0] ?? 0, errors.sitePositionSigmaM[0] ?? 0);
     const connection = await (await DuckDBInstance.create(':memory:')).connect();
     const version = String((await connection.runAndReadAll('select version()')).getRows()[0]?.[0]);
-    await connection.run(
-      `create table e as select * from read_csv('${file}', header = true, columns = {'t': 'BIGINT', 'site': 'SMALLINT', 'x': 'DOUBLE', 'y': 'DOUBLE', 'z': 'DOUBLE', 'v': 'DOUBLE'})`,
-    );
-    const widestPs = Math.ceil(widestNs * 1e3);
-    const ask = async (): Promise<{ pairs: number; ms: number }> => {
-      const started = performance.now();
-      const rows = await connection.runAndReadAll(`
-        select count(*) from e a join e b on b.t >= a.t and b.t <= a.t + ${widestPs}
-        where a.site <> b.site and (b.t > a.t or (b.t = a.t and b.site > a.site))
-          and (b.t - a.t) / 1e3 <= sqrt((b.x - a.x) * (b.x - a.x) + (b.y - a.y) * (b.y - a.y) + (b.z - a.z) * (b.z - a.z)) * ${1e9 / C_M_S}
-            + ${sigmas} * sqrt(a.v + b.v)`);
-      return { pairs: Number(rows.getRows()[0]?.[0]), ms: performance.now() - started };
-    };
-    const all = await ask();
     await connection.run('set threads = 1');
-    const one = await ask();
-    return { version, pairs: all.pairs, allThreadsMs: all.ms, oneThreadMs: one.ms };
+    await connection.run(
+      `create table e as select t, t + ${events.taiS[0] ?? 0}::HUGEINT * 1000000000000 as tai, site, x, y, z, v from read_csv('${file}', header = true,
+        columns = {'t': 'BIGINT', 'site': 'SMALLINT', 'x': 'DOUBLE', 'y': 'DOUBLE', 'z': 'DOUBLE', 'v': 'DOUBLE'})`,
+    );
+    const ask = async (time: string): Promise<JoinResult> => {
+      const started = cpuMs();
+      const rows = await connection.runAndReadAll(`
+        select count(*) from e a join e b on b.${time} >= a.${time} and b.${time} <= a.${time} + ${Math.ceil(widestNs * 1e3)}
+        where a.site <> b.site and (b.${time} > a.${time} or (b.${time} = a.${time} and b.site > a.site))
+          and (b.${time} - a.${time}) / 1e3 <= ${sigmas} * sqrt(a.v + b.v) + ${1e9 / C_M_S} *
+            sqrt((b.x - a.x) * (b.x - a.x) + (b.y - a.y) * (b.y - a.y) + (b.z - a.z) * (b.z - a.z))`);
+      return { pairs: Number(rows.getRows()[0]?.[0]), cpuMs: cpuMs() - started };
+    };
+    return { version, absolute: await ask('tai'), sinceFirst: await ask('t') };
   } finally {
     rmSync(folder, { recursive: true });
   }
