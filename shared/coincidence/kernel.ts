@@ -1,7 +1,7 @@
 import { C_M_S } from '../constants';
 import { type ErrorTables, type EventColumns } from '../relativity/events';
 import { gapSigmaNs } from '../relativity/time-error';
-import { nanosecondsOf } from '../time/instant';
+import { nanosecondsOf, PS_PER_S } from '../time/instant';
 import { eventReachNs, reachBands } from './reach-bands';
 import { type CoincidenceRule } from './rule';
 import { type WindowBounds } from './window-bounds';
@@ -95,8 +95,12 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
   const mostReachNs = bands.reduce((most, band) => Math.max(most, band.mostReachNs), 0);
   const spanNs = geometryNs + 2 * mostReachNs * reachFactor;
   const oneBand = bands.length === 1 && !bands[0]?.rows;
+
+  // The walk of one band compares picoseconds, which takes no division. Its bounds carry a slack that exceeds their rounding by far.
+  const spanPs = spanNs * 1e3;
+  const certainPs = certainNs.map((boundNs) => boundNs * 1e3);
   /** Beyond this not near, whatever the errors; stays below 0 within a site. */
-  const oneBandNs = possibleNs.map((boundNs) => (boundNs < 0 ? -1 : boundNs + 2 * mostReachNs * reachFactor));
+  const possiblePs = possibleNs.map((boundNs) => (boundNs < 0 ? -1 : (boundNs + 2 * mostReachNs * reachFactor) * 1e3));
 
   const apartNs = (a: number, b: number): number => nanosecondsOf((taiS[b] ?? 0) - (taiS[a] ?? 0), (ps[b] ?? 0) - (ps[a] ?? 0));
 
@@ -118,11 +122,11 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
     const siteRow = (site[event] ?? 0) * siteCount;
     let filled = 0;
     for (let other = event + 1; other < count; other++) {
-      const dtNs = nanosecondsOf((taiS[other] ?? 0) - fromS, (ps[other] ?? 0) - fromPs);
-      if (dtNs > spanNs) break;
+      const dtPs = ((taiS[other] ?? 0) - fromS) * PS_PER_S + ((ps[other] ?? 0) - fromPs);
+      if (dtPs > spanPs) break;
       const at = siteRow + (site[other] ?? 0);
-      if (dtNs > (oneBandNs[at] ?? -1)) continue;
-      if (dtNs <= (certainNs[at] ?? -1) || isNear(event, other, dtNs)) found.put(filled++, other);
+      if (dtPs > (possiblePs[at] ?? -1)) continue;
+      if (dtPs <= (certainPs[at] ?? -1) || isNear(event, other, dtPs / 1e3)) found.put(filled++, other);
     }
     return filled;
   }
@@ -134,7 +138,7 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
     for (let event = from; event < to && event + 1 < count; event++) {
       const nextS = taiS[event + 1] ?? 0;
       const nextPs = ps[event + 1] ?? 0;
-      if (nanosecondsOf(nextS - atS, nextPs - atPs) <= spanNs) return event;
+      if ((nextS - atS) * PS_PER_S + (nextPs - atPs) <= spanPs) return event;
       atS = nextS;
       atPs = nextPs;
     }
@@ -147,11 +151,11 @@ export function coincidenceKernel(input: KernelInput): CoincidenceKernel {
     const siteRow = (site[event] ?? 0) * siteCount;
     let filled = 0;
     for (let other = event - 1; other >= 0; other--) {
-      const dtNs = nanosecondsOf(toS - (taiS[other] ?? 0), toPs - (ps[other] ?? 0));
-      if (dtNs > spanNs) break;
+      const dtPs = (toS - (taiS[other] ?? 0)) * PS_PER_S + (toPs - (ps[other] ?? 0));
+      if (dtPs > spanPs) break;
       const at = siteRow + (site[other] ?? 0);
-      if (dtNs > (oneBandNs[at] ?? -1)) continue;
-      if (dtNs <= (certainNs[at] ?? -1) || isNear(other, event, dtNs)) found.put(filled++, other);
+      if (dtPs > (possiblePs[at] ?? -1)) continue;
+      if (dtPs <= (certainPs[at] ?? -1) || isNear(other, event, dtPs / 1e3)) found.put(filled++, other);
     }
     if (filled > 1) found.rows.subarray(0, filled).reverse();
     return filled;

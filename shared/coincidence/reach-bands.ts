@@ -40,16 +40,11 @@ export function eventReachNs(input: ReachInput, event: number): number {
  */
 export function reachBands(input: ReachInput, geometryNs: number): readonly ReachBand[] {
   const { events, errors, rule } = input;
-  const siteMost = new Float64Array(errors.sitePositionSigmaM.length);
-  for (let i = 0; i < events.count; i++) {
-    const at = events.site[i] ?? 0;
-    const sigma = events.sigmaNs[i] ?? 0;
-    if (sigma > (siteMost[at] ?? 0)) siteMost[at] = sigma;
-  }
-  const mostReachNs = siteMost.reduce(
-    (most, sigma, at) => Math.max(most, rule.sigmas * (sigma + (errors.sitePositionSigmaM[at] ?? 0) * NS_PER_LIGHT_M)),
-    0,
-  );
+  const { sigmaNs } = events;
+  let mostSigmaNs = 0;
+  for (let i = 0; i < events.count; i++) if ((sigmaNs[i] ?? 0) > mostSigmaNs) mostSigmaNs = sigmaNs[i] ?? 0;
+  const mostPositionM = errors.sitePositionSigmaM.reduce((most, sigmaM) => Math.max(most, sigmaM), 0);
+  const mostReachNs = rule.sigmas * (mostSigmaNs + mostPositionM * NS_PER_LIGHT_M);
   const firstNs = Math.max(geometryNs, LEAST_BAND_NS);
   if (mostReachNs <= firstNs) return [{ rows: undefined, mostReachNs }];
 
