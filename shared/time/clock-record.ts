@@ -37,14 +37,3 @@ export const EXACT_CLOCK: ClockRecord = [
     covarianceNs2PerDay: 0,
   },
 ];
-
-/**
- * Variance of a clock's error, ns^2: sigma_o^2 + 2 cov tau + sigma_r^2 tau^2.
- *
- * @param tauDays days since the segment's `at`, of either sign
- * @returns 0 or more: a covariance at its limit (correlation 1) may not take the sum below 0 by rounding
- */
-export function clockVarianceNs2(segment: ClockSegment, tauDays: number): number {
-  const { offsetSigmaNs, rateSigmaNsPerDay, covarianceNs2PerDay } = segment;
-  return Math.max(0, offsetSigmaNs ** 2 + 2 * covarianceNs2PerDay * tauDays + (rateSigmaNsPerDay * tauDays) ** 2);
-}
