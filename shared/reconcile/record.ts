@@ -38,7 +38,6 @@ export type Kind = (typeof KINDS)[number];
 
 /** Where the standard error of a reading comes from. */
 export const SIGMA_SOURCES = ['record', 'site', 'resolution'] as const;
-export type SigmaSource = (typeof SIGMA_SOURCES)[number];
 
 /** Where a log has the fields that mean something; -1 for a column that it does not have. */
 export interface RecordLayout {
