@@ -5,7 +5,7 @@ import { instantFromTcg, tcgAt } from './tcg';
 
 const EPOCH: Instant = { taiS: 220_924_800, ps: 0 };
 const CENTURY_S = 36_525 * 86_400;
-/** physics.md: time-scale conversion. */
+/** The resolution of an instant: the definition (IAU 2000 Resolution B1.9) is exact, and each side is rounded to a picosecond once. */
 const ACCURACY_PS = 1;
 
 /** L_G / (1 - L_G) of the time since 1977 in whole numbers; L_G has 19 decimals. */
