@@ -29,6 +29,15 @@ describe('putNumber', () => {
     ]);
   });
 
+  it('writes whole picoseconds as nanoseconds with three decimals at most', () => {
+    fc.assert(
+      fc.property(fc.integer({ min: 8_000, max: 9_000_000_000_000_000 }), (ps) => {
+        expect(textOf(ps / 1e3) ?? String(ps / 1e3)).toBe(String(ps / 1e3));
+      }),
+      { numRuns: 20_000 },
+    );
+  });
+
   it('leaves to others what is small, huge or no number', () => {
     for (const value of [0, -0, 1.5, -7.999, 2 ** 43, 1e300, Infinity, -Infinity, NaN, 5e-324]) expect(textOf(value)).toBeUndefined();
   });

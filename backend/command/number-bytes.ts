@@ -48,9 +48,10 @@ export function putNumber(value: number, bytes: Uint8Array, at: number): number 
   end = putWhole(whole, bytes, end);
   const fraction = size - whole; // exact
   if (fraction === 0) return end;
+  // A quotient of whole numbers is the double nearest to it, so a decimal that divides back to the number reads back as it too.
   const few = Math.round(fraction * 1e3);
-  if (whole + few / 1e3 === size && few < 1e3 && isNearest(few / 1e3 - fraction, exponent))
-    return putDecimals(few, FEW_DECIMALS, bytes, end);
+  const thousandths = whole * 1e3 + few;
+  if (thousandths / 1e3 === size && Number.isSafeInteger(thousandths)) return putDecimals(few, FEW_DECIMALS, bytes, end);
   const decimals = DECIMALS[exponent - LEAST_EXPONENT] ?? 0;
   const power = POWERS[decimals] ?? 1;
   const shorter = Math.round((fraction * power) / 10);
