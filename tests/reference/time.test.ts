@@ -313,6 +313,36 @@ describe('ERFA at many instants', () => {
   });
 });
 
+describe('exact arithmetic at many instants', () => {
+  const fixture = JSON.parse(readFileSync(new URL('./mpmath-time.json', import.meta.url), 'utf8')) as {
+    readonly source: string;
+    readonly rows: readonly (readonly [tai: string, tt: string, gps: string, tcg: string])[];
+  };
+  /** The resolution of an instant: TCG - TT is no whole number of picoseconds, and the fixture rounds it once. */
+  const TCG_TOLERANCE_PS = 1;
+  const apartPs = (a: Instant, b: Instant): number => Math.abs((a.taiS - b.taiS) * PS_PER_S + a.ps - b.ps);
+
+  it(`gives TT and GPS time for TAI, and TAI for them, to the picosecond (${fixture.source})`, () => {
+    expect(fixture.rows).toHaveLength(42);
+    for (const [tai, tt, gps] of fixture.rows) {
+      const instant = instantOfText(tai, 'TAI');
+      expect([textOf(instant, 'TT', 12), textOf(instant, 'GPS', 12)]).toEqual([tt, gps]);
+      expect([textOf(instantOfText(tt, 'TT'), 'TAI', 12), textOf(instantOfText(gps, 'GPS'), 'TAI', 12)]).toEqual([tai, tai]);
+    }
+  });
+
+  it(`gives TCG for TT, and TT for TCG, to the picosecond (${fixture.source})`, () => {
+    for (const [tai, tt, , tcg] of fixture.rows) {
+      const read = instantOfText(tcg, 'TAI'); // TCG's own seconds, counted as TAI's are
+      const { day, secondOfDay, ps } = tcgAt(instantOfText(tt, 'TT'));
+      expect(apartPs({ taiS: day * S_PER_DAY + secondOfDay, ps }, read)).toBeLessThanOrEqual(TCG_TOLERANCE_PS);
+      const dayOfTcg = Math.floor(read.taiS / S_PER_DAY);
+      const back = instantFromTcg({ day: dayOfTcg, secondOfDay: read.taiS - dayOfTcg * S_PER_DAY, ps: read.ps });
+      expect(apartPs(back, instantOfText(tai, 'TAI'))).toBeLessThanOrEqual(TCG_TOLERANCE_PS);
+    }
+  });
+});
+
 describe('SHA-1', () => {
   it('is that of the platform for any ASCII text', () => {
     fc.assert(
