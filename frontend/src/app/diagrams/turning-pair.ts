@@ -1,3 +1,9 @@
+import { C_M_S } from '#shared/constants';
+import { boostEvent } from '#shared/relativity/boost';
+import { type FourVector } from '#shared/relativity/four-vector';
+import { turningVelocity } from '#shared/relativity/turning';
+import { type FourVelocity, fourVelocity, rapidity } from '#shared/relativity/velocity';
+
 /** A place and a time on one axis, from an event at the origin: both in light-milliseconds, so that light stands at 45 degrees. */
 export interface PlaneEvent {
   /** Along the axis, light-ms. */
@@ -6,34 +12,34 @@ export interface PlaneEvent {
   readonly tMs: number;
 }
 
-/**
- * The same event as a frame moving along the axis places it: x' = g (x - b t), t' = g (t - b x), g = 1 / sqrt(1 - b^2).
- *
- * @param event in the frame at rest
- * @param velocityC the frame's speed along the axis, in c, between -1 and 1
- * @returns the event in the moving frame; x'^2 - t'^2 is what it was
- * Source: Einstein 1905, section 3; Rindler, Relativity (2nd edition, 2006), equation 2.6.
- */
-export function seenFrom(event: PlaneEvent, velocityC: number): PlaneEvent {
-  const gamma = 1 / Math.sqrt(1 - velocityC * velocityC);
-  return { xMs: gamma * (event.xMs - velocityC * event.tMs), tMs: gamma * (event.tMs - velocityC * event.xMs) };
+const M_PER_LIGHT_MS = C_M_S / 1000;
+
+/** The event in the core's metres, the picture's axis as the first of three. */
+const inMetres = ({ xMs, tMs }: PlaneEvent): FourVector => ({ ctM: tMs * M_PER_LIGHT_MS, xM: [xMs * M_PER_LIGHT_MS, 0, 0] });
+
+/** The event as a frame that moves along the axis places it; the velocity is measured in the frame at rest. */
+export function seenFrom(event: PlaneEvent, velocity: FourVelocity): PlaneEvent {
+  const { ctM, xM } = boostEvent(velocity, inMetres(event));
+  return { xMs: xM[0] / M_PER_LIGHT_MS, tMs: ctM / M_PER_LIGHT_MS };
 }
 
-/** The least speed, in c along the axis, beyond which a spacelike event comes before the one at the origin: t / x. */
-export const turningSpeedC = (event: PlaneEvent): number => event.tMs / event.xMs;
+/** The slowest frame in which the event is simultaneous with the one at the origin; nothing unless it is spacelike. */
+export const turningFrame = (event: PlaneEvent): FourVelocity | undefined => turningVelocity(event.tMs / 1000, inMetres(event).xM);
 
 /**
- * The hyperbola on which every frame along the axis places a spacelike event.
+ * The curve on which every frame along the axis places a spacelike event.
  *
  * @param event spacelike from the origin and on its positive side
- * @param reachMs how far up and down the curve goes, ms
+ * @param reach rapidity of the fastest frames, either way from the one in which the event is simultaneous with the origin
  * @param steps how many straight pieces
- * @returns steps + 1 points from early to late
+ * @returns steps + 1 points from early to late, none for an event that is not spacelike
  */
-export function placesInAllFrames(event: PlaneEvent, reachMs: number, steps: number): PlaneEvent[] {
-  const properMs2 = event.xMs * event.xMs - event.tMs * event.tMs;
+export function placesInAllFrames(event: PlaneEvent, reach: number, steps: number): PlaneEvent[] {
+  const turning = turningFrame(event);
+  if (turning === undefined) return [];
+  const middle = Math.sign(event.tMs) * rapidity(turning);
   return Array.from({ length: steps + 1 }, (_, step) => {
-    const tMs = reachMs * ((2 * step) / steps - 1);
-    return { xMs: Math.sqrt(properMs2 + tMs * tMs), tMs };
+    const gammaBeta = Math.sinh(middle + reach * (1 - (2 * step) / steps));
+    return seenFrom(event, fourVelocity([gammaBeta, 0, 0]));
   });
 }

@@ -1,13 +1,17 @@
 import { ChangeDetectionStrategy, Component, DestroyRef, ElementRef, afterNextRender, computed, inject, signal } from '@angular/core';
 import { line, scaleLinear } from 'd3';
-import { type PlaneEvent, placesInAllFrames, seenFrom, turningSpeedC } from './turning-pair';
+import { velocityFromBeta } from '#shared/relativity/velocity';
+import { type PlaneEvent, placesInAllFrames, seenFrom } from './turning-pair';
 
 /** An invented pair: the second site lies 36 light-ms away and triggers 13.2 ms later. */
 const PAIR: PlaneEvent = { xMs: 36, tMs: 13.2 };
-const TURNING_C = turningSpeedC(PAIR);
 const tenths = (least: number, most: number): number[] => Array.from({ length: most - least + 1 }, (_, k) => (least + k) / 10);
 const LINES_C = tenths(-8, 8);
-const MARKS_C = tenths(-7, 7);
+const PLACES = tenths(-7, 7).flatMap((speedC) => {
+  const velocity = velocityFromBeta([speedC, 0, 0], 'speedC');
+  return velocity.ok ? [{ rest: speedC === 0, ...seenFrom(PAIR, velocity.value) }] : [];
+});
+const CURVE = placesInAllFrames(PAIR, 2, 400); // rapidity 2 is past 100 ms, beyond the edges
 
 const WIDTH_MS = 97; // of the axis shown, whatever the size
 const FAR_MS = 400; // beyond every edge
@@ -65,13 +69,10 @@ function draw({ widthPx, heightPx }: { widthPx: number; heightPx: number }) {
     cones: [cone(FAR_MS), cone(-FAR_MS)],
     light: [through(FAR_MS, FAR_MS), through(FAR_MS, -FAR_MS)],
     frames: LINES_C.map((velocityC) => ({ path: through(FAR_MS, FAR_MS * velocityC), rest: velocityC === 0 })),
-    turning: through(FAR_MS, FAR_MS * TURNING_C),
+    turning: through(10 * PAIR.xMs, 10 * PAIR.tMs),
     sites: [0, PAIR.xMs].map((xMs) => round(x(xMs))),
-    curve: path(placesInAllFrames(PAIR, FAR_MS / 4, 400)) ?? '',
-    marks: MARKS_C.map((velocityC) => {
-      const { xMs, tMs } = seenFrom(PAIR, velocityC);
-      return lozenge(round(x(xMs)), round(y(tMs)), velocityC === 0 ? half * 1.9 : half);
-    }),
+    curve: path(CURVE) ?? '',
+    marks: PLACES.map(({ rest, xMs, tMs }) => lozenge(round(x(xMs)), round(y(tMs)), rest ? half * 1.9 : half)),
     first: { x: round(x(0)), y: round(y(0)), r: widthPx < NARROW_PX ? 7.5 : 10.5 },
     heightPx,
     labels: { y: heightPx - LABEL_FROM_BOTTOM_PX, first: round(x(0)) - 12, second: round(x(PAIR.xMs)) + 10 },
