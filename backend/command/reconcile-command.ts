@@ -1,10 +1,11 @@
 import { parseNetworkFile } from '#shared/contract/network-file';
 import { buildNetwork } from '#shared/contract/build-network';
 import { type Network } from '#shared/reconcile/network';
+import { compareInstants, type Instant } from '#shared/time/instant';
 import { earthBarycentricVelocityMS } from '../frames/ephemeris';
 import { VERSION } from '../version';
 import { writeCoincidences, writeNeighbours } from './coincidence-tables';
-import { eventWriter, HEADERS, PairWriter } from './event-tables';
+import { eventWriter, HEADERS, instantOfEvent, PairWriter } from './event-tables';
 import { faultText } from './fault-text';
 import { type GroundTables, loadGroundTables } from './ground-tables';
 import { readLiveTime } from './live-time';
@@ -128,18 +129,26 @@ export async function reconcileFiles(options: ReconcileOptions, context: Command
     setAside.text(HEADERS.setAside);
     await writeSetAside(found, logs, setAside, pace);
     const hashes = folder.finishFiles();
-    const summary = summaryOf({ network, version: VERSION, tables, found, sorted, live, ...results, hashes });
+    const ground = tables.accountOf({ from: network.from, end: endOfRun(network, sorted) });
+    const summary = summaryOf({ network, version: VERSION, ground, found, sorted, live, ...results, hashes });
     folder.file('summary.json').text(`${JSON.stringify(summary, null, 2)}\n`);
     folder.finishFiles();
     context.signal.throwIfAborted();
     folder.publish([...hashes.keys(), 'summary.json']);
     progress.end();
+    for (const text of ground.warnings) say(`warning: ${text}`);
     say(closingLine(found, sorted, results.coincidences.byFold));
   } catch (fault) {
     progress.end();
     folder.discard();
     throw fault;
   }
+}
+
+/** The end of what was reconciled: the run's or the last event's, whichever is later. */
+function endOfRun(network: Network, sorted: SortedEvents): Instant {
+  const last = sorted.events.count > 0 ? instantOfEvent(sorted, sorted.events.count - 1) : network.from;
+  return network.to && compareInstants(network.to, last) > 0 ? network.to : last;
 }
 
 async function writePairs(
@@ -179,7 +188,9 @@ function closingLine(found: FoundRecords, sorted: SortedEvents, byFold: Readonly
   const repeated = found.counts.repeated.reduce((total, count) => total + count, 0);
   const sets = [...byFold.values()].reduce((total, count) => total + count, 0);
   return (
-    `${grouped(sorted.events.count)} events, ${grouped(sets)} coincidences; ` +
-    `${grouped(found.setAsideCount)} records set aside, ${grouped(repeated)} repeated`
+    `${counted(sorted.events.count, 'event')}, ${counted(sets, 'coincidence')}; ` +
+    `${counted(found.setAsideCount, 'record')} set aside, ${grouped(repeated)} repeated`
   );
 }
+
+const counted = (count: number, what: string): string => `${grouped(count)} ${what}${count === 1 ? '' : 's'}`;

@@ -2,10 +2,10 @@ import { LIMITS } from '#shared/limits';
 import { KINDS, SET_ASIDE_REASONS } from '#shared/reconcile/record';
 import { type Network } from '#shared/reconcile/network';
 import { createTaiWriter } from '#shared/time/format';
-import { compareInstants, type Instant } from '#shared/time/instant';
+import { type Instant } from '#shared/time/instant';
 import { type CoincidenceCounts } from './coincidence-tables';
 import { type ClassCounts, instantOfEvent } from './event-tables';
-import { type GroundTables } from './ground-tables';
+import { type GroundAccount } from './ground-tables';
 import { isLiveAt, type LiveTime, liveSeconds } from './live-time';
 import { type FoundRecords } from './record-store';
 import { type SortedEvents } from './sorted-events';
@@ -22,7 +22,7 @@ interface SiteSums {
 export interface SummaryInput {
   readonly network: Network;
   readonly version: string;
-  readonly tables: GroundTables;
+  readonly ground: GroundAccount;
   readonly found: FoundRecords;
   readonly sorted: SortedEvents;
   readonly live: LiveTime | undefined;
@@ -63,24 +63,17 @@ function siteSums({ network, sorted, live }: SummaryInput): readonly SiteSums[] 
   return sums;
 }
 
-/** The end of what was reconciled: the run's or the last event's, whichever is later. */
-function lastInstant({ network, sorted }: SummaryInput): Instant {
-  const last = sorted.events.count > 0 ? instantOfEvent(sorted, sorted.events.count - 1) : network.from;
-  return network.to && compareInstants(network.to, last) > 0 ? network.to : last;
-}
-
 /**
  * The summary of a reconciliation, as it stands in `summary.json`. It does not depend on the order of the input lines or on how they were split
  * into files, but for the hash of `set-aside.csv`.
  */
 export function summaryOf(input: SummaryInput): Record<string, unknown> {
-  const { network, found, sorted, live, tables, coincidences } = input;
+  const { network, found, sorted, live, ground, coincidences } = input;
   const taiText = createTaiWriter();
   const sums = siteSums(input);
   const { counts } = found;
   const { events } = sorted;
   const reasons = SET_ASIDE_REASONS.map((_, reason) => sum(counts.setAside.map((ofSite) => ofSite[reason] ?? 0)));
-  const end = lastInstant(input);
   const optional = (instant: Instant | undefined): string | null => (instant ? taiText(instant) : null);
   return {
     software: { name: 'skewline', version: input.version },
@@ -120,8 +113,8 @@ export function summaryOf(input: SummaryInput): Record<string, unknown> {
         },
       ]),
     ),
-    leap_seconds: { sha256: tables.leapSecondsSha256, sha1: tables.leapSeconds.sha1, ...tables.leapSecondsAt(end) },
-    earth_orientation: tables.orientationAt(end),
+    leap_seconds: ground.leapSeconds,
+    earth_orientation: ground.orientation,
     files: Object.fromEntries([...input.hashes].sort(([a], [b]) => (a < b ? -1 : 1))),
     limits: LIMITS,
   };

@@ -3,6 +3,7 @@ import { join } from 'node:path';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { skewline } from '../support/command';
 import { newFolder } from '../support/folder';
+import { finalsFile } from '../support/finals';
 import { filesOf, RESULT_FILES, type ResultFileName, type Row, rowsOf, sha256 } from '../support/results';
 import { smallNetwork } from '../support/small-network';
 
@@ -349,6 +350,55 @@ describe('summary.json', () => {
       expires_tai: expect.stringMatching(/^20\d\d-\d\d-\d\dT/) as string,
       expired: false,
     });
-    expect(summary['earth_orientation']).toBeNull();
+    expect(summary['earth_orientation']).toEqual({ loaded: false });
+  });
+});
+
+describe('tables that do not cover the run', () => {
+  const SHORT = ['site,sequence,reading', `A,1,${T}:00`, 'B,1,2027-12-01T00:00:00'];
+
+  async function ranOver(finals: string, log: readonly string[] = SHORT) {
+    const folder = newFolder('tables');
+    writeFileSync(join(folder, 'network.json'), JSON.stringify(smallNetwork()));
+    writeFileSync(join(folder, 'finals.txt'), finals);
+    writeFileSync(join(folder, 'log.csv'), `${log.join('\n')}\n`);
+    const args = ['reconcile', '--network', 'network.json', '--earth-orientation', 'finals.txt', '--out', 'out', 'log.csv'];
+    const { code, stderr } = await skewline(args, folder);
+    expect(code).toBe(0);
+    const summary = JSON.parse(filesOf(join(folder, 'out'))['summary.json']!) as Record<string, unknown>;
+    return { warnings: stderr.trim().split('\n').slice(0, -1), summary };
+  }
+
+  it('are told on stderr and in the summary, at both ends of the run', async () => {
+    const finals = finalsFile('2020-01-02', 2, 1);
+    const { warnings, summary } = await ranOver(finals);
+    expect(warnings).toEqual([
+      expect.stringMatching(
+        /^warning: leap seconds: the list expires at 2027-06-28T00:00:37 TAI, the run ends at 2027-12-01T00:00:00 TAI: /,
+      ),
+      expect.stringMatching(
+        /^warning: earth orientation: the table begins at 2020-01-02T00:00:37 TAI, the run at 2020-01-01T00:00:00 TAI: /,
+      ),
+      expect.stringMatching(/^warning: earth orientation: the table ends at 2020-01-04T00:00:37 TAI, the run at 2027-12-01T00:00:00 TAI: /),
+      expect.stringMatching(/^warning: earth orientation: the values are a prediction from 2020-01-04T00:00:37 TAI on, /),
+    ]);
+    expect(summary['leap_seconds']).toMatchObject({ expired: true });
+    expect(summary['earth_orientation']).toEqual({
+      loaded: true,
+      sha256: sha256(finals),
+      first_tai: '2020-01-02T00:00:37.000000000000',
+      last_tai: '2020-01-04T00:00:37.000000000000',
+      before: true,
+      expired: true,
+      predicted: true,
+    });
+    const [header = '', ...lines] = SHORT;
+    expect((await ranOver(finals, [header, ...lines.toReversed()])).summary).toEqual(summary);
+  });
+
+  it('or do, without a word', async () => {
+    const { warnings, summary } = await ranOver(finalsFile('2019-12-30', 10, 5), SHORT.slice(0, 2));
+    expect(warnings).toEqual([]);
+    expect(summary['earth_orientation']).toMatchObject({ loaded: true, before: false, expired: false, predicted: false });
   });
 });

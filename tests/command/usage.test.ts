@@ -131,7 +131,7 @@ describe('files that cannot be used are one line and status 2, and nothing is wr
 describe('a run that is done', () => {
   it('says its counts in one line on stderr, nothing on stdout, with status 0', async () => {
     const { code, stdout, stderr } = await reconcile('log.csv', 'A=nosite.csv', '--out', 'done');
-    expect(stderr).toBe('1 events, 0 coincidences; 0 records set aside, 1 repeated\n');
+    expect(stderr).toBe('1 event, 0 coincidences; 0 records set aside, 1 repeated\n');
     expect([code, stdout]).toEqual([0, '']);
   });
 });
