@@ -60,7 +60,7 @@ function program(): Command {
     .command('reconcile')
     .summary('from log files to events, coincidences, pairs and orders')
     .description(
-      'Reads a network file and the trigger logs of its sites, and writes events, coincidences, pairs, orders in frames, neighbours, crowded events, what was set aside and a summary to a folder. The files are described in the README.',
+      'Reads a network file and the trigger logs of its sites, and writes events, coincidences, pairs, orders in frames, neighbours, crowded events, what was set aside and a summary to a folder. The files are described in examples/FORMATS.md.',
     )
     .argument('<log...>', 'CSV logs; ORL=path.csv for a log without a site column')
     .requiredOption('--network <file>', 'the network: sites, clocks, frames, rule (JSON)')
