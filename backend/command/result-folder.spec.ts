@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto';
-import { existsSync, mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { existsSync, mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, symlinkSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
@@ -143,6 +143,12 @@ describe('a folder of results', () => {
     writeFileSync(join(place, 'file'), '');
     expect(() => new ResultFolder(join(place, 'file'))).toThrow(/^--out: ".*file" is a file; it must be a folder/);
     expect(() => new ResultFolder(join(place, 'file', 'out'))).toThrow(/^--out: ".*out" cannot be made \(.*\); it must be a place/);
-    expect(names()).toEqual(['file']);
+    symlinkSync(join(place, 'nothing'), join(place, 'link'));
+    expect(() => new ResultFolder(join(place, 'link'))).toThrow(/^--out: ".*link" is a link to what does not exist; it must be a folder/);
+    expect(names()).toEqual(['file', 'link']);
+  });
+
+  it.runIf(existsSync('/proc/self')).each(['/proc/nope', '/proc/nope/x'])('is refused where the system lets nobody make one: %s', (out) => {
+    expect(() => new ResultFolder(out)).toThrow(UsageProblem);
   });
 });

@@ -1,6 +1,7 @@
 import { createHash, type Hash } from 'node:crypto';
-import { closeSync, existsSync, fsyncSync, mkdirSync, mkdtempSync, openSync, renameSync, rmSync, statSync, writeSync } from 'node:fs';
+import { closeSync, existsSync, fsyncSync, lstatSync, mkdtempSync, openSync, renameSync, rmSync, statSync, writeSync } from 'node:fs';
 import { basename, dirname, join, resolve } from 'node:path';
+import { makeFolders } from '../make-folders';
 import { faultText } from './fault-text';
 import { MOST_NUMBER_BYTES, putNumber } from './number-bytes';
 import { UsageProblem } from './usage-problem';
@@ -117,6 +118,8 @@ export class ResultFolder {
   constructor(path: string) {
     this.folder = resolve(path);
     this.isNew = !existsSync(this.folder);
+    if (this.isNew && isLink(this.folder))
+      throw new UsageProblem(`--out: "${path}" is a link to what does not exist; it must be a folder, or a name at which one can be made`);
     if (!this.isNew && !statSync(this.folder).isDirectory())
       throw new UsageProblem(`--out: "${path}" is a file; it must be a folder, or a name at which one can be made`);
     this.stage = makeStage(this.folder, path, this.isNew);
@@ -143,7 +146,7 @@ export class ResultFolder {
       if (statSync(target, { throwIfNoEntry: false })?.isDirectory())
         throw new UsageProblem(`--out: "${target}" is a folder; it must be a file, or a name at which one can be made`);
     }
-    if (this.isNew) mkdirSync(this.folder, { recursive: true });
+    if (this.isNew) makeFolders(this.folder);
     for (const name of names) renameSync(join(this.stage, name), join(this.folder, name));
     this.discard();
   }
@@ -154,10 +157,18 @@ export class ResultFolder {
   }
 }
 
+function isLink(path: string): boolean {
+  try {
+    return lstatSync(path).isSymbolicLink();
+  } catch {
+    return false; // below a file, say: what is wrong is told when the folder is made
+  }
+}
+
 function makeStage(folder: string, path: string, isNew: boolean): string {
   try {
     const parent = dirname(folder);
-    if (isNew) mkdirSync(parent, { recursive: true });
+    if (isNew) makeFolders(parent);
     else if (statSync(parent).dev !== statSync(folder).dev) return mkdtempSync(join(folder, '.unfinished-'));
     return mkdtempSync(join(parent, `.${basename(folder)}-unfinished-`));
   } catch (fault) {

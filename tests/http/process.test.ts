@@ -1,5 +1,5 @@
 import { type AddressInfo, connect, createServer } from 'node:net';
-import { chmodSync, mkdirSync, readdirSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { chmodSync, mkdirSync, readdirSync, renameSync, rmSync, statSync, symlinkSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import Database from 'better-sqlite3';
 import { describe, expect, it } from 'vitest';
@@ -56,6 +56,42 @@ describe('a configuration that cannot be used', () => {
     expect(stderr).toMatch(USABLE_LINE);
     expect(stderr).toContain(`DATA_DIR="${file}" cannot be used: it must be a folder that can be written`);
     expect(code).toBe(2);
+  });
+});
+
+describe('a data folder that cannot be made', () => {
+  it.each<[string, (folder: string) => string]>([
+    ['below a file', (folder) => (writeFileSync(join(folder, 'file'), ''), join(folder, 'file', 'data'))],
+    ['at a link to nothing', (folder) => (symlinkSync(join(folder, 'nothing'), join(folder, 'link')), join(folder, 'link'))],
+    ['where the system lets nobody make one', () => '/proc/nope'],
+  ])('is one line and status 2: %s', async (_what, dirIn) => {
+    const folder = dirIn(newFolder('unmade'));
+    const { code, stdout, stderr } = await refused({ PORT: '0', DATA_DIR: folder });
+    expect(stderr).toMatch(USABLE_LINE);
+    expect(stderr).toContain(`DATA_DIR="${folder}" cannot be used: it must be a folder that can be written (E`);
+    expect([code, stdout]).toEqual([2, '']);
+  });
+});
+
+describe('a data folder that a server uses', () => {
+  it('is refused to a second one, and the first goes on', async () => {
+    const folder = newFolder('used');
+    const server = await startServer({ DATA_DIR: folder });
+    const { code, stdout, stderr } = await refused({ PORT: '0', DATA_DIR: folder });
+    expect(stderr).toBe(
+      `skewline: DATA_DIR="${folder}" is in use by another server: stop that one, or set DATA_DIR to a folder of its own.\n`,
+    );
+    expect([code, stdout]).toEqual([2, '']);
+    expect((await fetch(new URL('/api/health', server.url))).status).toBe(200);
+    await server.stop();
+  });
+
+  it.each(['SIGTERM', 'SIGKILL'] as const)('is free again after %s', async (signal) => {
+    const folder = newFolder('freed');
+    await (await startServer({ DATA_DIR: folder })).stop(signal);
+    const next = await startServer({ DATA_DIR: folder });
+    expect((await fetch(new URL('/api/health', next.url))).status).toBe(200);
+    expect((await next.stop()).code).toBe(0);
   });
 });
 
@@ -173,7 +209,7 @@ describe('the end', () => {
     expect(performance.now() - startMs).toBeLessThan(END_MS);
     expect(code).toBe(0);
     expect(stderr).toBe('');
-    expect(readdirSync(folder)).toEqual(['skewline.sqlite']); // the write-ahead log is gone
+    expect(readdirSync(folder)).toEqual(['skewline.lock', 'skewline.sqlite']); // the write-ahead log is gone
   });
 
   it('comes within 5 s although a client has not finished its request', async () => {
