@@ -21,31 +21,58 @@ export interface JoinResults {
   readonly sinceFirst: JoinResult;
 }
 
+/** Variance of a clock at an event's epoch, and of a pair's gap: the rule as the finder has it, terms that both share left out. */
+const CLOCK = (e: string): string => `(${e}.offset2 + 2 * ${e}.covariance * ${e}.days + ${e}.rate2 * ${e}.days * ${e}.days)`;
+const GAP = `(a.reading2 + b.reading2 + a.position2 + b.position2 + case when a.site = b.site then 0 else a.delay2 + b.delay2 end
+  + case when a.segment = b.segment then a.rate2 * (b.days - a.days) * (b.days - a.days)
+    else ${CLOCK('a')} + ${CLOCK('b')} + case when a.reference = b.reference then 0 else a.reference2 + b.reference2 end end)`;
+
+const COLUMNS = {
+  t: 'BIGINT',
+  site: 'SMALLINT',
+  segment: 'INTEGER',
+  x: 'DOUBLE',
+  y: 'DOUBLE',
+  z: 'DOUBLE',
+  days: 'DOUBLE',
+  reading2: 'DOUBLE',
+  delay2: 'DOUBLE',
+  position2: 'DOUBLE',
+  offset2: 'DOUBLE',
+  covariance: 'DOUBLE',
+  rate2: 'DOUBLE',
+  reference: 'INTEGER',
+  reference2: 'DOUBLE',
+};
+
 /**
- * The same question put to a database: pairs of different sites within light-time and three standard errors, by a range join over the times.
- *
- * The clocks of the quiet network are all different and share one reference, so a pair's variance is a sum of two columns.
+ * The same question put to a database: the pairs of different sites within light-time and the standard errors of their gap, by a range join over
+ * the times, kept as rows.
  */
-export async function duckdbRangeJoin({ events, errors }: QuietColumns, widestNs: number, sigmas: number): Promise<JoinResults> {
+export async function duckdbRangeJoin(columns: QuietColumns, widestNs: number, sigmas: number): Promise<JoinResults> {
   const folder = mkdtempSync(join(tmpdir(), 'skewline-bench-'));
   try {
     const file = join(folder, 'events.csv');
-    writeColumns(file, events, errors.referenceSigmaNs[0] ?? 0, errors.sitePositionSigmaM[0] ?? 0);
+    writeColumns(file, columns);
     const connection = await (await DuckDBInstance.create(':memory:')).connect();
     const version = String((await connection.runAndReadAll('select version()')).getRows()[0]?.[0]);
     await connection.run('set threads = 1');
+    const types = Object.entries(COLUMNS).map(([name, type]) => `'${name}': '${type}'`);
     await connection.run(
-      `create table e as select t, t + ${events.taiS[0] ?? 0}::HUGEINT * 1000000000000 as tai, site, x, y, z, v from read_csv('${file}', header = true,
-        columns = {'t': 'BIGINT', 'site': 'SMALLINT', 'x': 'DOUBLE', 'y': 'DOUBLE', 'z': 'DOUBLE', 'v': 'DOUBLE'})`,
+      `create table e as select row_number() over () as id, t + ${columns.events.taiS[0] ?? 0}::HUGEINT * 1000000000000 as tai, *
+        from read_csv('${file}', header = true, columns = {${types.join(', ')}})`,
     );
     const ask = async (time: string): Promise<JoinResult> => {
       const started = cpuMs();
-      const rows = await connection.runAndReadAll(`
-        select count(*) from e a join e b on b.${time} >= a.${time} and b.${time} <= a.${time} + ${Math.ceil(widestNs * 1e3)}
+      await connection.run(`
+        create or replace table near as select a.id as a, b.id as b
+        from e a join e b on b.${time} >= a.${time} and b.${time} <= a.${time} + ${Math.ceil(widestNs * 1e3)}
         where a.site <> b.site and (b.${time} > a.${time} or (b.${time} = a.${time} and b.site > a.site))
-          and (b.${time} - a.${time}) / 1e3 <= ${sigmas} * sqrt(a.v + b.v) + ${1e9 / C_M_S} *
+          and (b.${time} - a.${time}) / 1e3 <= ${sigmas} * sqrt(${GAP}) + ${1e9 / C_M_S} *
             sqrt((b.x - a.x) * (b.x - a.x) + (b.y - a.y) * (b.y - a.y) + (b.z - a.z) * (b.z - a.z))`);
-      return { pairs: Number(rows.getRows()[0]?.[0]), cpuMs: cpuMs() - started };
+      const tookMs = cpuMs() - started;
+      const rows = await connection.runAndReadAll('select count(*) from near');
+      return { pairs: Number(rows.getRows()[0]?.[0]), cpuMs: tookMs };
     };
     return { version, absolute: await ask('tai'), sinceFirst: await ask('t') };
   } finally {
@@ -53,21 +80,22 @@ export async function duckdbRangeJoin({ events, errors }: QuietColumns, widestNs
   }
 }
 
-/** Times in picoseconds since the first second, places, and each event's own variance in ns^2 (less the shared reference). */
-function writeColumns(file: string, events: QuietColumns['events'], referenceSigmaNs: number, positionSigmaM: number): void {
-  const base = events.taiS[0] ?? 0;
-  const positionNs = (positionSigmaM / C_M_S) * 1e9;
-  let text = 't,site,x,y,z,v\n';
-  const parts: string[] = [];
-  for (let row = 0; row < events.count; row++) {
-    const second = (events.taiS[row] ?? 0) - base;
-    const sigmaNs = events.sigmaNs[row] ?? 0;
-    const own = sigmaNs * sigmaNs - referenceSigmaNs * referenceSigmaNs + positionNs * positionNs;
-    text += `${second}${String(events.ps[row] ?? 0).padStart(12, '0')},${events.site[row] ?? 0},${events.xM[row] ?? 0},${events.yM[row] ?? 0},${events.zM[row] ?? 0},${own}\n`;
-    if (text.length < 1 << 20) continue;
-    parts.push(text);
-    text = '';
+/** The finder's columns as a table: times in picoseconds since the first second, places, and what the errors are made of. */
+function writeColumns(file: string, { events: e, errors }: QuietColumns): void {
+  const base = e.taiS[0] ?? 0;
+  const square = (x: number): number => x * x;
+  const parts = [`${Object.keys(COLUMNS).join(',')}\n`];
+  for (let row = 0; row < e.count; row++) {
+    const site = e.site[row] ?? 0;
+    const segment = e.segment[row] ?? 0;
+    const reference = errors.segmentReference[segment] ?? 0;
+    const time = `${(e.taiS[row] ?? 0) - base}${String(e.ps[row] ?? 0).padStart(12, '0')}`;
+    const place = `${e.xM[row] ?? 0},${e.yM[row] ?? 0},${e.zM[row] ?? 0}`;
+    const own = `${square(e.readingSigmaNs[row] ?? 0)},${square(errors.siteDelaySigmaNs[site] ?? 0)},${square(((errors.sitePositionSigmaM[site] ?? 0) / C_M_S) * 1e9)}`;
+    const clock = `${square(errors.segmentOffsetSigmaNs[segment] ?? 0)},${errors.segmentCovarianceNs2PerDay[segment] ?? 0},${square(errors.segmentRateSigmaNsPerDay[segment] ?? 0)}`;
+    parts.push(
+      `${time},${site},${segment},${place},${e.sinceEpochDays[row] ?? 0},${own},${clock},${reference},${square(errors.referenceSigmaNs[reference] ?? 0)}\n`,
+    );
   }
-  parts.push(text);
   writeFileSync(file, parts.join(''));
 }
