@@ -21,6 +21,9 @@ const SITE_ARGUMENT = /^([A-Za-z0-9_-]{1,24})=(.+)$/s;
 /** Files are counted in 16 bits. */
 const MOST_LOGS = 65_535;
 
+/** The file that a log argument names. */
+export const logPath = (text: string): string => SITE_ARGUMENT.exec(text)?.[2] ?? text;
+
 /**
  * Reads the log arguments: `LOG.csv`, or `ORL=LOG.csv` for a log without a site column.
  *
@@ -30,10 +33,10 @@ export function logArguments(texts: readonly string[], network: Network): readon
   if (texts.length > MOST_LOGS) throw new UsageProblem(`${texts.length} logs; at most ${MOST_LOGS} are read at once`);
   const codes = new Set(network.sites.map(({ code }) => code));
   return texts.map((text) => {
-    const [, site, sitePath] = SITE_ARGUMENT.exec(text) ?? [];
+    const site = SITE_ARGUMENT.exec(text)?.[1];
     if (site !== undefined && !codes.has(site))
       throw new UsageProblem(`${text}: "${site}" is no site of the network; before the = stands one of ${[...codes].join(', ')}`);
-    const path = sitePath ?? text;
+    const path = logPath(text);
     return { path, name: basename(path), site, sizeBytes: checkReadable(path) };
   });
 }

@@ -7,12 +7,13 @@ import { VERSION } from '../version';
 import { writeCoincidences, writeNeighbours } from './coincidence-tables';
 import { eventWriter, HEADERS, instantOfEvent, PairWriter } from './event-tables';
 import { faultText } from './fault-text';
+import { keepInputs } from './kept-inputs';
 import { type GroundTables, loadGroundTables } from './ground-tables';
 import { readLiveTime } from './live-time';
 import { type Pace, paceUntil } from './pace';
 import { grouped, type Progress } from './progress';
 import { readOption } from './readable-file';
-import { logArguments, readLogs } from './read-logs';
+import { logArguments, logPath, readLogs } from './read-logs';
 import { type FoundRecords } from './record-store';
 import { ResultFolder } from './result-folder';
 import { writeSetAside } from './set-aside-table';
@@ -39,6 +40,9 @@ export interface CommandContext {
   /** Hears of warnings and counts, a line each. */
   readonly say: (line: string) => void;
 }
+
+const inputPaths = ({ network, logs, live, leapSeconds, earthOrientation }: ReconcileOptions): string[] =>
+  [...logs.map(logPath), network, live, leapSeconds, earthOrientation].filter((path) => path !== undefined);
 
 /** Lines of events written between two breaths. */
 const STRETCH = 4096;
@@ -107,6 +111,7 @@ async function writeEvents(
  */
 export async function reconcileFiles(options: ReconcileOptions, context: CommandContext): Promise<void> {
   const { progress, say } = context;
+  keepInputs(options.out, inputPaths(options));
   const pace = paceUntil(context.signal);
   const tables = loadGroundTables(options);
   const network = loadNetwork(options.network, tables, say);

@@ -15,6 +15,15 @@ const MOST_BYTES_A_CHARACTER = 3;
 const COMMA = 0x2c;
 const LINE_FEED = 0x0a;
 
+/** Does a piece of writing; a fault of the system names the folder of the results, such as one on a full disk. */
+function writing<T>(folder: string, write: () => T): T {
+  try {
+    return write();
+  } catch (fault) {
+    throw new Error(`results cannot be written to ${folder} (${faultText(fault)})`, { cause: fault });
+  }
+}
+
 /**
  * One result file in the making: cells in, bytes and their SHA-256 out.
  *
@@ -29,8 +38,10 @@ export class ResultFile {
   constructor(
     readonly name: string,
     path: string,
+    /** The folder in which the results will stand, for messages. */
+    private readonly folder = dirname(path),
   ) {
-    this.descriptor = openSync(path, 'wx');
+    this.descriptor = writing(folder, () => openSync(path, 'wx'));
   }
 
   /** Adds text as it is; separators and line ends are the caller's. */
@@ -91,14 +102,18 @@ export class ResultFile {
 
   private put(bytes: Buffer): void {
     this.hash.update(bytes);
-    for (let done = 0; done < bytes.length;) done += writeSync(this.descriptor, bytes, done);
+    writing(this.folder, () => {
+      for (let done = 0; done < bytes.length;) done += writeSync(this.descriptor, bytes, done);
+    });
   }
 
   /** Puts everything on the disk and returns the SHA-256, 64 lower-case hex digits. */
   finish(): string {
     this.flush();
-    fsyncSync(this.descriptor);
-    closeSync(this.descriptor);
+    writing(this.folder, () => {
+      fsyncSync(this.descriptor);
+      closeSync(this.descriptor);
+    });
     return this.hash.digest('hex');
   }
 }
@@ -127,7 +142,7 @@ export class ResultFolder {
 
   /** Begins a file. */
   file(name: string): ResultFile {
-    const file = new ResultFile(name, join(this.stage, name));
+    const file = new ResultFile(name, join(this.stage, name), this.folder);
     this.files.set(name, file);
     return file;
   }
@@ -146,8 +161,10 @@ export class ResultFolder {
       if (statSync(target, { throwIfNoEntry: false })?.isDirectory())
         throw new UsageProblem(`--out: "${target}" is a folder; it must be a file, or a name at which one can be made`);
     }
-    if (this.isNew) makeFolders(this.folder);
-    for (const name of names) renameSync(join(this.stage, name), join(this.folder, name));
+    writing(this.folder, () => {
+      if (this.isNew) makeFolders(this.folder);
+      for (const name of names) renameSync(join(this.stage, name), join(this.folder, name));
+    });
     this.discard();
   }
 

@@ -1,4 +1,4 @@
-import { readdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { mkdirSync, readdirSync, readFileSync, symlinkSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { root } from '../../scripts/lib.mjs';
@@ -20,6 +20,12 @@ beforeAll(() => {
   write('comma.json', '{\n  "network": "Three",\n}\n');
   write('mistake.json', JSON.stringify(smallNetwork({ rule: { code: 'r', minimum_fold: 1, window: { kind: 'light-time' } } })));
   write('selection.json', JSON.stringify(smallNetwork({ selections: [{ code: 's', events: ['A:1', 'A:2'] }] })));
+  write('events.csv', 'no log at all');
+  mkdirSync(join(folder, 'old'));
+  write('old/pairs.csv', 'no log at all');
+  symlinkSync('old', join(folder, 'oldlink'));
+  symlinkSync('events.csv', join(folder, 'eventslink.csv'));
+  symlinkSync('nothing', join(folder, 'link'));
   const list = readFileSync(join(root, 'shared/time/shipped-leap-seconds.ts'), 'utf8');
   write('broken.list', list.slice(list.indexOf('`') + 1, list.lastIndexOf('`')).replace('3692217600', '3692217601'));
 });
@@ -117,6 +123,23 @@ describe('files that cannot be used are one line and status 2, and nothing is wr
     ['no Earth orientation', ['log.csv', '--earth-orientation', 'none.txt'], '--earth-orientation: none.txt cannot be read (ENOENT'],
     ['an Earth orientation that is none', ['log.csv', '--earth-orientation', 'log.csv'], 'log.csv: '],
     ['results where a file is', ['log.csv', '--out', 'log.csv'], '--out: "log.csv" is a file; it must be a folder'],
+    ['results where a link to nothing is', ['log.csv', '--out', 'link'], '--out: "link" is a link to what does not exist; it must be'],
+    ['results where the system lets nobody make them', ['log.csv', '--out', '/proc/nope/x'], '--out: "/proc/nope/x" cannot be made ('],
+    [
+      'a log that a result would replace',
+      ['log.csv', 'events.csv', '--out', '.'],
+      '--out: the results in "." would take the place of events.csv; name another folder',
+    ],
+    [
+      'a log of a site that a result would replace, by another name of its folder',
+      ['A=old/pairs.csv', '--out', 'oldlink/'],
+      '--out: the results in "oldlink/" would take the place of old/pairs.csv; name another folder',
+    ],
+    [
+      'live times that a result would replace, by a link',
+      ['log.csv', '--live', 'eventslink.csv', '--out', '.'],
+      '--out: the results in "." would take the place of eventslink.csv; name another folder',
+    ],
     ['results below a file', ['log.csv', '--out', 'log.csv/out'], '--out: "log.csv/out" cannot be made ('],
   ])('%s', async (_what, args, text) => {
     const before = readdirSync(folder);

@@ -79,7 +79,7 @@ describe('when there is no room for the results', () => {
     const place = olderResults();
     const before = contentOf(place);
     const { code, stdout, stderr } = await inSmallSpace(command(place));
-    expect(stderr).toBe('skewline: EFBIG: file too large, write\n');
+    expect(stderr).toBe(`skewline: results cannot be written to ${join(place, 'out')} (EFBIG: file too large, write)\n`);
     expect([code, stdout]).toEqual([1, '']);
     expect(contentOf(place)).toEqual(before);
   });
@@ -114,7 +114,7 @@ describe('when there is no room for the results', () => {
   it.runIf(canMount)('on a full disk it is the same', () => {
     const place = olderResults();
     const { code, stderr, changes } = onSmallDisk(place, command(place));
-    expect(stderr).toBe('skewline: ENOSPC: no space left on device, write\n');
+    expect(stderr).toBe(`skewline: results cannot be written to ${join(place, 'out')} (ENOSPC: no space left on device, write)\n`);
     expect([code, changes]).toEqual([1, '']);
   });
 
