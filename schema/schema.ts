@@ -21,3 +21,7 @@ export const deployment = sqliteTable(
     check('deployment_created_with', sql`length(${table.createdWith}) BETWEEN 1 AND 64`),
   ],
 );
+
+export * from './people';
+export * from './audit';
+export * from './mail';
