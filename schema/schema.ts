@@ -23,5 +23,12 @@ export const deployment = sqliteTable(
 );
 
 export * from './people';
+export * from './networks';
+export * from './clocks';
+export * from './tables';
+export * from './frames';
+export * from './files';
+export * from './jobs';
+export * from './intake';
 export * from './audit';
 export * from './mail';
