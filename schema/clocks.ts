@@ -17,11 +17,9 @@ import {
 } from './forms';
 import { triggers } from './intake';
 import { jobs } from './jobs';
-import { networks, SITE_SCALES, sites } from './networks';
+import { networks, sites } from './networks';
 import { people } from './people';
-
-/** Where the numbers of a clock segment come from. */
-export const SEGMENT_ORIGINS = ['certificate', 'by-hand', 'fit', 'import'] as const;
+import { SEGMENT_ORIGINS, SITE_SCALES } from './words';
 
 /** What clocks are compared with: an error that is common to all segments that name it. */
 export const timeReferences = sqliteTable(

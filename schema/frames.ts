@@ -1,11 +1,9 @@
 import { sql } from 'drizzle-orm';
-import { type AnySQLiteColumn, integer, primaryKey, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
+import { type AnySQLiteColumn, integer, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
 import { checks, isCode, isCount, isJson, isOneOf, isText, isUtc } from './forms';
 import { networks, sites } from './networks';
 import { people } from './people';
-
-/** How a frame moves in its parent; what each needs stands in its definition. */
-export const FRAME_KINDS = ['barycentric', 'velocity', 'toward-baseline', 'toward-horizon', 'comoving', 'opposite'] as const;
+import { FRAME_KINDS } from './words';
 
 /** A frame of a network. The geocentric one always exists and is no row: a parent that is NULL means it. */
 export const frames = sqliteTable(

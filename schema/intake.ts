@@ -31,44 +31,7 @@ import {
 import { jobs } from './jobs';
 import { networks, sites } from './networks';
 import { people, siteKeys } from './people';
-
-/** Most bytes of one record as it came. */
-export const MOST_RECORD_BYTES = 65_536;
-
-export const TRIGGER_KINDS = ['trigger', 'reference', 'test'] as const;
-
-/** How a reading is written: as the logs of the batch command have it, or one of the forms that an upload may be in. */
-export const READING_FORMS = ['iso', 'tai-pair', 'gps-week', 'mjd', 'unix'] as const;
-
-/**
- * Why a record is set aside: the reasons of a record by itself, another content under the same identity, a reading in the far future of the
- * server's clock, a platform's reading outside its ephemeris, an ambiguous one at a leap second, an upload that was cut short in a record.
- */
-export const SET_ASIDE_WORDS = [
-  'columns',
-  'site',
-  'sequence',
-  'series',
-  'kind',
-  'reading-empty',
-  'reading-form',
-  'date',
-  'time-of-day',
-  'no-leap-second',
-  'before-1972',
-  'sigma',
-  'amplitude',
-  'before-clock-record',
-  'outside-run',
-  'conflict',
-  'future',
-  'outside-ephemeris',
-  'ambiguous',
-  'unreadable',
-  'too-long',
-] as const;
-
-export const INTAKE_STATES = ['uploaded', 'mapped', 'checked', 'importing', 'imported', 'cancelled', 'failed', 'withdrawn'] as const;
+import { INTAKE_STATES, MOST_RECORD_BYTES, READING_FORMS, SET_ASIDE_WORDS, TRIGGER_KINDS } from './words';
 
 /** Which column is what, kept by name for the next upload of the kind. */
 export const columnMappings = sqliteTable(
@@ -223,6 +186,10 @@ export const setAsides = sqliteTable(
       .references(() => networks.id, { onDelete: 'restrict' }),
     /** NULL where the record's site is not known. */
     siteId: integer('site_id'),
+    /** The numbering that it counts to, `*` where that could not be read. */
+    series: text().notNull(),
+    /** Its number, NULL where that could not be read. */
+    sequence: text(),
     /** The record as a trigger, where it could be read as one (a conflict, before the clock record, outside the run, the future). */
     triggerId: integer('trigger_id').references(() => triggers.id, { onDelete: 'restrict' }),
     reason: text({ enum: SET_ASIDE_WORDS }).notNull(),
@@ -274,6 +241,8 @@ export const setAsides = sqliteTable(
       .on(t.retryAtMs)
       .where(sql`state = 'open' AND retry_at_ms IS NOT NULL`),
     ...checks('set_asides', {
+      series: sql`${t.series} IN ('', '*') OR (${isCode(t.series)})`,
+      sequence: isWholeNumber(t.sequence),
       reason: isOneOf(t.reason, SET_ASIDE_WORDS),
       detail: isText(t.detail, 1_000, 0),
       verbatim: isText(t.verbatim, MOST_RECORD_BYTES, 0),

@@ -3,8 +3,7 @@ import { index, integer, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqli
 import { areTogether, checks, isCount, isFlag, isJson, isOneOf, isText, isUnixMs } from './forms';
 import { networks } from './networks';
 import { people } from './people';
-
-export const JOB_STATES = ['waiting', 'running', 'done', 'failed', 'cancelled'] as const;
+import { JOB_STATES } from './words';
 
 /**
  * Work that outlives a request: reprocessing, imports, time slides, backups, mails, deliveries. Whoever runs one holds a lease and renews it

@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm';
-import { type AnySQLiteColumn, index, integer, primaryKey, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
+import { type AnySQLiteColumn, index, integer, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
 import { clocks } from './clocks';
 import {
   checks,
@@ -17,12 +17,7 @@ import {
   isUtc,
 } from './forms';
 import { people } from './people';
-
-/** The scales that a site's log may be in; `proper` is a platform's own time since its log began. */
-export const SITE_SCALES = ['UTC', 'TAI', 'GPS', 'TT', 'proper'] as const;
-
-/** How a site's place was stated. */
-export const POSITION_KINDS = ['geodetic', 'itrs', 'platform'] as const;
+import { POSITION_KINDS, SITE_SCALES } from './words';
 
 /** A detector network: whatever has one set of sites, frames and rules, and one numbering of changes. */
 export const networks = sqliteTable(

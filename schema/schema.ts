@@ -23,6 +23,7 @@ export const deployment = sqliteTable(
 );
 
 export * from './people';
+export * from './credentials';
 export * from './networks';
 export * from './clocks';
 export * from './tables';
@@ -30,5 +31,11 @@ export * from './frames';
 export * from './files';
 export * from './jobs';
 export * from './intake';
+export * from './events';
+export * from './coincidences';
+export * from './candidates';
+export * from './changes';
+export * from './wishes';
+export * from './machines';
 export * from './audit';
 export * from './mail';
