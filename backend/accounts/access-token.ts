@@ -30,10 +30,15 @@ const claims = z.strictObject({
 /** A new access token of a session (a JWT, signed by HS256). */
 export function writeAccess({ personId, sessionId }: Claimed, { signingKey, deploymentId, nowMs }: Sources): string {
   const nowS = Math.floor(nowMs() / 1000);
-  return jwt.sign({ sub: String(personId), sid: sessionId, iss: deploymentId, aud: AUDIENCE, iat: nowS, exp: nowS + ACCESS_S }, signingKey, {
-    algorithm: ALGORITHM,
-    header: { alg: ALGORITHM, typ: TYPE },
-  });
+  const payload: jwt.JwtPayload = {
+    sub: String(personId),
+    sid: sessionId,
+    iss: deploymentId,
+    aud: AUDIENCE,
+    iat: nowS,
+    exp: nowS + ACCESS_S,
+  };
+  return jwt.sign(payload, signingKey, { algorithm: ALGORITHM, header: { alg: ALGORITHM, typ: TYPE } });
 }
 
 /**

@@ -15,7 +15,10 @@ export function cookieOf(req: Request, name: string): string | undefined {
 
 /** Sets a cookie of a session. Chromium keeps a Secure one over plain http on this machine, and drops a `__Host-` one that is not Secure. */
 export function setCookie(res: Response, name: string, value: string, maxAgeS: number): void {
-  res.appendHeader('Set-Cookie', stringifySetCookie({ name, value, maxAge: maxAgeS, path: '/', httpOnly: true, secure: true, sameSite: 'strict' }));
+  res.appendHeader(
+    'Set-Cookie',
+    stringifySetCookie({ name, value, maxAge: maxAgeS, path: '/', httpOnly: true, secure: true, sameSite: 'strict' }),
+  );
 }
 
 /** Takes both cookies of a session away. */

@@ -46,7 +46,7 @@ function isRepeated(folded: string): boolean {
 
 /** Each character one above, or one below, the one before it; digits go round at ten. */
 function isRow(folded: string): boolean {
-  const codes = [...folded].map((one) => one.codePointAt(0) ?? 0);
+  const codes = Array.from(folded, (one) => one.codePointAt(0) ?? 0);
   return [1, -1].some((step) => codes.every((code, at) => at === 0 || follows(codes[at - 1] ?? 0, code, step)));
 }
 
@@ -57,7 +57,11 @@ function follows(before: number, code: number, step: number): boolean {
 }
 
 function namesOf({ email, name }: Whose): string[] {
-  const words = normalPassword(name).toLowerCase().split(/[^\p{L}\p{N}]+/u);
+  const words = normalPassword(name)
+    .toLowerCase()
+    .split(/[^\p{L}\p{N}]+/u);
   const [mailbox = ''] = email.toLowerCase().split('@');
-  return [...words, words.join(''), mailbox, ...mailbox.split(/[^\p{L}\p{N}]+/u), PRODUCT].filter((one) => [...one].length >= LEAST_NAME_CHARACTERS);
+  return [...words, words.join(''), mailbox, ...mailbox.split(/[^\p{L}\p{N}]+/u), PRODUCT].filter(
+    (one) => Array.from(one).length >= LEAST_NAME_CHARACTERS,
+  );
 }

@@ -31,6 +31,10 @@ export function signingKey(config: Pick<Config, 'dataDir' | 'production' | 'sess
   const secret = readFileSync(file, 'utf8').trim();
   const bytes = Buffer.byteLength(secret, 'utf8');
   if (bytes < LEAST_BYTES)
-    return problemOf('configuration', 'session-secret', `${file} holds ${bytes} bytes: it must hold a secret of at least ${LEAST_BYTES} bytes.`);
+    return problemOf(
+      'configuration',
+      'session-secret',
+      `${file} holds ${bytes} bytes: it must hold a secret of at least ${LEAST_BYTES} bytes.`,
+    );
   return valueOf(createSecretKey(secret, 'utf8'));
 }

@@ -39,6 +39,9 @@ export function useSiteKey(authorization: string, { db, nowMs }: Pick<Ground, 'd
   const { lastUsedAt, ...holder } = found;
   const ms = nowMs();
   if (lastUsedAt === null || lastUsedAt < utcText(ms - LAST_USED_EXACT_MS))
-    db.update(siteKeys).set({ lastUsedAt: utcText(ms) }).where(eq(siteKeys.id, holder.keyId)).run();
+    db.update(siteKeys)
+      .set({ lastUsedAt: utcText(ms) })
+      .where(eq(siteKeys.id, holder.keyId))
+      .run();
   return holder;
 }

@@ -37,31 +37,44 @@ export function countAttempt({ db, nowMs }: Sources, ...subjects: readonly Subje
   const keys = subjects.map((subject) => ({ key: keyOf(subject), free: FREE[subject.kind] }));
   db.transaction(
     (tx) => {
-      tx.delete(failedAttempts).where(lt(failedAttempts.lastAt, utcText(ms - FORGET_MS))).run();
+      tx.delete(failedAttempts)
+        .where(lt(failedAttempts.lastAt, utcText(ms - FORGET_MS)))
+        .run();
       for (const { key } of keys) {
-        const waitMs = Date.parse(tx.select().from(failedAttempts).where(eq(failedAttempts.subject, key)).get()?.blockedUntil ?? utcText(0)) - ms;
+        const waitMs =
+          Date.parse(tx.select().from(failedAttempts).where(eq(failedAttempts.subject, key)).get()?.blockedUntil ?? utcText(0)) - ms;
         if (waitMs > 0) throw later(429, 'Too many attempts', 'Too many attempts failed: wait, and try again.', Math.ceil(waitMs / 1000));
       }
       for (const { key, free } of keys) {
         const failures = (tx.select().from(failedAttempts).where(eq(failedAttempts.subject, key)).get()?.failures ?? 0) + 1;
         const waitS = failures <= free ? 0 : Math.min(2 ** Math.min(failures - free - 1, 30), MOST_WAIT_S);
         const counted = { failures, lastAt: utcText(ms), blockedUntil: utcText(ms + waitS * 1000) };
-        tx.insert(failedAttempts).values({ subject: key, ...counted }).onConflictDoUpdate({ target: failedAttempts.subject, set: counted }).run();
+        tx.insert(failedAttempts)
+          .values({ subject: key, ...counted })
+          .onConflictDoUpdate({ target: failedAttempts.subject, set: counted })
+          .run();
       }
     },
     { behavior: 'immediate' },
   );
   return () => {
     for (const { key } of keys)
-      db.transaction((tx) => {
-        tx.delete(failedAttempts).where(sql`${failedAttempts.subject} = ${key} AND ${failedAttempts.failures} <= 1`).run();
-        const back = { failures: sql`${failedAttempts.failures} - 1`, blockedUntil: utcText(ms) };
-        tx.update(failedAttempts).set(back).where(eq(failedAttempts.subject, key)).run();
-      }, { behavior: 'immediate' });
+      db.transaction(
+        (tx) => {
+          tx.delete(failedAttempts)
+            .where(sql`${failedAttempts.subject} = ${key} AND ${failedAttempts.failures} <= 1`)
+            .run();
+          const back = { failures: sql`${failedAttempts.failures} - 1`, blockedUntil: utcText(ms) };
+          tx.update(failedAttempts).set(back).where(eq(failedAttempts.subject, key)).run();
+        },
+        { behavior: 'immediate' },
+      );
   };
 }
 
 /** Forgives an account its failures, since its owner has shown that they know the password. */
 export function forgive({ db }: Sources, subject: Subject): void {
-  db.delete(failedAttempts).where(eq(failedAttempts.subject, keyOf(subject))).run();
+  db.delete(failedAttempts)
+    .where(eq(failedAttempts.subject, keyOf(subject)))
+    .run();
 }

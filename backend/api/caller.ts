@@ -18,7 +18,8 @@ export interface PersonCalling {
 /** Who sent a request. */
 export type Caller = Extract<Asker, { kind: 'nobody' }> | PersonCalling | (SiteKeyHolder & { readonly kind: 'site-key' });
 
-const NOBODY = { kind: 'nobody' } as const;
+/** Who shows nothing, or nothing that holds. */
+export const NOBODY = { kind: 'nobody' } as const;
 
 /**
  * Who sent a request, as the database has it now: a session that ended, a person who was disabled and a key that was revoked are nobody at
@@ -33,5 +34,10 @@ export function callerOf(req: Request, ground: Ground): Caller {
   const claimed = readAccess(cookieOf(req, ACCESS_COOKIE), ground);
   const session = claimed && liveSession(ground, claimed);
   if (!session) return NOBODY;
-  return { kind: 'person', personId: session.personId, sessionId: session.sessionId, held: rolesOf(ground.db, session.personId, ground.nowMs()) };
+  return {
+    kind: 'person',
+    personId: session.personId,
+    sessionId: session.sessionId,
+    held: rolesOf(ground.db, session.personId, ground.nowMs()),
+  };
 }

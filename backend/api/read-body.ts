@@ -1,4 +1,4 @@
-import express, { type Request, type Response } from 'express';
+import express, { type Request, type RequestHandler, type Response } from 'express';
 import { unusableRequest } from './refusal';
 
 const MOST_DEPTH = 32;
@@ -28,9 +28,9 @@ export async function readBody(req: Request, res: Response, mostBytes: number): 
 }
 
 function readBytes(req: Request, res: Response, limit: number): Promise<Buffer> {
-  const read = express.raw({ type: () => true, limit, inflate: false });
+  const read: RequestHandler = express.raw({ type: () => true, limit, inflate: false });
   return new Promise((resolve, reject) => {
-    read(req, res, (fault?: unknown) => {
+    void read(req, res, (fault?: unknown) => {
       const body: unknown = req.body;
       if (fault !== undefined) reject(refusalOf(fault, limit));
       else resolve(Buffer.isBuffer(body) ? body : Buffer.alloc(0));
@@ -38,11 +38,11 @@ function readBytes(req: Request, res: Response, limit: number): Promise<Buffer> 
   });
 }
 
-function refusalOf(fault: unknown, limit: number): unknown {
+function refusalOf(fault: unknown, limit: number): Error {
   const status = fault instanceof Error && 'status' in fault ? fault.status : undefined;
   if (status === 413) return unusableRequest(413, `The body must have at most ${limit} bytes.`);
   if (status === 415) return unusableRequest(415, 'The body must not be compressed.');
-  return status === 400 ? unusableRequest(400, 'The body did not come whole.') : fault;
+  return unusableRequest(400, 'The body did not come whole.');
 }
 
 function refuseOddities(body: unknown): void {

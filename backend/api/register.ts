@@ -49,5 +49,7 @@ function refuseUndeclared(served: Served): void {
   if (!policy) throw new Error(`${nameOf(served)} has no policy: '${name}' has no line in shared/contract/policies.ts`);
   const needsPlace = policy.who === 'roles' && policy.in === 'place';
   if (needsPlace !== served.hasPlace)
-    throw new Error(`${nameOf(served)} ${needsPlace ? 'does not say where' : 'says where'} what it asks for lies, and its policy '${name}' does ${needsPlace ? '' : 'not '}depend on that`);
+    throw new Error(
+      `${nameOf(served)} ${needsPlace ? 'does not say where' : 'says where'} what it asks for lies, and its policy '${name}' does ${needsPlace ? '' : 'not '}depend on that`,
+    );
 }

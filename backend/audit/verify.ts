@@ -18,7 +18,7 @@ export interface AuditVerdict {
  */
 export function verifyAudit(db: Db, auditHead: AuditHead): AuditVerdict {
   const head = auditHead.read();
-  let before = { seq: 0, hash: NO_ROW_BEFORE };
+  let before: { readonly seq: number; readonly hash: Buffer } = { seq: 0, hash: NO_ROW_BEFORE };
   const faultAt = (seq: number, text: string): AuditVerdict => ({ sound: before.seq, fault: { seq, text } });
   for (;;) {
     const rows = db.select().from(audit).where(gt(audit.seq, before.seq)).orderBy(asc(audit.seq)).limit(ROWS_AT_ONCE).all();

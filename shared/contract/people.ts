@@ -35,7 +35,7 @@ export const email = () =>
 /** A password as it counts: one form of each character (NFKC), so that keyboards that compose differently agree. */
 export const normalPassword = (given: string): string => given.normalize('NFKC');
 
-const characters = (given: string): number => [...given].length;
+const characters = (given: string): number => Array.from(given).length;
 const PASSWORD_RIGHT = `${LEAST_PASSWORD_CHARACTERS} to ${MOST_PASSWORD_CHARACTERS} characters`;
 
 /** A new password: 12 to 128 characters of any kind. Which are too common is judged by the server. */

@@ -3,6 +3,21 @@ import { idText, pageOf, pageQuery } from './page';
 import { utc } from './people';
 import { route } from './routes';
 
+/** Whether the server and its database answer. */
+export const HEALTH_ROUTES = {
+  readHealth: route('GET', '/health', {
+    policy: 'health:read',
+    query: z.looseObject({}), // whoever watches a server may add what they like, to get past a cache for example
+    answer: z.strictObject({
+      status: z.literal('ok'),
+      version: z.string(),
+      database: z.literal('answers'),
+      migrations: z.int(),
+      deployment: z.strictObject({ createdAt: utc() }),
+    }),
+  }),
+};
+
 /** One line of the audit trail. */
 export const auditEntry = z.strictObject({
   seq: z.int(),
