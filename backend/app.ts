@@ -3,25 +3,41 @@ import compression from 'compression';
 import express, { type Express } from 'express';
 import { type Logger } from 'pino';
 import { pinoHttp } from 'pino-http';
-import { type Db } from './db';
+import { myRoutes } from './accounts/my-routes';
+import { peopleRoutes } from './accounts/people-routes';
+import { sessionRoutes } from './accounts/session-routes';
+import { siteKeyRoutes } from './accounts/site-key-routes';
+import { registerRoutes } from './api/register';
+import { type Served } from './api/serve';
+import { auditRoutes } from './audit/trail';
+import { type Ground } from './ground';
 import { healthRoutes } from './health';
+import { keptMailRoutes } from './mail/kept-mails';
 import { pageRoutes } from './pages';
 import { failed, notFound } from './problem';
 import { securityHeaders } from './security';
 
-/** What the application needs of the process that serves it. */
-export interface Surroundings {
-  readonly db: Db;
-  readonly log: Logger;
-  readonly version: string;
-  readonly production: boolean;
-  /** Folder of the built front end. */
-  readonly frontend: string;
-}
+/** Every route of the API: what is not here is not served. */
+export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>): Served[] => [
+  ...healthRoutes(db),
+  ...sessionRoutes(),
+  ...myRoutes(),
+  ...peopleRoutes(),
+  ...siteKeyRoutes(),
+  ...auditRoutes(),
+  ...(keepsMails ? keptMailRoutes() : []),
+];
 
-/** The whole of HTTP: headers, the API under /api, the front end, and a problem for whatever is neither. */
-export function makeApp({ db, log, version, production, frontend }: Surroundings): Express {
+/**
+ * The whole of HTTP: headers, the API under /api, the front end, and a problem for whatever is neither.
+ *
+ * @param ground what the API stands on
+ * @param frontend folder of the built front end
+ */
+export function makeApp(ground: Ground, frontend: string): Express {
+  const { log, production, trustedProxies } = ground;
   const app = express();
+  app.set('trust proxy', trustedProxies.length > 0 ? trustedProxies : false); // whose X-Forwarded-For is read
   app.disable('x-powered-by');
   app.disable('etag'); // a page differs by its nonce, an answer is not stored; files have tags of their own
   app.use(requestLog(log));
@@ -33,7 +49,7 @@ export function makeApp({ db, log, version, production, frontend }: Surroundings
       res.setHeader('Cache-Control', 'no-store');
       next();
     },
-    healthRoutes(db, version),
+    registerRoutes(allRoutes(ground), ground),
     notFound,
   );
   app.use(pageRoutes(frontend));

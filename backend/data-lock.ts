@@ -1,4 +1,4 @@
-import { chmodSync } from 'node:fs';
+import { chmodSync, closeSync, openSync } from 'node:fs';
 import { join } from 'node:path';
 import Database from 'better-sqlite3';
 
@@ -17,13 +17,14 @@ export interface DataLock {
  *
  * @param dataDir absolute path of a folder that exists
  * @returns the lock, or undefined where another process holds it
- * @throws SqliteError where the file cannot be made or locked
+ * @throws the system's or SQLite's fault where the file cannot be made or locked
  */
 export function lockData(dataDir: string): DataLock | undefined {
   const file = join(dataDir, 'skewline.lock');
+  closeSync(openSync(file, 'a', OWNER_ONLY_FILE)); // before SQLite, whose faults do not name what the system said
+  chmodSync(file, OWNER_ONLY_FILE);
   const holder = new Database(file, { timeout: 0 });
   try {
-    chmodSync(file, OWNER_ONLY_FILE);
     holder.exec('BEGIN EXCLUSIVE');
   } catch (fault) {
     holder.close();

@@ -2,10 +2,12 @@ import { mkdirSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { eq } from 'drizzle-orm';
+import { readMigrationFiles } from 'drizzle-orm/migrator';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { deployment } from '#schema/schema';
 import { appliedMigrations, closeDb, databaseFile, openDb, watchPlace } from './db';
 import { ensureDeployment } from './deployment';
+import { migrationsFolder } from './paths';
 
 let folder: string;
 beforeEach(() => {
@@ -35,6 +37,7 @@ describe('an open database', () => {
     expect(now('journal_mode')).toBe('wal');
     expect(now('synchronous')).toBe(2);
     expect(now('foreign_keys')).toBe(1);
+    expect(now('recursive_triggers')).toBe(1);
     expect(now('trusted_schema')).toBe(0);
     closeDb(db);
   });
@@ -50,9 +53,12 @@ describe('an open database', () => {
   });
 
   it('is migrated once', () => {
-    closeDb(openDb(folder));
+    const first = openDb(folder);
+    const applied = appliedMigrations(first.$client);
+    closeDb(first);
     const db = openDb(folder);
-    expect(appliedMigrations(db.$client)).toHaveLength(1);
+    expect(appliedMigrations(db.$client)).toEqual(applied);
+    expect(applied).toHaveLength(readMigrationFiles({ migrationsFolder }).length);
     closeDb(db);
   });
 

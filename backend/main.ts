@@ -3,9 +3,11 @@ import { type AddressInfo } from 'node:net';
 import { pino } from 'pino';
 import { makeApp } from './app';
 import { readConfig, type Config } from './config';
-import { closeDb, openDb, UnusableDatabase, type Db } from './db';
-import { ensureDeployment } from './deployment';
+import { type DataLock } from './data-lock';
+import { closeDb, holdDataDir, openDb, UnusableDatabase, type Db } from './db';
+import { makeGround, type Standing } from './make-ground';
 import { frontendFolder } from './paths';
+import { serverLog } from './server-log';
 import { VERSION } from './version';
 
 const HEADERS_TIMEOUT_MS = 10_000;
@@ -24,9 +26,11 @@ function refuse(text: string): never {
 process.umask(0o077); // whatever is written is the owner's alone
 const read = readConfig(process.env);
 const config: Config = read.ok ? read.value : refuse(read.problem.text);
-const log = pino({ level: config.logLevel }, pino.destination({ dest: 2, sync: true }));
+const log = serverLog(config.logLevel, pino.destination({ dest: 2, sync: true }));
 
+let lock: DataLock | undefined;
 let db: Db | undefined;
+let standing: Standing | undefined;
 // The port is taken before the database is touched: another server that holds it may be using the same one.
 const server = createServer({
   headersTimeout: HEADERS_TIMEOUT_MS,
@@ -34,17 +38,22 @@ const server = createServer({
   connectionsCheckingInterval: LOOK_FOR_LATE_MS,
 });
 server.on('error', (fault) => refuse(listenFault(fault)));
-server.listen(config.port, config.host, () => {
-  db = openOrRefuse(config.dataDir);
-  ensureDeployment(db, VERSION);
-  server.on('request', makeApp({ db, log, version: VERSION, production: config.production, frontend: frontendFolder }));
+server.listen(config.port, config.host, () => void begin());
+
+async function begin(): Promise<void> {
+  lock = orRefuse(() => holdDataDir(config.dataDir));
+  db = orRefuse(() => openDb(config.dataDir));
+  const { port } = server.address() as AddressInfo;
+  const made = await makeGround({ config, db, log, version: VERSION, port, nowMs: Date.now });
+  standing = made.ok ? made.value : refuse(made.problem.text);
+  server.on('request', makeApp(standing.ground, frontendFolder));
   process.stdout.write(`Skewline is at ${urlOf(server)}\n`);
-});
+}
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, end);
 
-function openOrRefuse(dataDir: string): Db {
+function orRefuse<T>(open: () => T): T {
   try {
-    return openDb(dataDir);
+    return open();
   } catch (fault) {
     if (fault instanceof UnusableDatabase) refuse(fault.message);
     throw fault;
@@ -73,8 +82,12 @@ function end(): void {
     process.exit(1);
   }, END_MS).unref();
   setTimeout(() => server.closeAllConnections(), FINISH_MS).unref();
-  server.close(() => {
-    if (db) closeDb(db);
-    process.exit(0);
-  });
+  server.close(() => void close());
+}
+
+async function close(): Promise<void> {
+  await standing?.leave();
+  if (db) closeDb(db);
+  lock?.release();
+  process.exit(0);
 }

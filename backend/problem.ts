@@ -1,8 +1,22 @@
 import { type ErrorRequestHandler, type RequestHandler, type Response } from 'express';
+import { type ProblemDetails } from '#shared/contract/problem';
+import { Refusal } from './api/refusal';
+import { requestIdOf } from './api/request-id';
 
-/** Sends an RFC 9457 problem; `detail` is for the person who asked, `id` stands in the log beside the request. */
-export function sendProblem(res: Response, status: number, title: string, detail: string): void {
-  res.status(status).type('application/problem+json').json({ type: 'about:blank', title, status, detail, id: res.req.id });
+/**
+ * Sends an RFC 9457 problem; `detail` is for the person who asked, `id` stands in the log beside the request, `where` is the path of the
+ * field that cannot be used.
+ */
+export function sendProblem(res: Response, status: number, title: string, detail: string, where?: string): void {
+  const problem: ProblemDetails = {
+    type: 'about:blank',
+    title,
+    status,
+    detail,
+    ...(where !== undefined && { where }),
+    id: requestIdOf(res.req),
+  };
+  res.status(status).type('application/problem+json').json(problem);
 }
 
 /** The end of every way that leads nowhere. */
@@ -13,6 +27,11 @@ export const notFound: RequestHandler = (req, res) =>
 export const failed: ErrorRequestHandler = (fault: unknown, req, res, next) => {
   if (res.headersSent) {
     next(fault);
+    return;
+  }
+  if (fault instanceof Refusal) {
+    for (const [name, value] of Object.entries(fault.headers)) res.setHeader(name, value);
+    sendProblem(res, fault.status, fault.title, fault.message, fault.where);
     return;
   }
   const status = requestFault(fault);

@@ -3,6 +3,7 @@ import { faultText } from './command/fault-text';
 import { reconcileFiles } from './command/reconcile-command';
 import { terminalProgress } from './command/progress';
 import { UsageProblem } from './command/usage-problem';
+import { addUser } from './command/user-add';
 import { VERSION } from './version';
 
 /** Exit status: unusable arguments or files, and everything else that went wrong. */
@@ -79,6 +80,20 @@ Exit status: 0 done (records set aside are counted on stderr), 2 unusable argume
     )
     .action(async (logs: string[], flags: ReconcileFlags) => {
       await reconcileFiles({ ...flags, logs }, { signal: stopSignal(), progress: terminalProgress(process.stderr), say });
+    });
+  skewline
+    .command('user')
+    .summary('people of a deployment')
+    .command('add')
+    .summary('let the first coordinator in')
+    .description(
+      "Prints the link at which the first coordinator of a deployment chooses a password: good for 72 hours, and once. It reads the server's variables (DATA_DIR, PUBLIC_ORIGIN), and the server may run meanwhile. They invite everyone else.",
+    )
+    .requiredOption('--email <address>', 'with which they will sign in')
+    .requiredOption('--name <name>', 'how others see them')
+    .action((person: Record<string, string>) => {
+      process.umask(0o077); // whatever is written is the owner's alone
+      addUser(person, process.env, (line) => void process.stdout.write(`${line}\n`));
     });
   return skewline;
 }

@@ -21,3 +21,21 @@ export const deployment = sqliteTable(
     check('deployment_created_with', sql`length(${table.createdWith}) BETWEEN 1 AND 64`),
   ],
 );
+
+export * from './people';
+export * from './credentials';
+export * from './networks';
+export * from './clocks';
+export * from './tables';
+export * from './frames';
+export * from './files';
+export * from './jobs';
+export * from './intake';
+export * from './events';
+export * from './coincidences';
+export * from './candidates';
+export * from './changes';
+export * from './wishes';
+export * from './machines';
+export * from './audit';
+export * from './mail';

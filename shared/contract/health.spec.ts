@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { parseHealthAnswer } from './health';
+import { healthAnswer, parseHealthAnswer } from './health';
 
 const answer = {
   status: 'ok',
@@ -16,6 +16,13 @@ describe('the answer of /api/health', () => {
 
   it('may have fields that a newer server added', () => {
     expect(parseHealthAnswer({ ...answer, upS: 5 })).toMatchObject({ ok: true, value: answer });
+    expect(parseHealthAnswer({ ...answer, deployment: { ...answer.deployment, name: 'x' } })).toMatchObject({ ok: true, value: answer });
+  });
+
+  it('goes out with its own fields alone', () => {
+    expect(healthAnswer.safeParse(answer).success).toBe(true);
+    expect(healthAnswer.safeParse({ ...answer, upS: 5 }).success).toBe(false);
+    expect(healthAnswer.safeParse({ ...answer, deployment: { ...answer.deployment, name: 'x' } }).success).toBe(false);
   });
 
   it.each<[unknown, string, string]>([
@@ -27,6 +34,7 @@ describe('the answer of /api/health', () => {
     [{ ...answer, migrations: '1' }, 'migrations', 'is "1"; it must be a whole number, 0 or more'],
     [{ ...answer, migrations: 0.5 }, 'migrations', 'is 0.5; it must be a whole number, 0 or more'],
     [{ ...answer, deployment: null }, 'deployment', 'is null; it must be an object { }'],
+    [{ ...answer, deployment: { createdAt: 'today' } }, 'deployment.createdAt', 'is "today"; it must be a time in UTC, as ISO 8601'],
     [{ ...answer, deployment: {} }, 'deployment.createdAt', 'is missing; it must be a time in UTC, as ISO 8601'],
   ])('is refused as %j', (body, where, text) => {
     expect(parseHealthAnswer(body)).toEqual({ ok: false, problem: { code: 'health-form', where, text } });

@@ -1,10 +1,10 @@
 import { type AddressInfo, connect, createServer } from 'node:net';
-import { chmodSync, mkdirSync, readdirSync, renameSync, rmSync, statSync, symlinkSync, writeFileSync } from 'node:fs';
+import { chmodSync, mkdirSync, readdirSync, readFileSync, renameSync, rmSync, statSync, symlinkSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import Database from 'better-sqlite3';
 import { describe, expect, it } from 'vitest';
 import { newFolder } from '../support/folder';
-import { type Ended, runServer, startServer } from '../support/server';
+import { type Ended, PRODUCTION, runServer, startServer } from '../support/server';
 
 const END_MS = 5_000; // what whoever stops the server may count on
 const USABLE_LINE = /^skewline: [^\n]+\n$/;
@@ -95,6 +95,68 @@ describe('a data folder that a server uses', () => {
   });
 });
 
+describe('43 production does not start', () => {
+  const without = (name: keyof typeof PRODUCTION): Record<string, string> => ({ ...PRODUCTION, [name]: '' });
+
+  it.each([
+    ['declared TLS termination', 'TLS', 'TLS="" cannot be used: it must be "proxy" in production'],
+    ['an origin', 'PUBLIC_ORIGIN', 'PUBLIC_ORIGIN="" cannot be used: it must be set in production'],
+    ['a mail server', 'SMTP_URL', 'SMTP_URL="" cannot be used: it must be set in production'],
+    ['a secret', 'SESSION_SECRET', 'SESSION_SECRET is absent, and so is'],
+  ] as const)('without %s, and says so', async (_what, name, line) => {
+    const { code, stdout, stderr } = await refused({ PORT: '0', ...without(name) });
+    expect(stderr).toMatch(USABLE_LINE);
+    expect(stderr).toContain(line);
+    expect(stdout).toBe('');
+    expect(code).toBe(2);
+  });
+
+  it('without a data directory that can be written, and says so', async () => {
+    const file = join(newFolder('file'), 'data');
+    writeFileSync(file, '');
+    const { code, stderr } = await refused({ PORT: '0', ...PRODUCTION, DATA_DIR: file });
+    expect(stderr).toContain('it must be a folder that can be written');
+    expect(code).toBe(2);
+  });
+
+  it('but starts with all of them, or with the secret in its file, and then has no account, no demo and no kept mails (5)', async () => {
+    const folder = newFolder('production-file');
+    writeFileSync(join(folder, 'session-secret'), 'x'.repeat(32));
+    const server = await startServer({ DATA_DIR: folder, ...without('SESSION_SECRET') });
+    const { status } = await fetch(new URL('/api/kept-mails', server.url));
+    await server.stop();
+    expect(status).toBe(404);
+    expect(statSync(join(folder, 'session-secret')).mode & 0o777).toBe(0o600);
+    const db = new Database(join(folder, 'skewline.sqlite'), { readonly: true });
+    expect(db.prepare('SELECT count(*) FROM people').pluck().get()).toBe(0);
+    db.close();
+  });
+});
+
+describe('9 a secret of sessions', () => {
+  it('of fewer than 32 bytes is no start, in the environment and in its file', async () => {
+    expect((await refused({ PORT: '0', SESSION_SECRET: 'x'.repeat(31) })).stderr).toContain('it must be a secret of 32 to 1024 bytes');
+    const folder = newFolder('short-secret');
+    writeFileSync(join(folder, 'session-secret'), `${'x'.repeat(31)}\n`);
+    const { code, stderr } = await refused({ PORT: '0', DATA_DIR: folder });
+    expect(stderr).toContain('session-secret holds 31 bytes: it must hold a secret of at least 32 bytes.');
+    expect(stderr).not.toContain('xxx');
+    expect(code).toBe(2);
+  });
+
+  it('is made once outside production, for its owner alone', async () => {
+    const folder = newFolder('made-secret');
+    const secret = async (): Promise<string> => {
+      await (await startServer({ DATA_DIR: folder })).stop();
+      expect(statSync(join(folder, 'session-secret')).mode & 0o777).toBe(0o600);
+      return readFileSync(join(folder, 'session-secret'), 'utf8');
+    };
+    const first = await secret();
+    expect(Buffer.from(first, 'base64')).toHaveLength(48);
+    expect(await secret()).toBe(first);
+  });
+});
+
 describe('a database that cannot be used', () => {
   it('is one that a newer program made, and it is left as it was', async () => {
     const folder = newFolder('newer');
@@ -122,7 +184,7 @@ describe('a database that cannot be used', () => {
 });
 
 describe('the data folder', () => {
-  it('is made for its owner alone', async () => {
+  it('44 is made for its owner alone', async () => {
     const folder = join(newFolder('modes'), 'deep', 'data');
     const server = await startServer({ DATA_DIR: folder });
     try {
@@ -209,7 +271,7 @@ describe('the end', () => {
     expect(performance.now() - startMs).toBeLessThan(END_MS);
     expect(code).toBe(0);
     expect(stderr).toBe('');
-    expect(readdirSync(folder)).toEqual(['skewline.lock', 'skewline.sqlite']); // the write-ahead log is gone
+    expect(readdirSync(folder).sort()).toEqual(['session-secret', 'skewline.lock', 'skewline.sqlite']); // the write-ahead log is gone
   });
 
   it('comes within 5 s although a client has not finished its request', async () => {
@@ -227,7 +289,7 @@ describe('the end', () => {
 
   it('prints one URL and nothing else on the way', async () => {
     const server = await startServer({ DATA_DIR: newFolder('words') });
-    await fetch(server.url);
+    await fetch(server.url, { headers: { accept: 'text/html' } });
     const { stdout, stderr } = await server.stop();
     expect(stdout).toBe(`Skewline is at ${server.url}\n`);
     expect(stderr).toBe('');

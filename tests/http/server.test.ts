@@ -2,7 +2,7 @@ import { request } from 'node:http';
 import { connect } from 'node:net';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { newFolder } from '../support/folder';
-import { type RunningServer, startServer } from '../support/server';
+import { PRODUCTION, type RunningServer, startServer } from '../support/server';
 
 let server: RunningServer;
 beforeAll(async () => {
@@ -118,7 +118,7 @@ describe('the headers of every answer', () => {
   });
 
   it('ask for https in production', async () => {
-    const production = await startServer({ DATA_DIR: newFolder('production'), NODE_ENV: 'production' });
+    const production = await startServer({ DATA_DIR: newFolder('production'), ...PRODUCTION });
     try {
       expect((await fetch(production.url)).headers.get('strict-transport-security')).toBe('max-age=31536000');
     } finally {

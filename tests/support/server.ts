@@ -5,6 +5,15 @@ import { root } from '../../scripts/lib.mjs';
 
 const START_MS = 20_000;
 
+/** What production cannot start without. */
+export const PRODUCTION = {
+  NODE_ENV: 'production',
+  TLS: 'proxy',
+  PUBLIC_ORIGIN: 'https://skewline.example',
+  SMTP_URL: 'smtp://127.0.0.1:9',
+  SESSION_SECRET: 'a secret that is long enough for a test',
+} as const;
+
 /** How a process ended and what it had said. */
 export interface Ended {
   readonly code: number | null;

@@ -1,0 +1,47 @@
+import { and, eq, isNull } from 'drizzle-orm';
+import { siteKeys, sites } from '#schema/schema';
+import { utcText, type Ground } from '../ground';
+import { newSecret, secretHash } from './secret-token';
+
+const KEY = /^Bearer (swk_[A-Za-z0-9_-]{43})$/;
+const KEY_BITS = 256;
+const PREFIX_CHARACTERS = 12;
+const LAST_USED_EXACT_MS = 60_000;
+
+/** Who holds a key: one site. */
+export interface SiteKeyHolder {
+  readonly keyId: number;
+  readonly siteId: number;
+  readonly networkId: number;
+}
+
+/** A new key of a site, with what is kept of it: its hash, and its first characters to know it by. */
+export function newSiteKey(): { readonly key: string; readonly prefix: string; readonly hash: Buffer } {
+  const key = `swk_${newSecret(KEY_BITS)}`;
+  return { key, prefix: key.slice(0, PREFIX_CHARACTERS), hash: secretHash(key) };
+}
+
+/**
+ * The site whose key an Authorization header holds, and notes that the key was used, exact to a minute.
+ *
+ * @returns undefined when it is no key, an unknown one, or one that was revoked
+ */
+export function useSiteKey(authorization: string, { db, nowMs }: Pick<Ground, 'db' | 'nowMs'>): SiteKeyHolder | undefined {
+  const key = KEY.exec(authorization)?.[1];
+  if (key === undefined) return undefined;
+  const found = db
+    .select({ keyId: siteKeys.id, siteId: sites.id, networkId: sites.networkId, lastUsedAt: siteKeys.lastUsedAt })
+    .from(siteKeys)
+    .innerJoin(sites, eq(sites.id, siteKeys.siteId))
+    .where(and(eq(siteKeys.hash, secretHash(key)), isNull(siteKeys.revokedAt)))
+    .get();
+  if (!found) return undefined;
+  const { lastUsedAt, ...holder } = found;
+  const ms = nowMs();
+  if (lastUsedAt === null || lastUsedAt < utcText(ms - LAST_USED_EXACT_MS))
+    db.update(siteKeys)
+      .set({ lastUsedAt: utcText(ms) })
+      .where(eq(siteKeys.id, holder.keyId))
+      .run();
+  return holder;
+}

@@ -1,0 +1,38 @@
+import { asc, gt } from 'drizzle-orm';
+import { audit } from '#schema/schema';
+import { type Db } from '../db';
+import { type AuditHead } from './audit-head';
+import { NO_ROW_BEFORE, rowHash } from './chain';
+
+const ROWS_AT_ONCE = 1_000;
+
+/** How many entries are sound, and the first that is not. */
+export interface AuditVerdict {
+  readonly sound: number;
+  readonly fault?: { readonly seq: number; readonly text: string };
+}
+
+/**
+ * Checks the whole audit trail: numbers without a gap, each entry under its own hash and chained to the one before it, and the head that
+ * is kept outside the database among them. An edited, deleted, inserted or moved entry and a cut tail are all found.
+ */
+export function verifyAudit(db: Db, auditHead: AuditHead): AuditVerdict {
+  const head = auditHead.read();
+  let before: { readonly seq: number; readonly hash: Buffer } = { seq: 0, hash: NO_ROW_BEFORE };
+  const faultAt = (seq: number, text: string): AuditVerdict => ({ sound: before.seq, fault: { seq, text } });
+  for (;;) {
+    const rows = db.select().from(audit).where(gt(audit.seq, before.seq)).orderBy(asc(audit.seq)).limit(ROWS_AT_ONCE).all();
+    for (const row of rows) {
+      if (row.seq !== before.seq + 1) return faultAt(before.seq + 1, 'is missing');
+      if (!row.previousHash.equals(before.hash)) return faultAt(row.seq, 'does not follow the entry before it');
+      if (!row.hash.equals(rowHash(row))) return faultAt(row.seq, 'is not what was written');
+      if (row.seq === head?.seq && row.hash.toString('hex') !== head.hashHex)
+        return faultAt(row.seq, 'is not the one that the kept head names');
+      before = row;
+    }
+    if (rows.length < ROWS_AT_ONCE) break;
+  }
+  if (!head && before.seq > 0) return faultAt(before.seq, 'has no kept head: the file audit-head is absent or is none');
+  if (head && head.seq > before.seq) return faultAt(before.seq + 1, `is missing: the trail once went to ${head.seq}`);
+  return { sound: before.seq };
+}

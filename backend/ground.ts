@@ -1,0 +1,32 @@
+import { type KeyObject } from 'node:crypto';
+import { type Logger } from 'pino';
+import { type PasswordHasher } from './accounts/password-hash';
+import { type AuditHead } from './audit/audit-head';
+import { type Db } from './db';
+import { type Letter } from './mail/letters';
+
+/** What the server's parts stand on: made once at its start, handed down, never looked up. */
+export interface Ground {
+  readonly db: Db;
+  readonly log: Logger;
+  /** The server's own clock, in milliseconds since 1970 (UTC). */
+  readonly nowMs: () => number;
+  readonly version: string;
+  readonly production: boolean;
+  /** The random id of the database, which is the issuer of its tokens. */
+  readonly deploymentId: string;
+  /** Where browsers find the server: scheme, host and port. */
+  readonly origin: string;
+  readonly trustedProxies: readonly string[];
+  /** Signs the tokens of sessions. */
+  readonly signingKey: KeyObject;
+  readonly passwords: PasswordHasher;
+  readonly auditHead: AuditHead;
+  /** Sends a letter in its own time; what becomes of it is in the log. */
+  readonly post: (letter: Letter) => void;
+  /** Whether mails stay here, in the demo's own mail server. */
+  readonly keepsMails: boolean;
+}
+
+/** An instant of the server's clock as it stands in the database and in answers: UTC, ISO 8601 with milliseconds. */
+export const utcText = (ms: number): string => new Date(ms).toISOString();

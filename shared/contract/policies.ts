@@ -1,0 +1,96 @@
+import { rolesAt, type HeldRole, type Place, type Role } from './roles';
+
+/** Who may do one thing. Where `in` is 'place', the request says which: the role must be held there. */
+export type Policy =
+  | { readonly who: 'anyone' }
+  | { readonly who: 'signed-in' }
+  | { readonly who: 'site-key' }
+  | { readonly who: 'roles'; readonly roles: readonly Role[]; readonly in: 'place' | 'anywhere' };
+
+const anyone: Policy = { who: 'anyone' };
+const signedIn: Policy = { who: 'signed-in' };
+const at = (...roles: readonly Role[]): Policy => ({ who: 'roles', roles, in: 'place' });
+const anywhere = (...roles: readonly Role[]): Policy => ({ who: 'roles', roles, in: 'anywhere' });
+
+/**
+ * Who may do what, for HTTP routes and socket events alike. A route names its line, an event is one by its own name; what has no line here
+ * is not served.
+ */
+export const POLICIES = {
+  'health:read': anyone,
+
+  'session:begin': anyone,
+  'session:refresh': anyone, // the refresh token says who it is
+  'session:end': anyone, // signing out works whatever the session has come to
+  'invitation:accept': anyone, // the token says who it is
+  'reset:ask': anyone,
+  'reset:use': anyone, // the token says who it is
+
+  'me:read': signedIn,
+  'me:change': signedIn,
+  'my-password:change': signedIn,
+  'my-sessions:read': signedIn,
+  'my-sessions:end': signedIn,
+
+  'person:list': anywhere('coordinator'),
+  'person:read': anywhere('coordinator'),
+  'person:invite': at('coordinator'), // where the person's first role is
+  'person:invite-again': anywhere('coordinator'),
+  'person:disable': at('coordinator'), // of the deployment
+  'person:enable': at('coordinator'), // of the deployment
+  'role:give': at('coordinator'),
+  'role:change': at('coordinator'),
+  'role:take': at('coordinator'),
+
+  'site-key:list': at('coordinator', 'operator'),
+  'site-key:make': at('coordinator', 'operator'),
+  'site-key:revoke': at('coordinator', 'operator'),
+  'site-key:read-own': { who: 'site-key' },
+
+  'audit:read': at('coordinator'),
+  'kept-mail:read': at('coordinator'), // of the deployment: a kept mail may hold anyone's link
+} as const satisfies Readonly<Record<string, Policy>>;
+
+export type PolicyName = keyof typeof POLICIES;
+
+/** The policy of a route or event by its name in the table; absent for what may not be served. */
+export function policyOf(name: string): Policy | undefined {
+  const table: Readonly<Record<string, Policy>> = POLICIES;
+  return Object.hasOwn(table, name) ? table[name] : undefined;
+}
+
+/** Who asks: nobody that is known, a person with the roles that they hold now, or a site by its key. */
+export type Asker =
+  { readonly kind: 'nobody' } | { readonly kind: 'person'; readonly held: readonly HeldRole[] } | { readonly kind: 'site-key' };
+
+/**
+ * What becomes of a request: 'sign-in' when who asks is not known, 'forbidden' when they may see the place but not do this there, 'hidden'
+ * when the place must look to them as if it were not.
+ */
+export type Verdict = 'allowed' | 'sign-in' | 'forbidden' | 'hidden';
+
+/**
+ * Judges whether someone may do something.
+ *
+ * @param policy who may
+ * @param asker who asks
+ * @param place where; needed when the policy's roles are those of a place, and never otherwise
+ */
+export function judge(policy: Policy, asker: Asker, place?: Place): Verdict {
+  switch (policy.who) {
+    case 'anyone':
+      return 'allowed';
+    case 'site-key':
+      return asker.kind === 'site-key' ? 'allowed' : 'sign-in';
+    case 'signed-in':
+      return asker.kind === 'person' ? 'allowed' : 'sign-in';
+    case 'roles': {
+      if (asker.kind !== 'person') return 'sign-in';
+      if (policy.in === 'anywhere') return asker.held.some(({ role }) => policy.roles.includes(role)) ? 'allowed' : 'forbidden';
+      if (!place) throw new Error('a policy of a place was judged without one');
+      const roles = rolesAt(asker.held, place);
+      if (roles.some((role) => policy.roles.includes(role))) return 'allowed';
+      return roles.length > 0 || place.kind === 'deployment' ? 'forbidden' : 'hidden';
+    }
+  }
+}

@@ -1,0 +1,67 @@
+import { createServer } from 'node:http';
+import { type AddressInfo } from 'node:net';
+import { mkdirSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
+import { makeApp } from '../../backend/app';
+import { type Config, readConfig } from '../../backend/config';
+import { closeDb, openDb } from '../../backend/db';
+import { type Ground } from '../../backend/ground';
+import { makeGround } from '../../backend/make-ground';
+import { serverLog } from '../../backend/server-log';
+import { newFolder } from './folder';
+
+/** The application over a real socket, with a real database file and a real mail server, and a clock that can be put forward. */
+export interface RunningApp {
+  readonly url: string;
+  readonly dataDir: string;
+  readonly ground: Ground;
+  /** The lines of its log so far. */
+  readonly log: Record<string, unknown>[];
+  /** The same, as they were written. */
+  readonly rawLog: () => string;
+  readonly forwardMs: (ms: number) => void;
+  readonly close: () => Promise<void>;
+}
+
+/** Starts the application as `main` does, in this process. */
+export async function startApp(changed: Partial<Config> = {}): Promise<RunningApp> {
+  const dataDir = newFolder('app');
+  const read = readConfig({ DATA_DIR: dataDir, NODE_ENV: 'test' });
+  if (!read.ok) throw new Error(read.problem.text);
+  const config = { ...read.value, ...changed };
+  const lines: string[] = [];
+  const log = serverLog('debug', { write: (line: string) => void lines.push(line) });
+  let aheadMs = 0;
+  const db = openDb(dataDir);
+  const server = createServer();
+  await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
+  const { port } = server.address() as AddressInfo;
+  const made = await makeGround({ config, db, log, version: '0.0.0', port, nowMs: () => Date.now() + aheadMs });
+  if (!made.ok) throw new Error(made.problem.text);
+  const { ground, leave } = made.value;
+  server.on('request', makeApp(ground, pageFolder(dataDir)));
+  return {
+    url: `http://127.0.0.1:${port}`,
+    dataDir,
+    ground,
+    get log() {
+      return lines.map((line) => JSON.parse(line) as Record<string, unknown>);
+    },
+    rawLog: () => lines.join(''),
+    forwardMs: (ms) => void (aheadMs += ms),
+    close: async () => {
+      server.closeAllConnections();
+      await new Promise((resolve) => server.close(resolve));
+      await leave();
+      closeDb(db);
+    },
+  };
+}
+
+/** The least that counts as a built front end. */
+function pageFolder(parent: string): string {
+  const folder = join(parent, 'page');
+  mkdirSync(folder);
+  writeFileSync(join(folder, 'index.html'), '<sw-root ngCspNonce="CSP_NONCE"></sw-root>');
+  return folder;
+}
