@@ -55,6 +55,7 @@ async function outcomeOf(...texts: string[]): Promise<{ events: number; repeated
   const store = await readLogs(logArguments(logs, network), network, leapSeconds, {
     pace: { breathe: () => Promise.resolve() },
     onBytes: () => undefined,
+    warn: () => undefined,
   });
   const { rows, counts, setAside, setAsideCount } = store.finish();
   const aside = Array.from({ length: setAsideCount }, (_, k) => {
