@@ -115,7 +115,7 @@ describe('live time', () => {
       'site,from,to\nORL,2016-06-01T00:00:01Z,2016-06-01T00:00:00Z\n',
       'line 2, to: "2016-06-01T00:00:00Z"; it must not be before from (2016-06-01T00:00:01Z)',
     ],
-    [`site,from,to\n"ORL,${span}\n`, 'line 2: a quote is not closed; a quoted field must end with a quote'],
+    [`site,from,to\n"ORL,${span}\n`, 'line 2: a quote is not closed, or followed by something else than a comma'],
   ])('is refused with its line: %j', async (text, message) => {
     const refusal = await liveOf(text).catch((fault: unknown) => fault);
     expect(refusal).toBeInstanceOf(UsageProblem);

@@ -66,7 +66,7 @@ export async function readLiveTime(path: string, network: Network, table: LeapSe
   await readRecords(
     path,
     (fields, { line }, isWhole) => {
-      if (!isWhole) throw new UsageProblem(`${path}: line ${line}: a quote is not closed; a quoted field must end with a quote`);
+      if (!isWhole) throw new UsageProblem(`${path}: line ${line}: a quote is not closed, or followed by something else than a comma`);
       if (!columns) {
         columns = headerOf(fields, path);
         width = fields.length;

@@ -119,6 +119,24 @@ describe('reading a log', () => {
 });
 
 describe('a broken quote', () => {
+  it.each<[string, string]>([
+    ['a blank', '"3" ,4'],
+    ['a tab', '"3"\t,4'],
+    ['a blank at the end of the line', '3,"4" '],
+    ['a blank behind two quotes', '"" ,4'],
+    ['a blank behind a doubled quote', '"3""" ,4'],
+    ['a no-break space, which is two bytes', '"3"\u00a0,4'],
+    ['a carriage return', '"3"\r,4'],
+  ])('is one that %s follows: it spoils its own line and no other', async (_what, line) => {
+    for (const end of ['\n', '\r\n']) {
+      const { records } = await recordsOf(['a,b', '"1",2', line, '5,"6"', ''].join(end));
+      expect(records.map(({ fields, isWhole }) => (isWhole ? fields : 'broken'))).toEqual([['a', 'b'], ['1', '2'], 'broken', ['5', '6']]);
+      expect(records[2]!.raw).toBe(latin(line));
+    }
+    const { records } = await recordsOf(`a,b\n${line}`);
+    expect(records[1]).toEqual({ fields: [], line: 2, raw: latin(line), isWhole: false });
+  });
+
   it('spoils its own line and no other', async () => {
     const { records } = await recordsOf('a,b\n1,"x"y\r\n2,z\n"3"3,"4\n5,"6"\n');
     expect(records).toEqual([
@@ -146,6 +164,29 @@ describe('a broken quote', () => {
     expect(records[1]).toMatchObject({ fields: [], line: 2, isWhole: false });
     expect(records[1]!.raw.slice(0, 6)).toBe('1,"2\nx');
     expect(records[1]!.raw.slice(-5)).toBe('"\n3,4');
+  });
+});
+
+describe('a record that takes the rest of its file', () => {
+  const swallowedIn = (content: string) => {
+    writeFileSync(path, content);
+    return readRecords(path, () => undefined, { pace, onBytes: () => undefined });
+  };
+
+  it('is told with its line and the reason', async () => {
+    expect(await swallowedIn('a,b\n"1\n2",3\n4,"5\n6,7\n')).toEqual({ line: 4, why: 'a quote is not closed' });
+    const long = 'x'.repeat(LONGEST_RECORD_BYTES + BLOCK_BYTES);
+    expect(await swallowedIn(`a,b\n${long}\n`)).toEqual({ line: 2, why: `the line is longer than ${LONGEST_RECORD_BYTES} bytes` });
+    expect(await swallowedIn('a,b\n1,"2"\n')).toBeUndefined();
+  });
+});
+
+describe('a file in UTF-16', () => {
+  it.each([
+    ['little', [0xff, 0xfe, 0x61, 0x00]],
+    ['big', [0xfe, 0xff, 0x00, 0x61]],
+  ])('is refused, the %s end first', async (_what, bytes) => {
+    await expect(recordsOf(Buffer.from(bytes))).rejects.toThrow(`${path}: is in UTF-16; it must be in UTF-8`);
   });
 });
 

@@ -2,6 +2,7 @@ import { isAscii } from 'node:buffer';
 import { closeSync, fstatSync, openSync, readSync } from 'node:fs';
 import Papa from 'papaparse';
 import { type Pace } from './pace';
+import { UsageProblem } from './usage-problem';
 
 /** Where a record stands in its file, so that its text can be read again when it is needed. */
 export interface RecordPlace {
@@ -14,6 +15,13 @@ export interface RecordPlace {
 
 /** Who takes the records of a file, in their order; the header is the first. `isWhole` is false where the quoting is broken. */
 export type RecordTaker = (fields: string[], place: RecordPlace, isWhole: boolean) => void;
+
+/** A record that took everything from its first line to the end of its file. */
+export interface Swallowed {
+  readonly line: number;
+  /** Why, such as `a quote is not closed`. */
+  readonly why: string;
+}
 
 /** Bytes read at once: few enough that a block's rows are gone before they would be kept with the old ones. */
 const BLOCK_BYTES = 1 << 17;
@@ -37,19 +45,22 @@ const CSV = { delimiter: ',', newline: '\n', quoteChar: '"', escapeChar: '"' } a
  *
  * Empty lines and a byte order mark are skipped; bytes that are not UTF-8 become U+FFFD in the fields. A quote that is followed by something
  * else than a separator spoils its own line and no other; a quote that is never closed spoils everything from its record's first line on.
- * Either is handed over as a record that is not whole.
+ * Either is handed over as a record that is not whole. A blank
+ * behind a closing quote is such a thing too (RFC 4180, 2.5).
  *
  * @param path a file that can be read twice
  * @param take called for each record
  * @param options the pace, and who is told of the bytes read
+ * @returns the record that took the rest of the file, if one did; a file in UTF-16 is a usage problem
  */
 export async function readRecords(
   path: string,
   take: RecordTaker,
   options: { pace: Pace; onBytes: (bytes: number) => void },
-): Promise<void> {
+): Promise<Swallowed | undefined> {
   const descriptor = openSync(path, 'r');
   try {
+    refuseUtf16(descriptor, path);
     const sizeBytes = fstatSync(descriptor).size;
     const reader = new BlockReader(take, sizeBytes, lastBytes(descriptor, sizeBytes));
     const block = Buffer.allocUnsafe(BLOCK_BYTES);
@@ -58,17 +69,18 @@ export async function readRecords(
       if (bytes === 0) break;
       reader.add(block.subarray(0, bytes));
       options.onBytes(bytes);
-      if (reader.isSwallowed) break;
+      if (reader.swallowed) break;
       await options.pace.breathe();
     }
     reader.end();
+    return reader.swallowed;
   } finally {
     closeSync(descriptor);
   }
 }
 
 class BlockReader {
-  isSwallowed = false;
+  swallowed: Swallowed | undefined;
   private rest: Buffer = Buffer.alloc(0);
   private offsetBytes = 0;
   private line = 1;
@@ -98,14 +110,15 @@ class BlockReader {
   }
 
   end(): void {
-    if (this.isSwallowed || this.rest.length === 0) return;
+    if (this.swallowed || this.rest.length === 0) return;
     this.rest = this.rest.subarray(this.parse(this.rest, true));
     if (this.rest.length > 0) this.swallow();
   }
 
   /** Everything from here to the end of the file is one record that is not whole. */
   private swallow(): void {
-    this.isSwallowed = true;
+    const why = this.rest.includes(QUOTE) ? 'a quote is not closed' : `the line is longer than ${LONGEST_RECORD_BYTES} bytes`;
+    this.swallowed = { line: this.line, why };
     const leftBytes = this.fileBytes - this.offsetBytes;
     const [bytes, end] = leftBytes > this.rest.length ? [leftBytes, this.fileEnd] : [this.rest.length, this.rest];
     this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes: bytes - lineEndBytes(end) }, false);
@@ -177,7 +190,11 @@ class BlockReader {
           const raw = text.slice(characters, meta.cursor);
           if (raw !== '' && (raw.endsWith('\n') || isEnd)) {
             const end = lineEndOf(raw);
-            if (end !== '\n' && !endsQuoted(raw, end, data)) withoutReturn(data);
+            if (!standsAsWritten(raw.slice(0, raw.length - end.length), end, data)) {
+              isBroken = true;
+              parser.abort();
+              return;
+            }
             this.handOver(data, raw.length - end.length, raw.length, lineEnds(raw));
             characters = meta.cursor;
           }
@@ -210,9 +227,25 @@ function withoutReturn(fields: string[]): boolean {
   return true;
 }
 
-/** Whether the last field of a record is quoted as a whole: then the parser has left out what stands behind the quote, and all is the field's. */
-const endsQuoted = (raw: string, end: string, fields: readonly string[]): boolean =>
-  raw.endsWith(`"${(fields.at(-1) ?? '').replaceAll('"', '""')}"${end}`);
+/**
+ * Whether a record, without its line end, is what RFC 4180 makes of its fields: the parser passes over blanks behind a closing quote.
+ *
+ * It takes the carriage return of the line end from a last field without quotes, where the parser leaves it.
+ */
+function standsAsWritten(record: string, end: string, fields: string[]): boolean {
+  const last = fields.length - 1;
+  let at = 0;
+  for (let index = 0; index <= last; index++) {
+    const isQuoted = record.startsWith('"', at);
+    if (index === last && !isQuoted && end.startsWith('\r')) withoutReturn(fields);
+    const field = fields[index] ?? '';
+    const written = isQuoted ? `"${field.includes('"') ? field.replaceAll('"', '""') : field}"` : field;
+    if (!record.startsWith(written, at)) return false;
+    at += written.length;
+    if (index < last && !record.startsWith(',', at++)) return false;
+  }
+  return at === record.length;
+}
 
 function makeUtf8(fields: string[]): void {
   for (const [at, field] of fields.entries()) {
@@ -224,6 +257,15 @@ function makeUtf8(fields: string[]): void {
 function lineEndOf(raw: string): string {
   if (raw.endsWith('\r\n')) return '\r\n';
   return raw.endsWith('\n') ? '\n' : raw.endsWith('\r') ? '\r' : '';
+}
+
+/** Byte order marks of UTF-16, little end first and big end first. */
+const UTF_16_MARKS = [Buffer.from([0xff, 0xfe]), Buffer.from([0xfe, 0xff])];
+
+function refuseUtf16(descriptor: number, path: string): void {
+  const start = Buffer.alloc(2);
+  readSync(descriptor, start, 0, 2, 0);
+  if (UTF_16_MARKS.some((mark) => mark.equals(start))) throw new UsageProblem(`${path}: is in UTF-16; it must be in UTF-8`);
 }
 
 function lastBytes(descriptor: number, sizeBytes: number): Buffer {

@@ -55,6 +55,7 @@ async function outcomeOf(...texts: string[]): Promise<{ events: number; repeated
   const store = await readLogs(logArguments(logs, network), network, leapSeconds, {
     pace: { breathe: () => Promise.resolve() },
     onBytes: () => undefined,
+    warn: () => undefined,
   });
   const { rows, counts, setAside, setAsideCount } = store.finish();
   const aside = Array.from({ length: setAsideCount }, (_, k) => {
@@ -114,7 +115,10 @@ describe('a header', () => {
     ['\n\nsite,sequence,Reading\n', 'line 3: the header "site,sequence,Reading" has no column reading'],
     ['sequence,reading\n', 'line 1: the header "sequence,reading" has no column site; name the site as in ORL=0.csv'],
     ['site,sequence,reading,note,note\n', 'line 1: the column "note" stands twice; each column needs a name of its own'],
-    ['site,"sequence,reading\n', 'line 1: a quote in the header is not closed; the header must be whole'],
+    [
+      'site,"sequence,reading\n',
+      'line 1: a quote in the header is not closed, or followed by something else than a comma; the header must be whole',
+    ],
   ])('is refused as %j', async (text, message) => {
     const refusal = await outcomeOf(text).catch((fault: unknown) => fault);
     expect(refusal).toBeInstanceOf(UsageProblem);

@@ -52,9 +52,13 @@ function headerOf(fields: readonly string[], log: LogArgument, line: number): Lo
   const fault = (text: string): UsageProblem => new UsageProblem(`${log.path}: line ${line}: ${text}`);
   const doubled = fields.find((name, at) => fields.indexOf(name) !== at);
   if (doubled !== undefined) throw fault(`the column ${JSON.stringify(doubled)} stands twice; each column needs a name of its own`);
+  const [only = '', ...others] = fields;
+  const separator = [';', '\t'].find((character) => others.length === 0 && only.includes(character));
+  if (separator !== undefined)
+    throw fault(`the header ${JSON.stringify(only)} has ${separator === ';' ? 'semicolons' : 'tabs'}; fields must be separated by commas`);
+  const needed = log.site === undefined ? 'site, sequence and reading' : 'sequence and reading';
   for (const name of NEEDED) {
-    if (!fields.includes(name))
-      throw fault(`the header ${JSON.stringify(fields.join(','))} has no column ${name}; needed are site, sequence and reading`);
+    if (!fields.includes(name)) throw fault(`the header ${JSON.stringify(fields.join(','))} has no column ${name}; needed are ${needed}`);
   }
   if (!fields.includes('site') && log.site === undefined)
     throw fault(`the header ${JSON.stringify(fields.join(','))} has no column site; name the site as in ORL=${log.name}`);
@@ -82,13 +86,14 @@ const BROKEN: readonly string[] = [];
 /**
  * Reads all logs into a store: each record is accepted, or set aside with its reason.
  *
+ * @param watch the pace, who is told of the bytes read, and who hears of what is doubtful
  * @returns the store, not yet finished; a log without a usable header is a usage problem
  */
 export async function readLogs(
   logs: readonly LogArgument[],
   network: Network,
   leapSeconds: LeapSecondTable,
-  watch: { pace: Pace; onBytes: (done: number) => void },
+  watch: { pace: Pace; onBytes: (done: number) => void; warn: (text: string) => void },
 ): Promise<RecordStore> {
   const store = new RecordStore(network.sites.length);
   const reconcile = createReconciler(network, leapSeconds);
@@ -100,12 +105,14 @@ export async function readLogs(
   let isExpected = false;
   for (const [file, log] of logs.entries()) {
     let header: LogHeader | undefined;
-    await readRecords(
+    const swallowed = await readRecords(
       log.path,
       (fields, place, isWhole) => {
         if (!header) {
           if (!isWhole)
-            throw new UsageProblem(`${log.path}: line ${place.line}: a quote in the header is not closed; the header must be whole`);
+            throw new UsageProblem(
+              `${log.path}: line ${place.line}: a quote in the header is not closed, or followed by something else than a comma; the header must be whole`,
+            );
           header = headerOf(fields, log, place.line);
           return;
         }
@@ -134,6 +141,10 @@ export async function readLogs(
         },
       },
     );
+    if (swallowed)
+      watch.warn(
+        `${log.path}: line ${swallowed.line}: ${swallowed.why}: everything from there to the end of the file is one record, set aside`,
+      );
     if (!header)
       throw new UsageProblem(`${log.path}: is empty; its first line must be a header such as site,sequence,reading,sigma_ns,amplitude`);
   }

@@ -51,7 +51,7 @@ function loadNetwork(path: string, tables: GroundTables, say: (line: string) => 
   const text = readOption('--network', path);
   let input: unknown;
   try {
-    input = JSON.parse(text);
+    input = JSON.parse(text.replace(/^\ufeff/, '')); // a byte order mark, as some editors put it, is no JSON
   } catch (fault) {
     throw new UsageProblem(`${path}: is not JSON (${faultText(fault)})`);
   }
@@ -123,7 +123,8 @@ export async function reconcileFiles(options: ReconcileOptions, context: Command
       'reading logs, bytes',
       logs.reduce((bytes, { sizeBytes }) => bytes + sizeBytes, 0),
     );
-    const store = await readLogs(logs, network, tables.leapSeconds, { pace, onBytes: progress.at });
+    const warnings: string[] = [];
+    const store = await readLogs(logs, network, tables.leapSeconds, { pace, onBytes: progress.at, warn: (text) => warnings.push(text) });
     const found = store.finish();
     progress.begin('placing events', found.rows.length);
     const sorted = await sortEvents(network, tables.rotationFor(network.from), found, { pace, onEvents: progress.at });
@@ -141,7 +142,7 @@ export async function reconcileFiles(options: ReconcileOptions, context: Command
     context.signal.throwIfAborted();
     folder.publish([...hashes.keys(), 'summary.json']);
     progress.end();
-    for (const text of ground.warnings) say(`warning: ${text}`);
+    for (const text of [...warnings, ...ground.warnings]) say(`warning: ${text}`);
     say(closingLine(found, sorted, results.coincidences.byFold));
   } catch (fault) {
     progress.end();

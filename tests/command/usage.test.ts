@@ -20,6 +20,11 @@ beforeAll(() => {
   write('comma.json', '{\n  "network": "Three",\n}\n');
   write('mistake.json', JSON.stringify(smallNetwork({ rule: { code: 'r', minimum_fold: 1, window: { kind: 'light-time' } } })));
   write('selection.json', JSON.stringify(smallNetwork({ selections: [{ code: 's', events: ['A:1', 'A:2'] }] })));
+  write('semicolons.csv', 'site;sequence;reading\nA;1;2020-01-02T00:00:00\n');
+  write('tabs.csv', 'sequence\treading\n1\t2020-01-02T00:00:00\n');
+  write('noreading.csv', 'sequence\n1\n');
+  writeFileSync(join(folder, 'utf16.csv'), Buffer.from('\ufeffsite,sequence,reading\n', 'utf16le'));
+  write('mark.json', `\ufeff${JSON.stringify(smallNetwork())}`);
   write('events.csv', 'no log at all');
   mkdirSync(join(folder, 'old'));
   write('old/pairs.csv', 'no log at all');
@@ -116,6 +121,18 @@ describe('files that cannot be used are one line and status 2, and nothing is wr
       ['nosite.csv'],
       'nosite.csv: line 1: the header "sequence,reading" has no column site; name the site as in ORL=nosite.csv',
     ],
+    [
+      'a log with semicolons',
+      ['semicolons.csv'],
+      'semicolons.csv: line 1: the header "site;sequence;reading" has semicolons; fields must be separated by commas',
+    ],
+    ['a log with tabs', ['A=tabs.csv'], 'tabs.csv: line 1: the header "sequence\\treading" has tabs; fields must be separated by commas'],
+    [
+      'a log of a site without readings',
+      ['A=noreading.csv'],
+      'noreading.csv: line 1: the header "sequence" has no column reading; needed are sequence and reading',
+    ],
+    ['a log in UTF-16', ['utf16.csv'], 'utf16.csv: is in UTF-16; it must be in UTF-8'],
     ['no live times', ['log.csv', '--live', 'none.csv'], '--live: none.csv: cannot be read (ENOENT'],
     ['a wrong live time', ['log.csv', '--live', 'live.csv'], 'live.csv: line 2, to: "yesterday" is not of the form'],
     ['no leap seconds', ['log.csv', '--leap-seconds', 'none.list'], '--leap-seconds: none.list cannot be read (ENOENT'],
@@ -156,5 +173,10 @@ describe('a run that is done', () => {
     const { code, stdout, stderr } = await reconcile('log.csv', 'A=nosite.csv', '--out', 'done');
     expect(stderr).toBe('1 event, 0 coincidences; 0 records set aside, 1 repeated\n');
     expect([code, stdout]).toEqual([0, '']);
+  });
+
+  it('takes a network file with a byte order mark, as it takes a log with one', async () => {
+    const { code, stderr } = await reconcile('log.csv', '--network', 'mark.json', '--out', 'marked');
+    expect([code, stderr]).toEqual([0, '1 event, 0 coincidences; 0 records set aside, 0 repeated\n']);
   });
 });
