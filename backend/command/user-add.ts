@@ -42,8 +42,7 @@ export function addUser(
       origin: originOf(config.value, port),
     };
     const link = inviteFirstCoordinator(ground, data.email, data.name);
-    if (link === undefined)
-      throw new UsageProblem('a coordinator of the deployment has signed up already: they invite everyone else.');
+    if (link === undefined) throw new UsageProblem('a coordinator of the deployment has signed up already: they invite everyone else.');
     print(link);
   } catch (fault) {
     throw fault instanceof Refusal ? new UsageProblem(fault.message) : fault;
