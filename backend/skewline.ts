@@ -3,7 +3,6 @@ import { faultText } from './command/fault-text';
 import { reconcileFiles } from './command/reconcile-command';
 import { terminalProgress } from './command/progress';
 import { UsageProblem } from './command/usage-problem';
-import { addUser } from './command/user-add';
 import { VERSION } from './version';
 
 /** Exit status: unusable arguments or files, and everything else that went wrong. */
@@ -91,8 +90,10 @@ Exit status: 0 done (records set aside are counted on stderr), 2 unusable argume
     )
     .requiredOption('--email <address>', 'with which they will sign in')
     .requiredOption('--name <name>', 'how others see them')
-    .action((person: Record<string, string>) => {
+    .action(async (person: Record<string, string>) => {
       process.umask(0o077); // whatever is written is the owner's alone
+      // Only here: reconciling needs no database, and should not wait for its libraries.
+      const { addUser } = await import('./command/user-add');
       addUser(person, process.env, (line) => void process.stdout.write(`${line}\n`));
     });
   return skewline;
