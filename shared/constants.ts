@@ -1,6 +1,9 @@
 /** Speed of light in vacuum, m/s, exact. Source: SI Brochure, 9th edition (2019), definition of the metre. */
 export const C_M_S = 299_792_458;
 
+/** Nanoseconds that light needs for a metre. */
+export const NS_PER_LIGHT_M = 1e9 / C_M_S;
+
 /** SI seconds in a day of a uniform scale. Source: SI Brochure, 9th edition (2019), table 8. */
 export const S_PER_DAY = 86_400;
 

@@ -1,4 +1,4 @@
-import { C_M_S } from '../constants';
+import { NS_PER_LIGHT_M } from '../constants';
 import { type ErrorTables, type EventColumns } from '../relativity/events';
 
 /** Events whose errors reach about equally far. */
@@ -20,8 +20,6 @@ const MOST_BANDS = 48;
 
 /** Least reach that is worth a band of its own, ns. */
 const LEAST_BAND_NS = 1e3;
-
-const NS_PER_LIGHT_M = 1e9 / C_M_S;
 
 /**
  * The farthest, in time, at which an event's own errors may make it near another, ns: `sigmas` times its time error and its position error

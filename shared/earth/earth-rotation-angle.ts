@@ -1,13 +1,14 @@
+import { S_PER_DAY } from '../constants';
+
 /** Turns of the Earth in one day of UT1, less one. Source: IAU 2000 Resolution B1.8; IERS Conventions 2010, equation 5.15. */
 const TURNS_BEYOND_ONE = 0.00273781191135448;
 
 /** Mean rate of the Earth rotation angle while UT1 runs as TAI does, radians per second. */
-export const EARTH_ROTATION_RAD_S = (2 * Math.PI * (1 + TURNS_BEYOND_ONE)) / 86_400;
+export const EARTH_ROTATION_RAD_S = (2 * Math.PI * (1 + TURNS_BEYOND_ONE)) / S_PER_DAY;
 
 /** Earth rotation angle at 2000-01-01T12:00:00 UT1, turns. Source: as above. */
 const TURNS_AT_J2000 = 0.779057273264;
 
-const S_PER_DAY = 86_400;
 /** Noon of 2000-01-01 in seconds since 1970-01-01T00:00:00 of the same scale. */
 const J2000_S = 946_728_000;
 

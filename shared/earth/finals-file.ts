@@ -1,3 +1,4 @@
+import { S_PER_DAY } from '../constants';
 import { type Outcome, problemOf, valueOf } from '../outcome';
 import { MOST_POLE_RAD, type OrientationValues } from './earth-orientation';
 import { type OrientationRow, type OrientationTable, orientationTable } from './orientation-table';
@@ -25,7 +26,6 @@ const FINAL_UT1_UTC: Field = { name: 'UT1-UTC of Bulletin B', from: 155, to: 165
 
 const RAD_PER_ARCSEC = Math.PI / 648_000;
 const MJD_OF_1970 = 40_587;
-const S_PER_DAY = 86_400;
 /** UTC is kept within 0.9 s of UT1 (ITU-R TF.460-6); a row beyond this is not one. */
 const MOST_UT1_UTC_S = 1;
 /** A file longer than this is refused before it is read: 274 years of days. */

@@ -1,3 +1,4 @@
+import { S_PER_DAY } from '../constants';
 import { type Outcome, problemOf, valueOf } from '../outcome';
 import { type EarthOrientation, MOST_UT1_CHANGE_S_PER_DAY, type OrientationValues } from './earth-orientation';
 
@@ -11,8 +12,6 @@ export interface OrientationRow {
   /** Measured (final or rapid), or predicted by the IERS. */
   readonly kind: 'measured' | 'predicted';
 }
-
-const S_PER_DAY = 86_400;
 
 /** Refuses rows that no Earth can have: too few, a day missing, or UT1 - TAI jumping as it does when a leap second was not taken out. */
 function checkRows(rows: readonly OrientationRow[]): ReturnType<typeof problemOf> | undefined {

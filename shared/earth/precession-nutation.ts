@@ -1,3 +1,4 @@
+import { S_PER_DAY } from '../constants';
 import { type Mat3 } from '../relativity/vector';
 import { LOCATOR_POLYNOMIAL_UAS, LOCATOR_TERMS, type LocatorTerm, NUTATION_TERMS, type NutationTerm } from './nutation-terms';
 
@@ -13,7 +14,7 @@ const RAD_PER_UAS = RAD_PER_ARCSEC * 1e-6;
 
 /** TT of J2000.0 (2000-01-01T12:00:00 TT) in seconds since 1970-01-01T00:00:00 TT. */
 const J2000_S = 946_728_000;
-const S_PER_JULIAN_CENTURY = 36_525 * 86_400;
+const S_PER_JULIAN_CENTURY = 36_525 * S_PER_DAY;
 const TT_MINUS_TAI_S = 32.184;
 
 /**

@@ -1,3 +1,4 @@
+import { S_PER_DAY } from '../constants';
 import { norm, subtract, type Vec3 } from '../relativity/vector';
 import { type Worldline } from '../relativity/worldline';
 import { MOST_POLE_RAD, MOST_UT1_CHANGE_S_PER_DAY } from './earth-orientation';
@@ -33,7 +34,7 @@ export function fixedSiteWorldline(itrsM: Vec3, rotation: EarthRotation): FixedS
     itrsM,
     rotation,
     mostRadiusM: radiusM * (1 + ROUNDING),
-    mostSpeedMS: EARTH_ROTATION_RAD_S * (1 + MOST_UT1_CHANGE_S_PER_DAY / 86_400) * mostAxisDistanceM + MOST_AXIS_MOTION_RAD_S * radiusM,
+    mostSpeedMS: EARTH_ROTATION_RAD_S * (1 + MOST_UT1_CHANGE_S_PER_DAY / S_PER_DAY) * mostAxisDistanceM + MOST_AXIS_MOTION_RAD_S * radiusM,
     placeAt: ({ taiS, ps }) => {
       rotation.placeInto(itrsM[0], itrsM[1], itrsM[2], taiS, ps, place, 0);
       return [place[0] ?? 0, place[1] ?? 0, place[2] ?? 0];

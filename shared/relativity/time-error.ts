@@ -1,8 +1,5 @@
-import { C_M_S } from '../constants';
+import { NS_PER_LIGHT_M } from '../constants';
 import { type ErrorTables, type EventColumns } from './events';
-
-/** Nanoseconds that light needs for one metre. */
-const NS_PER_LIGHT_M = 1e9 / C_M_S;
 
 /** One independent part of an event's time error. */
 export interface ErrorTerm {
