@@ -17,6 +17,11 @@ export interface LaterTriggers {
   readonly perSite: Int32Array;
 }
 
+/** How many sites have a trigger. */
+export function sitesAmong(perSite: Int32Array): number {
+  return perSite.reduce((sites, triggers) => sites + Math.sign(triggers), 0);
+}
+
 /** An upper bound of the number of sets around an event: each site gives one of its triggers or none. */
 export function mostSets(perSite: Int32Array): number {
   return perSite.reduce((most, triggers) => most * (triggers + 1), 1);
@@ -34,7 +39,7 @@ export function mostSets(perSite: Int32Array): number {
  * @param limit the number to exceed
  */
 export function isSurelyCrowded(later: LaterTriggers, near: (a: number, b: number) => boolean, limit: number): boolean {
-  const siteCount = later.perSite.reduce((sites, triggers) => sites + Math.sign(triggers), 0);
+  const siteCount = sitesAmong(later.perSite);
   const enough = Math.min(MOST_A_SITE, Math.max(LEAST_A_SITE, Math.ceil(Math.pow(AIM * limit, 1 / siteCount))));
   const bySite = Array.from(later.perSite, (triggers): { readonly wanted: number; readonly rows: number[] } => ({
     wanted: Math.min(enough, triggers),

@@ -1,6 +1,6 @@
 import { type EventColumns } from '../relativity/events';
 import { searchCliques } from './clique-search';
-import { isSurelyCrowded, mostSets } from './crowding';
+import { isSurelyCrowded, mostSets, sitesAmong } from './crowding';
 import { type CoincidenceKernel, RowList } from './kernel';
 import { WORD_ROWS, WordSearch } from './word-search';
 
@@ -86,7 +86,7 @@ export function setsFrom(
 
   function crowdAt(event: number, laterCount: number): Crowd {
     perSite[siteOf(event)] = 1;
-    const sites = perSite.reduce((sum, triggers) => sum + Math.sign(triggers), 0);
+    const sites = sitesAmong(perSite);
     return { event, sites, events: laterCount + 1, setsAtLeast: limits.limit + 1 };
   }
 
@@ -97,7 +97,7 @@ export function setsFrom(
   function isCrowdedAtOnce(event: number, laterRows: Int32Array): boolean {
     perSite.fill(0);
     for (const row of laterRows) perSite[siteOf(row)] = (perSite[siteOf(row)] ?? 0) + 1;
-    const sites = perSite.reduce((sum, triggers) => sum + Math.sign(triggers), 0);
+    const sites = sitesAmong(perSite);
     if (sites < leastOthers || mostSets(perSite) <= limits.limit) return false;
     if (sites < kernel.siteCount - 1) {
       const earlierCount = kernel.earlierNear(event, earlier);

@@ -11,11 +11,11 @@ import { prepareClock } from '../time/correction';
 import { EXACT_CLOCK } from '../time/clock-record';
 import { compareInstants, type Instant } from '../time/instant';
 import { type LeapSecondTable } from '../time/leap-seconds';
-import { parseStatedTime } from '../time/stated-time';
 import { type Network, type NetworkSite } from '../reconcile/network';
 import { compareText } from '../compare-text';
 import { type ClockRows, errorTablesOf, readClocks } from './network-clocks';
 import { frameDefinitions } from './network-frames';
+import { timeAt } from './network-times';
 
 /** What a network rests on besides its file. */
 export interface NetworkGround {
@@ -35,12 +35,6 @@ function twice(list: readonly { readonly code: string }[] | undefined, path: str
     seen.add(code);
   }
   return undefined;
-}
-
-/** A time of the file, with its path in what goes wrong. */
-export function timeAt(text: string, path: string, table: LeapSecondTable): Outcome<Instant> {
-  const time = parseStatedTime(text, path, table);
-  return time.ok ? valueOf(time.value.instant, time.warnings) : time;
 }
 
 /** The first event that stands twice in one selection. */

@@ -4,7 +4,7 @@ import { type ErrorTables } from '../relativity/events';
 import { type ClockRecord, type ClockSegment } from '../time/clock-record';
 import { compareInstants, type Instant } from '../time/instant';
 import { type LeapSecondTable } from '../time/leap-seconds';
-import { parseStatedTime } from '../time/stated-time';
+import { timeAt } from './network-times';
 
 /** A clock's record and the row of its first segment among all segments. */
 export interface ClockRow {
@@ -27,10 +27,9 @@ interface ClockContext {
 }
 
 function readTime(text: string, path: string, context: ClockContext): Outcome<Instant> {
-  const time = parseStatedTime(text, path, context.table);
-  if (!time.ok) return time;
-  context.warnings.push(...time.warnings);
-  return valueOf(time.value.instant);
+  const time = timeAt(text, path, context.table);
+  if (time.ok) context.warnings.push(...time.warnings);
+  return time;
 }
 
 function readSegment(segment: FileSegment, path: string, context: ClockContext): Outcome<ClockSegment> {
