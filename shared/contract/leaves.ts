@@ -24,6 +24,18 @@ export const listOf = <T extends z.ZodType>(item: T, what: string) => z.array(it
 /** Three finite numbers; `right` says what the list holds, each part what it is. */
 export const triple = (right: string, part: string) => z.tuple([numberThat(part), numberThat(part), numberThat(part)], { error: right });
 
+const INSTANT_RIGHT = 'an instant of TAI: { "taiS": whole seconds since 1970-01-01T00:00:00 TAI, "ps": whole picoseconds, 0 to 999999999999 }';
+
+/** An instant as it crosses the wire: two whole numbers, since no double holds both an era and a picosecond. */
+export const instant = () =>
+  z.strictObject(
+    {
+      taiS: numberThat('whole seconds of TAI', Number.isSafeInteger),
+      ps: numberThat('whole picoseconds, 0 to 999999999999', (value) => Number.isInteger(value) && value >= 0 && value < 1e12),
+    },
+    { error: INSTANT_RIGHT },
+  );
+
 /** An object that refuses fields it does not know. */
 export const record = <T extends z.ZodRawShape>(shape: T) => z.strictObject(shape, { error: (issue) => recordError(issue, shape) });
 
