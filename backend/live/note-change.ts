@@ -19,6 +19,8 @@ export function noteChange(tx: Tx, networkId: number, kind: ChangeKind, body: ob
   const head = tx.select({ last: changeHeads.last }).from(changeHeads).where(eq(changeHeads.networkId, networkId)).get();
   if (!head) throw new Error(`network ${networkId} has no numbering of changes`);
   const number = head.last + 1;
-  tx.insert(changes).values({ networkId, number, atMs, kind, body: JSON.stringify(body) }).run(); // the head follows by itself
+  tx.insert(changes)
+    .values({ networkId, number, atMs, kind, body: JSON.stringify(body) })
+    .run(); // the head follows by itself
   return number;
 }

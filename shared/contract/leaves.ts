@@ -24,7 +24,8 @@ export const listOf = <T extends z.ZodType>(item: T, what: string) => z.array(it
 /** Three finite numbers; `right` says what the list holds, each part what it is. */
 export const triple = (right: string, part: string) => z.tuple([numberThat(part), numberThat(part), numberThat(part)], { error: right });
 
-const INSTANT_RIGHT = 'an instant of TAI: { "taiS": whole seconds since 1970-01-01T00:00:00 TAI, "ps": whole picoseconds, 0 to 999999999999 }';
+const INSTANT_RIGHT =
+  'an instant of TAI: { "taiS": whole seconds since 1970-01-01T00:00:00 TAI, "ps": whole picoseconds, 0 to 999999999999 }';
 
 /** An instant as it crosses the wire: two whole numbers, since no double holds both an era and a picosecond. */
 export const instant = () =>
