@@ -1,4 +1,4 @@
-import { emptyEvents } from '../relativity/events';
+import { emptyEvents, type EventColumns } from '../relativity/events';
 import { type FourVelocity } from '../relativity/velocity';
 import { type Instant, nanosecondsOf } from '../time/instant';
 import { compareIdentities, type EventIdentity } from './event-identity';
@@ -10,6 +10,8 @@ export interface LiveEvent extends EventIdentity {
   readonly xM: number;
   readonly yM: number;
   readonly zM: number;
+  /** Row of the site's delay and place in the error tables; the site's own row unless given. */
+  readonly version?: number;
   readonly readingSigmaNs: number;
   readonly sigmaNs: number;
   readonly segment: number;
@@ -34,6 +36,17 @@ const NUMBERS = [
 
 const FIRST_SLOTS = 256;
 
+/** Columns that tell the versions of a site apart. */
+export type VersionedColumns = EventColumns & { readonly version: Uint16Array };
+
+/** Room for `capacity` events of sites with versions. */
+export const emptyVersionedEvents = (capacity: number): VersionedColumns => ({
+  ...emptyEvents(capacity),
+  version: new Uint16Array(capacity),
+});
+
+const versionOf = ({ site, version = site }: LiveEvent): number => version;
+
 /** Nanoseconds from an instant to an event, formed as the kernel does. */
 export const sinceNs = (from: Instant, event: Instant): number => nanosecondsOf(event.taiS - from.taiS, event.ps - from.ps);
 
@@ -43,7 +56,7 @@ export const sinceNs = (from: Instant, event: Instant): number => nanosecondsOf(
  */
 export class HeldEvents {
   /** By slot. */
-  columns = emptyEvents(FIRST_SLOTS);
+  columns = emptyVersionedEvents(FIRST_SLOTS);
   /** By slot: the event's own reach. */
   reachNs = new Float64Array(FIRST_SLOTS);
   /** By slot: gamma and gamma-betas of the window's frame at 4 times the slot; empty where the window needs none. */
@@ -111,6 +124,7 @@ export class HeldEvents {
   /** Other content for an event that is not in the order yet. */
   write(slot: number, event: LiveEvent): void {
     for (const name of NUMBERS) this.columns[name][slot] = event[name];
+    this.columns.version[slot] = versionOf(event);
     if (!this.windowVelocityAt) return;
     const { gamma, gammaBeta } = this.windowVelocityAt(event);
     this.windowVelocities[4 * slot] = gamma;
@@ -118,7 +132,7 @@ export class HeldEvents {
   }
 
   holdsSame(slot: number, event: LiveEvent): boolean {
-    return NUMBERS.every((name) => this.columns[name][slot] === event[name]);
+    return this.columns.version[slot] === versionOf(event) && NUMBERS.every((name) => this.columns[name][slot] === event[name]);
   }
 
   /** Frees a slot that is not in the order. */
@@ -196,8 +210,9 @@ export class HeldEvents {
 
   private makeSlotRoom(): void {
     const capacity = 2 * this.reachNs.length;
-    const larger = emptyEvents(capacity);
+    const larger = emptyVersionedEvents(capacity);
     for (const name of NUMBERS) larger[name].set(this.columns[name]);
+    larger.version.set(this.columns.version);
     this.columns = larger;
     const reachNs = new Float64Array(capacity);
     reachNs.set(this.reachNs);

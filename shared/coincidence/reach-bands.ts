@@ -1,5 +1,6 @@
 import { NS_PER_LIGHT_M } from '../constants';
 import { type ErrorTables, type EventColumns } from '../relativity/events';
+import { versionOf } from '../relativity/time-error';
 
 /** Events whose errors reach about equally far. */
 export interface ReachBand {
@@ -26,7 +27,7 @@ const LEAST_BAND_NS = 1e3;
  * over c. Two events' reaches together bound `sigmas` standard errors of their gap, since what they share can only cancel.
  */
 export function eventReachNs(input: ReachInput, event: number): number {
-  const position = input.errors.sitePositionSigmaM[input.events.site[event] ?? 0] ?? 0;
+  const position = input.errors.sitePositionSigmaM[versionOf(input.events, event)] ?? 0;
   return input.rule.sigmas * ((input.events.sigmaNs[event] ?? 0) + position * NS_PER_LIGHT_M);
 }
 

@@ -1,5 +1,5 @@
-import { emptyEvents, type ErrorTables, type EventColumns } from '../relativity/events';
-import { type HeldEvents } from './held-events';
+import { type ErrorTables, type EventColumns } from '../relativity/events';
+import { emptyVersionedEvents, type HeldEvents } from './held-events';
 import { coincidenceKernel, type CoincidenceKernel, RowList } from './kernel';
 import { type Crowding, type Outcome } from './outcome';
 import { type CoincidenceRule } from './rule';
@@ -37,7 +37,7 @@ export const ALL_ASKED = 2;
 
 /** Copies a stretch of held events side by side, and finds by the batch kernel what begins with the wanted ones. */
 export class RegionSearch {
-  private scratch = emptyEvents(256);
+  private scratch = emptyVersionedEvents(256);
   private velocities = new Float64Array(0);
   private packed = new Int32Array(256);
   private readonly later = new RowList();
@@ -101,7 +101,7 @@ export class RegionSearch {
 
   private gather({ from, to }: Region): EventColumns {
     const count = to - from;
-    if (count > this.scratch.taiS.length) this.scratch = emptyEvents(2 * count);
+    if (count > this.scratch.taiS.length) this.scratch = emptyVersionedEvents(2 * count);
     const { columns, windowVelocities } = this.held;
     const into = this.scratch;
     for (let row = 0; row < count; row++) {
@@ -112,6 +112,7 @@ export class RegionSearch {
       into.yM[row] = columns.yM[slot] ?? 0;
       into.zM[row] = columns.zM[slot] ?? 0;
       into.site[row] = columns.site[slot] ?? 0;
+      into.version[row] = columns.version[slot] ?? 0;
       into.readingSigmaNs[row] = columns.readingSigmaNs[slot] ?? 0;
       into.sigmaNs[row] = columns.sigmaNs[slot] ?? 0;
       into.segment[row] = columns.segment[slot] ?? -1;

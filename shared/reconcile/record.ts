@@ -2,8 +2,8 @@ import { isCode } from './code';
 import { daysSinceAt, eventInstant, restOfDaysSinceAt, segmentAt } from '../time/correction';
 import { compareInstants } from '../time/instant';
 import { type LeapSecondTable } from '../time/leap-seconds';
-import { createReadingParser, type ReadingFault, resolutionSigmaNs } from '../time/reading';
-import { type Network } from './network';
+import { createReadingParser, type Reading, type ReadingFault, resolutionSigmaNs } from '../time/reading';
+import { type Network, type NetworkSite } from './network';
 
 /** Why a record is set aside by itself, in the order in which the reasons are looked for. */
 export type RecordFault =
@@ -93,6 +93,22 @@ export const emptyRecord = (): ReconciledRecord => ({
 const WHOLE_NUMBER = /^\d+$/;
 const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?$/;
 
+/** What a record says of itself before its reading is looked at. */
+export interface RecordNames {
+  readonly sequence: string;
+  readonly series: string;
+  readonly kind: string;
+}
+
+/** The texts by which a record says how sure it is, and how strong its pulse was. */
+export interface RecordSizes {
+  readonly sigma: string;
+  readonly amplitude: string;
+}
+
+/** What one site's readings are turned into events by. */
+export type ReadingGround = Pick<NetworkSite, 'readingSigmaNs' | 'clock' | 'firstSegmentRow'>;
+
 /** A field as a finite number, or NaN. */
 function numberOf(text: string): number {
   const value = NUMBER.test(text) ? Number(text) : NaN;
@@ -102,6 +118,48 @@ function numberOf(text: string): number {
 function withoutLeadingZeros(digits: string): string {
   if (digits.length === 1 || digits.charCodeAt(0) !== 48) return digits;
   return digits.replace(/^0+(?=\d)/, '');
+}
+
+/**
+ * Takes in what names a record: its sequence, series and kind.
+ *
+ * @returns undefined with the names written into `into`, or the first fault
+ */
+export function takeNames({ sequence, series, kind }: RecordNames, into: ReconciledRecord): RecordFault | undefined {
+  if (!WHOLE_NUMBER.test(sequence)) return 'sequence';
+  if (series !== '' && !isCode(series)) return 'series';
+  const kindIndex = kind === '' ? 0 : KINDS.findIndex((name) => name === kind);
+  if (kindIndex < 0) return 'kind';
+  into.sequence = withoutLeadingZeros(sequence);
+  into.series = series;
+  into.kind = kindIndex;
+  return undefined;
+}
+
+/**
+ * Turns a reading into the time of an event: delay and clock record taken off, with the errors that go with it. The run is not looked at.
+ *
+ * @param reading on the time axis
+ * @returns undefined with time and errors written into `into`, or the first fault
+ */
+export function takeReading(reading: Reading, sizes: RecordSizes, ground: ReadingGround, into: ReconciledRecord): RecordFault | undefined {
+  const sigmaNs = sizes.sigma === '' ? (ground.readingSigmaNs ?? resolutionSigmaNs(reading.decimals)) : numberOf(sizes.sigma);
+  if (!(sigmaNs >= 0)) return 'sigma';
+  const amplitude = sizes.amplitude === '' ? NaN : numberOf(sizes.amplitude);
+  if (sizes.amplitude !== '' && Number.isNaN(amplitude)) return 'amplitude';
+  const holds = segmentAt(ground.clock, reading);
+  const segment = ground.clock[holds];
+  if (!segment) return 'before-clock-record';
+  const instant = eventInstant(segment, reading);
+  into.taiS = instant.taiS;
+  into.ps = instant.ps;
+  into.readingSigmaNs = Math.abs(sigmaNs); // -0 is 0
+  into.sigmaSource = sizes.sigma !== '' ? 0 : ground.readingSigmaNs === undefined ? 2 : 1;
+  into.segment = ground.firstSegmentRow < 0 ? -1 : ground.firstSegmentRow + holds;
+  into.sinceEpochDays = into.segment < 0 ? 0 : daysSinceAt(segment, reading);
+  into.sinceEpochRestDays = into.segment < 0 ? 0 : restOfDaysSinceAt(segment, reading, into.sinceEpochDays);
+  into.amplitude = amplitude;
+  return undefined;
 }
 
 /** Turns the fields of one record into an event's time, or says why the record is set aside. */
@@ -128,17 +186,7 @@ export function createReconciler(network: Pick<Network, 'sites' | 'from' | 'to'>
     const row = code === undefined || (layout.ofSite !== undefined && code !== layout.ofSite) ? undefined : rows.get(code);
     if (row === undefined) return 'site';
     into.site = row;
-    const sequence = at(fields, layout.sequence);
-    if (!WHOLE_NUMBER.test(sequence)) return 'sequence';
-    const series = at(fields, layout.series);
-    if (series !== '' && !isCode(series)) return 'series';
-    const kind = at(fields, layout.kind);
-    const kindIndex = kind === '' ? 0 : KINDS.findIndex((name) => name === kind);
-    if (kindIndex < 0) return 'kind';
-    into.sequence = withoutLeadingZeros(sequence);
-    into.series = series;
-    into.kind = kindIndex;
-    return undefined;
+    return takeNames({ sequence: at(fields, layout.sequence), series: at(fields, layout.series), kind: at(fields, layout.kind) }, into);
   }
 
   return (fields, layout, into) => {
@@ -147,26 +195,11 @@ export function createReconciler(network: Pick<Network, 'sites' | 'from' | 'to'>
     const site = network.sites[into.site];
     const reading = parsers[into.site]?.(at(fields, layout.reading)) ?? 'reading-empty';
     if (!site || typeof reading === 'string') return typeof reading === 'string' ? reading : 'site';
-    const sigmaText = at(fields, layout.sigma);
-    const sigmaNs = sigmaText === '' ? (site.readingSigmaNs ?? resolutionSigmaNs(reading.decimals)) : numberOf(sigmaText);
-    if (!(sigmaNs >= 0)) return 'sigma';
-    const amplitudeText = at(fields, layout.amplitude);
-    const amplitude = amplitudeText === '' ? NaN : numberOf(amplitudeText);
-    if (amplitudeText !== '' && Number.isNaN(amplitude)) return 'amplitude';
-    const holds = segmentAt(site.clock, reading);
-    const segment = site.clock[holds];
-    if (!segment) return 'before-clock-record';
-    const instant = eventInstant(segment, reading);
-    if (compareInstants(instant, network.from) < 0) return 'outside-run';
-    if (network.to && compareInstants(instant, network.to) > 0) return 'outside-run';
-    into.taiS = instant.taiS;
-    into.ps = instant.ps;
-    into.readingSigmaNs = Math.abs(sigmaNs); // -0 is 0
-    into.sigmaSource = sigmaText !== '' ? 0 : site.readingSigmaNs === undefined ? 2 : 1;
-    into.segment = site.firstSegmentRow < 0 ? -1 : site.firstSegmentRow + holds;
-    into.sinceEpochDays = into.segment < 0 ? 0 : daysSinceAt(segment, reading);
-    into.sinceEpochRestDays = into.segment < 0 ? 0 : restOfDaysSinceAt(segment, reading, into.sinceEpochDays);
-    into.amplitude = amplitude;
+    const sizes = { sigma: at(fields, layout.sigma), amplitude: at(fields, layout.amplitude) };
+    const unsure = takeReading(reading, sizes, site, into);
+    if (unsure) return unsure;
+    if (compareInstants(into, network.from) < 0) return 'outside-run';
+    if (network.to && compareInstants(into, network.to) > 0) return 'outside-run';
     return undefined;
   };
 }

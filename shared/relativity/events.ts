@@ -13,8 +13,10 @@ export interface EventColumns {
   readonly xM: Float64Array;
   readonly yM: Float64Array;
   readonly zM: Float64Array;
-  /** Row of the site in `ErrorTables`. */
+  /** Row of the site; of its delay and place in `ErrorTables` too, unless `version` says another. */
   readonly site: Uint16Array;
+  /** Row of the site's delay and place in `ErrorTables`, where a site may have had several; absent where each has one. */
+  readonly version?: Uint16Array;
   /** One standard error of the reading alone. */
   readonly readingSigmaNs: Float64Array;
   /** All time errors of the event together, see `timeVarianceNs2`. */
@@ -27,7 +29,7 @@ export interface EventColumns {
   readonly sinceEpochRestDays: Float64Array;
 }
 
-/** What the events' errors refer to: one row a site, a clock segment, a reference. */
+/** What the events' errors refer to: one row a site (or a version of one), a clock segment, a reference. */
 export interface ErrorTables {
   readonly siteDelaySigmaNs: Float64Array;
   /** Standard error of each axis. */

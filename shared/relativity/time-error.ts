@@ -29,6 +29,9 @@ function referenceVarianceNs2(t: ErrorTables, reference: number): number {
 
 const square = (x: number): number => x * x;
 
+/** Row of the delay and place that an event's site had. */
+export const versionOf = (e: EventColumns, i: number): number => (e.version ?? e.site)[i] ?? 0;
+
 /**
  * The independent terms of an event's time error, in the order in which they enter.
  *
@@ -40,7 +43,7 @@ const square = (x: number): number => x * x;
 export function errorTerms(e: EventColumns, t: ErrorTables, i: number): readonly ErrorTerm[] {
   return [
     { name: 'reading', sigmaNs: e.readingSigmaNs[i] ?? 0 },
-    { name: 'delay', sigmaNs: t.siteDelaySigmaNs[e.site[i] ?? 0] ?? 0 },
+    { name: 'delay', sigmaNs: t.siteDelaySigmaNs[versionOf(e, i)] ?? 0 },
     { name: 'clock', sigmaNs: Math.sqrt(clockVarianceNs2(e, t, i)) },
     { name: 'reference', sigmaNs: Math.sqrt(referenceVarianceNs2(t, referenceOf(e, t, i))) },
   ];
@@ -50,7 +53,7 @@ export function errorTerms(e: EventColumns, t: ErrorTables, i: number): readonly
 export function timeVarianceNs2(e: EventColumns, t: ErrorTables, i: number): number {
   return (
     square(e.readingSigmaNs[i] ?? 0) +
-    square(t.siteDelaySigmaNs[e.site[i] ?? 0] ?? 0) +
+    square(t.siteDelaySigmaNs[versionOf(e, i)] ?? 0) +
     clockVarianceNs2(e, t, i) +
     referenceVarianceNs2(t, referenceOf(e, t, i))
   );
@@ -59,7 +62,7 @@ export function timeVarianceNs2(e: EventColumns, t: ErrorTables, i: number): num
 /**
  * Variance of the time *difference* of two events: what both share cancels.
  *
- * Readings are independent. The delay cancels within a site. Within one clock segment the offset cancels and the rate acts on the time
+ * Readings are independent. The delay cancels within a site (and one version of it). Within one clock segment the offset cancels and the rate acts on the time
  * between the two readings (each less its delay). Two segments, of one clock or of two, share only a reference of the same name.
  *
  * @param e the events
@@ -70,8 +73,8 @@ export function timeVarianceNs2(e: EventColumns, t: ErrorTables, i: number): num
  */
 export function differenceVarianceNs2(e: EventColumns, t: ErrorTables, i: number, j: number): number {
   let variance = square(e.readingSigmaNs[i] ?? 0) + square(e.readingSigmaNs[j] ?? 0);
-  const siteI = e.site[i] ?? 0;
-  const siteJ = e.site[j] ?? 0;
+  const siteI = versionOf(e, i);
+  const siteJ = versionOf(e, j);
   if (siteI !== siteJ) variance += square(t.siteDelaySigmaNs[siteI] ?? 0) + square(t.siteDelaySigmaNs[siteJ] ?? 0);
   const segmentI = e.segment[i] ?? -1;
   if (segmentI >= 0 && segmentI === e.segment[j]) {
@@ -86,10 +89,10 @@ export function differenceVarianceNs2(e: EventColumns, t: ErrorTables, i: number
   return variance + (referenceVarianceNs2(t, referenceI) + referenceVarianceNs2(t, referenceJ));
 }
 
-/** Variance of the distance of two events from the errors of their sites' positions, m^2; 0 within a site. */
+/** Variance of the distance of two events from the errors of their sites' positions, m^2; 0 within a site that stands where it stood. */
 export function distanceVarianceM2(e: EventColumns, t: ErrorTables, i: number, j: number): number {
-  const siteI = e.site[i] ?? 0;
-  const siteJ = e.site[j] ?? 0;
+  const siteI = versionOf(e, i);
+  const siteJ = versionOf(e, j);
   return siteI === siteJ ? 0 : square(t.sitePositionSigmaM[siteI] ?? 0) + square(t.sitePositionSigmaM[siteJ] ?? 0);
 }
 
