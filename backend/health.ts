@@ -11,7 +11,7 @@ export function healthRoutes(db: Db): Served[] {
   const inPlace = watchPlace(db.$client);
   return [
     serve(HEALTH_ROUTES.readHealth, {
-      handle: ({ req }, { version }) => {
+      handle: ({ exchange: { requestId } }, { version, log }) => {
         if (!inPlace())
           throw unavailable('The database file was moved, replaced or deleted while the server ran. Put it back and restart the server.');
         try {
@@ -20,7 +20,7 @@ export function healthRoutes(db: Db): Served[] {
           const migrations = appliedMigrations(db.$client).length;
           return { status: 'ok' as const, version, database: 'answers' as const, migrations, deployment: { createdAt: known.createdAt } };
         } catch (fault) {
-          req.log.error({ err: fault }, 'database failed');
+          log.error({ err: fault, requestId }, 'database failed');
           throw unavailable('The database does not answer. Ask whoever runs the server to look for this id in its log.');
         }
       },

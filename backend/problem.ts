@@ -1,27 +1,15 @@
 import { type ErrorRequestHandler, type RequestHandler, type Response } from 'express';
-import { type ProblemDetails } from '#shared/contract/problem';
+import { INTERNAL_FAULT, problemAnswer, toldBy, type Told } from './api/answer';
+import { sendAnswer } from './api/express-exchange';
 import { Refusal } from './api/refusal';
 import { requestIdOf } from './api/request-id';
 
-/**
- * Sends an RFC 9457 problem; `detail` is for the person who asked, `id` stands in the log beside the request, `where` is the path of the
- * field that cannot be used.
- */
-export function sendProblem(res: Response, status: number, title: string, detail: string, where?: string): void {
-  const problem: ProblemDetails = {
-    type: 'about:blank',
-    title,
-    status,
-    detail,
-    ...(where !== undefined && { where }),
-    id: requestIdOf(res.req),
-  };
-  res.status(status).type('application/problem+json').json(problem);
-}
+/** Sends a problem (RFC 9457) as the answer to a request. */
+export const sendProblem = (res: Response, told: Told): void => sendAnswer(res, problemAnswer(told, requestIdOf(res.req)));
 
 /** The end of every way that leads nowhere. */
 export const notFound: RequestHandler = (req, res) =>
-  sendProblem(res, 404, 'Not found', `Nothing is served at ${req.method} ${req.baseUrl}${req.path}.`);
+  sendProblem(res, { status: 404, title: 'Not found', detail: `Nothing is served at ${req.method} ${req.baseUrl}${req.path}.` });
 
 /** Faults of a request are told as they are; of our own faults only the id goes out, the rest into the log. */
 export const failed: ErrorRequestHandler = (fault: unknown, req, res, next) => {
@@ -30,17 +18,16 @@ export const failed: ErrorRequestHandler = (fault: unknown, req, res, next) => {
     return;
   }
   if (fault instanceof Refusal) {
-    for (const [name, value] of Object.entries(fault.headers)) res.setHeader(name, value);
-    sendProblem(res, fault.status, fault.title, fault.message, fault.where);
+    sendProblem(res, toldBy(fault));
     return;
   }
   const status = requestFault(fault);
   if (status) {
-    sendProblem(res, status, 'Unusable request', 'The request cannot be read: check its address and its headers.');
+    sendProblem(res, { status, title: 'Unusable request', detail: 'The request cannot be read: check its address and its headers.' });
     return;
   }
   req.log.error({ err: fault }, 'request failed');
-  sendProblem(res, 500, 'Internal fault', 'The server failed to answer. Ask whoever runs it to look for this id in its log.');
+  sendProblem(res, INTERNAL_FAULT);
 };
 
 /** The 4xx status that Express and its parsers give a request that they refuse. */

@@ -1,18 +1,17 @@
-import { requestIdOf } from '../api/request-id';
 import { personOf, type Asked } from '../api/serve';
 import { type Actor } from '../audit/change';
 
 type AnyAsked = Asked<unknown, unknown, unknown>;
 
 /** The person who asks, as the one who makes a change. */
-export const actorOf = (asked: AnyAsked): Actor => ({ kind: 'person', id: personOf(asked).personId, requestId: requestIdOf(asked.req) });
+export const actorOf = (asked: AnyAsked): Actor => ({ kind: 'person', id: personOf(asked).personId, requestId: asked.exchange.requestId });
 
 /** A person whom a request has only just shown to be who they are. */
-export const personAsActor = (personId: number, { req }: AnyAsked): Actor => ({
+export const personAsActor = (personId: number, { exchange }: AnyAsked): Actor => ({
   kind: 'person',
   id: personId,
-  requestId: requestIdOf(req),
+  requestId: exchange.requestId,
 });
 
 /** The server itself, at a request of nobody that is known. */
-export const serverAsActor = ({ req }: AnyAsked): Actor => ({ kind: 'server', id: null, requestId: requestIdOf(req) });
+export const serverAsActor = ({ exchange }: AnyAsked): Actor => ({ kind: 'server', id: null, requestId: exchange.requestId });

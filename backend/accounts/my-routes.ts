@@ -85,7 +85,7 @@ export const myRoutes = (): Served[] => [
         const sessionsEnded = endSessions(tx, personId, 'signed-out', ground.nowMs());
         note({ action: 'my-sessions:ended', subjectKind: 'person', subjectId: personId, details: { sessionsEnded } });
       });
-      clearCookies(asked.res);
+      clearCookies(asked.exchange);
       return undefined;
     },
   }),

@@ -3,7 +3,6 @@ import { SESSION_ROUTES } from '#shared/contract/people-routes';
 import { people } from '#schema/schema';
 import { callerOf } from '../api/caller';
 import { Refusal } from '../api/refusal';
-import { requestIdOf } from '../api/request-id';
 import { serve, type Asked, type Served } from '../api/serve';
 import { change, type Tx } from '../audit/change';
 import { utcText, type Ground } from '../ground';
@@ -18,7 +17,7 @@ import { meOf } from './people-rows';
 import { beginSession, endSession, endSessions, IDLE_S, rotate, sessionOfRefresh } from './sessions';
 import { countAttempt, forgive } from './throttle';
 
-type Exchange = Asked<unknown, unknown, unknown>;
+type AnyAsked = Asked<unknown, unknown, unknown>;
 
 /** Signing in and out, and the links that are mailed. */
 export const sessionRoutes = (): Served[] => [
@@ -33,13 +32,11 @@ export const sessionRoutes = (): Served[] => [
 /** One answer for an account that does not exist, has no password yet or is disabled, and for a wrong password. */
 const notSignedIn = (): Refusal => new Refusal(401, 'Not signed in', 'No account has this e-mail address and password.');
 
-const addressOf = ({ req }: Exchange): string => req.ip ?? 'unknown';
-
-async function signIn(asked: Exchange & { body: { email: string; password: string } }, ground: Ground) {
+async function signIn(asked: AnyAsked & { body: { email: string; password: string } }, ground: Ground) {
   const { db, nowMs, log, passwords } = ground;
   const { email, password } = asked.body;
   const account = { kind: 'account', of: email } as const;
-  const giveBack = countAttempt(ground, account, { kind: 'address', of: addressOf(asked) });
+  const giveBack = countAttempt(ground, account, { kind: 'address', of: asked.exchange.ip });
   const known = db.select().from(people).where(eq(people.email, email)).get();
   const stored = known?.disabledAt === null ? known.passwordHash : null;
   let matches: boolean;
@@ -50,7 +47,7 @@ async function signIn(asked: Exchange & { body: { email: string; password: strin
     throw fault;
   }
   if (!matches || !known || stored === null) {
-    log.info({ event: 'session:refused', personId: known?.id ?? null, requestId: requestIdOf(asked.req) }, 'sign-in refused');
+    log.info({ event: 'session:refused', personId: known?.id ?? null, requestId: asked.exchange.requestId }, 'sign-in refused');
     throw notSignedIn();
   }
   giveBack();
@@ -62,7 +59,7 @@ async function signIn(asked: Exchange & { body: { email: string; password: strin
     const now = tx.select().from(people).where(eq(people.id, personId)).get();
     if (now?.passwordHash !== stored || now.disabledAt !== null) throw notSignedIn();
     if (stronger !== undefined) tx.update(people).set({ passwordHash: stronger }).where(eq(people.id, personId)).run();
-    const begun = beginSession(tx, personId, asked.req.get('user-agent') ?? '', nowMs());
+    const begun = beginSession(tx, personId, asked.exchange.header('user-agent') ?? '', nowMs());
     note({ action: 'session:begun', subjectKind: 'session', subjectId: begun.sessionId });
     return begun;
   });
@@ -70,14 +67,14 @@ async function signIn(asked: Exchange & { body: { email: string; password: strin
   return meOf(db, personId, nowMs());
 }
 
-function giveCookies({ res }: Exchange, ground: Ground, claimed: Claimed, refreshToken: string): void {
-  setCookie(res, ACCESS_COOKIE, writeAccess(claimed, ground), ACCESS_S);
-  setCookie(res, REFRESH_COOKIE, refreshToken, IDLE_S);
+function giveCookies({ exchange }: AnyAsked, ground: Ground, claimed: Claimed, refreshToken: string): void {
+  setCookie(exchange, ACCESS_COOKIE, writeAccess(claimed, ground), ACCESS_S);
+  setCookie(exchange, REFRESH_COOKIE, refreshToken, IDLE_S);
 }
 
-function refresh(asked: Exchange, ground: Ground) {
+function refresh(asked: AnyAsked, ground: Ground) {
   const { db, nowMs } = ground;
-  const token = cookieOf(asked.req, REFRESH_COOKIE);
+  const token = cookieOf(asked.exchange, REFRESH_COOKIE);
   const refreshed =
     token === undefined ? ({ kind: 'refused' } as const) : db.transaction((tx) => rotate(tx, token, nowMs()), { behavior: 'immediate' });
   if (refreshed.kind === 'renewed') {
@@ -89,28 +86,28 @@ function refresh(asked: Exchange, ground: Ground) {
       endSession(tx, refreshed.sessionId, 'token-used-twice', nowMs());
       note({ action: 'session:revoked', subjectKind: 'session', subjectId: refreshed.sessionId, details: { reason: 'token-used-twice' } });
     });
-  clearCookies(asked.res);
+  clearCookies(asked.exchange);
   throw new Refusal(401, 'Not signed in', 'The session has ended: sign in again.');
 }
 
-function signOut(asked: Exchange, ground: Ground): undefined {
-  const { req, res } = asked;
-  const caller = callerOf(req, ground);
-  const token = cookieOf(req, REFRESH_COOKIE);
+function signOut(asked: AnyAsked, ground: Ground): undefined {
+  const { exchange } = asked;
+  const caller = callerOf(exchange, ground);
+  const token = cookieOf(exchange, REFRESH_COOKIE);
   const sessionId = caller.kind === 'person' ? caller.sessionId : token === undefined ? undefined : sessionOfRefresh(ground.db, token);
   if (sessionId !== undefined)
     change(ground, caller.kind === 'person' ? personAsActor(caller.personId, asked) : serverAsActor(asked), (tx, note) => {
       const ended = endSession(tx, sessionId, 'signed-out', ground.nowMs());
       note({ action: 'session:ended', subjectKind: 'session', subjectId: sessionId, details: { reason: 'signed-out', ended } });
     });
-  clearCookies(res);
+  clearCookies(exchange);
   return undefined;
 }
 
 /** Answers before it looks whether there is such an account: neither the answer nor its time tells. */
-function askReset(asked: Exchange & { body: { email: string } }, ground: Ground): undefined {
+function askReset(asked: AnyAsked & { body: { email: string } }, ground: Ground): undefined {
   const { email } = asked.body;
-  countAttempt(ground, { kind: 'reset-account', of: email }, { kind: 'reset-address', of: addressOf(asked) });
+  countAttempt(ground, { kind: 'reset-account', of: email }, { kind: 'reset-address', of: asked.exchange.ip });
   const actor = serverAsActor(asked);
   const { db, log, nowMs, origin, post } = ground;
   setImmediate(() => {
@@ -136,12 +133,12 @@ const linkVoid = (): Refusal =>
 
 async function choosePassword(
   purpose: Purpose,
-  asked: Exchange & { body: { token: string; password: string } },
+  asked: AnyAsked & { body: { token: string; password: string } },
   ground: Ground,
 ): Promise<undefined> {
   const { db, nowMs, passwords } = ground;
   const { token, password } = asked.body;
-  const giveBack = countAttempt(ground, { kind: 'token-address', of: addressOf(asked) });
+  const giveBack = countAttempt(ground, { kind: 'token-address', of: asked.exchange.ip });
   const holder = holderOfMailedToken(db, purpose, token, nowMs());
   if (!holder) throw linkVoid();
   giveBack();

@@ -1,4 +1,4 @@
-import express, { type Request, type RequestHandler, type Response } from 'express';
+import { type Exchange } from './exchange';
 import { unusableRequest } from './refusal';
 
 const MOST_DEPTH = 32;
@@ -8,41 +8,23 @@ const KEYS_OF_PROTOTYPES = ['__proto__', 'constructor', 'prototype'];
 /**
  * Reads the body of a request as JSON: UTF-8, in the bounds of its route, not compressed, and nothing in it that only looks like data.
  *
- * @param req of type application/json, which was checked before
+ * @param exchange of type application/json, which was checked before
  * @param mostBytes what the route allows
  * @throws Refusal 413 above the bound; 415 for another charset or a compression; 400 for text that is not JSON, deeper than 32, of more
  * than 10,000 items, with a number that no double holds, half a character, or a key of prototypes
  */
-export async function readBody(req: Request, res: Response, mostBytes: number): Promise<unknown> {
-  const charset = /;\s*charset\s*=\s*"?([^\s;"]+)/i.exec(req.get('content-type') ?? '')?.[1];
+export async function readBody({ header, bytes }: Exchange, mostBytes: number): Promise<unknown> {
+  const charset = /;\s*charset\s*=\s*"?([^\s;"]+)/i.exec(header('content-type') ?? '')?.[1];
   if (charset !== undefined && charset.toLowerCase() !== 'utf-8') throw unusableRequest(415, 'JSON is read as UTF-8 alone.');
-  const bytes = await readBytes(req, res, mostBytes);
+  const came = await bytes(mostBytes);
   let read: unknown;
   try {
-    read = JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(bytes));
+    read = JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(came));
   } catch {
     throw unusableRequest(400, 'The body must be JSON in UTF-8; without fields it is {}.');
   }
   refuseOddities(read);
   return read;
-}
-
-function readBytes(req: Request, res: Response, limit: number): Promise<Buffer> {
-  const read: RequestHandler = express.raw({ type: () => true, limit, inflate: false });
-  return new Promise((resolve, reject) => {
-    void read(req, res, (fault?: unknown) => {
-      const body: unknown = req.body;
-      if (fault !== undefined) reject(refusalOf(fault, limit));
-      else resolve(Buffer.isBuffer(body) ? body : Buffer.alloc(0));
-    });
-  });
-}
-
-function refusalOf(fault: unknown, limit: number): Error {
-  const status = fault instanceof Error && 'status' in fault ? fault.status : undefined;
-  if (status === 413) return unusableRequest(413, `The body must have at most ${limit} bytes.`);
-  if (status === 415) return unusableRequest(415, 'The body must not be compressed.');
-  return unusableRequest(400, 'The body did not come whole.');
 }
 
 function refuseOddities(body: unknown): void {

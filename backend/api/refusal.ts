@@ -36,6 +36,12 @@ export const stale = (): Refusal =>
 
 export const conflict = (detail: string): Refusal => new Refusal(409, 'Not possible now', detail);
 
+/** A code that another thing of its kind has already. */
+export const codeTaken = (code: string, what: string): Refusal =>
+  new Refusal(409, 'Not possible now', `code is "${code}", which another ${what} has already; it must be a code of its own.`, {
+    where: 'code',
+  });
+
 const UNUSABLE = 'Unusable request';
 
 /** A field that cannot be used; `text` goes on from the field's path. */

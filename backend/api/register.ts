@@ -2,6 +2,8 @@ import { Router, type Request } from 'express';
 import { policyOf } from '#shared/contract/policies';
 import { sendProblem } from '../problem';
 import { type Ground } from '../ground';
+import { answerTo } from './answer';
+import { exchangeOf, sendAnswer } from './express-exchange';
 import { type Served } from './serve';
 
 /**
@@ -26,15 +28,16 @@ export function registerRoutes(served: readonly Served[], ground: Ground): Route
     router.all(path, async (req, res) => {
       const way = ways.find(({ route }) => route.method === methodOf(req));
       if (way) {
-        const answer = await way.answer(req, res, ground);
-        res.status(way.route.status);
-        if (answer === undefined) res.end();
-        else res.json(answer);
+        sendAnswer(res, await answerTo(way, exchangeOf(req, res), ground));
         return;
       }
       const allowed = ways.map(({ route }) => route.method).join(', ');
-      res.setHeader('Allow', allowed);
-      sendProblem(res, 405, 'Not possible this way', `It is asked for by ${allowed}.`);
+      sendProblem(res, {
+        status: 405,
+        title: 'Not possible this way',
+        detail: `It is asked for by ${allowed}.`,
+        headers: { Allow: allowed },
+      });
     });
   return router;
 }

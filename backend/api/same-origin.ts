@@ -1,4 +1,4 @@
-import { type Request } from 'express';
+import { type Exchange } from './exchange';
 import { Refusal } from './refusal';
 
 const LOCAL_HOSTS = ['localhost', '127.0.0.1', '[::1]'];
@@ -10,17 +10,17 @@ const LOCAL_HOSTS = ['localhost', '127.0.0.1', '[::1]'];
  * has no cookies that it was not given. Outside production a page of this machine counts as ours when the browser says that it is the same
  * origin: the development server passes requests on from its own port.
  *
- * @param req a request by a method that changes things
+ * @param header the headers of a request by a method that changes things
  * @param ours the server's own origin
  * @param production whether the origin must be ours to the letter
  * @throws Refusal 403 or 415
  */
-export function refuseForeign(req: Request, ours: string, production: boolean): void {
-  const site = req.get('sec-fetch-site');
-  const origin = req.get('origin');
+export function refuseForeign({ header }: Pick<Exchange, 'header'>, ours: string, production: boolean): void {
+  const site = header('sec-fetch-site');
+  const origin = header('origin');
   if ((site !== undefined && site !== 'same-origin') || (origin !== undefined && !isOurs(origin, ours, site, production)))
     throw new Refusal(403, 'Not allowed', 'A page of another site asked for this change.');
-  if (!/^application\/json\s*(?:;|$)/i.test(req.get('content-type') ?? ''))
+  if (!/^application\/json\s*(?:;|$)/i.test(header('content-type') ?? ''))
     throw new Refusal(415, 'Unusable request', 'The body must be JSON: Content-Type: application/json.');
 }
 

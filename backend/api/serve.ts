@@ -1,4 +1,3 @@
-import { type Request, type Response } from 'express';
 import type * as z from 'zod';
 import { firstProblem, pathText } from '#shared/contract/first-problem';
 import { judge, policyOf, type Policy } from '#shared/contract/policies';
@@ -6,6 +5,7 @@ import { type Place } from '#shared/contract/roles';
 import { type Route } from '#shared/contract/routes';
 import { type Ground } from '../ground';
 import { callerOf, NOBODY, type Caller, type PersonCalling } from './caller';
+import { type Exchange } from './exchange';
 import { readBody } from './read-body';
 import { absent, forbidden, signInFirst, unusable } from './refusal';
 import { refuseForeign } from './same-origin';
@@ -16,8 +16,7 @@ export interface Asked<Params, Query, Body> {
   readonly query: Query;
   readonly body: Body;
   readonly caller: Caller;
-  readonly req: Request;
-  readonly res: Response;
+  readonly exchange: Exchange;
 }
 
 /** What answers a route. */
@@ -31,7 +30,10 @@ interface Service<Params, Query, Body, Answer> {
 export interface Served {
   readonly route: Route;
   readonly hasPlace: boolean;
-  readonly answer: (req: Request, res: Response, ground: Ground) => Promise<unknown>;
+  /** The first steps, which need no body: who it is, whether they could do this at all, and whether it comes from a page of ours. */
+  readonly admit: (exchange: Exchange, ground: Ground) => Caller;
+  /** The whole of them. */
+  readonly answer: (exchange: Exchange, ground: Ground) => Promise<unknown>;
 }
 
 /**
@@ -46,19 +48,20 @@ export function serve<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
   route: Route<P, Q, B, A>,
   { placeOf, handle }: Service<z.output<P>, z.output<Q>, z.output<B>, z.input<A>>,
 ): Served {
-  const answer = async (req: Request, res: Response, ground: Ground): Promise<unknown> => {
-    const policy = policyOf(route.policy);
-    if (!policy) throw new Error(`${route.policy} has no policy`);
-    const caller = policy.who === 'anyone' ? NOBODY : callerOf(req, ground); // health must answer while the database does not
+  const admit = (exchange: Exchange, ground: Ground): Caller => {
+    const policy = policyFor(route);
+    const caller = policy.who === 'anyone' ? NOBODY : callerOf(exchange, ground); // health must answer while the database does not
     refuseStrangers(policy, caller);
-    let given: unknown = {};
-    if (route.method !== 'GET') {
-      refuseForeign(req, ground.origin, ground.production);
-      given = await readBody(req, res, route.mostBodyBytes);
-    }
-    const params = route.params.safeParse(req.params);
+    if (route.method !== 'GET') refuseForeign(exchange, ground.origin, ground.production);
+    return caller;
+  };
+  const answer = async (exchange: Exchange, ground: Ground): Promise<unknown> => {
+    const policy = policyFor(route);
+    const caller = admit(exchange, ground);
+    const given = route.method === 'GET' ? {} : await readBody(exchange, route.mostBodyBytes);
+    const params = route.params.safeParse(exchange.params);
     if (!params.success) throw absent();
-    const asked = { params: params.data, query: checked(route.query, req.query), body: checked(route.body, given), caller, req, res };
+    const asked = { params: params.data, query: checked(route.query, exchange.query), body: checked(route.body, given), caller, exchange };
     if (policy.who === 'roles' && policy.in === 'place') {
       const place = placeOf?.(asked, ground);
       if (!place) throw absent();
@@ -66,7 +69,13 @@ export function serve<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
     }
     return route.answer.parse(await handle(asked, ground));
   };
-  return { route, hasPlace: placeOf !== undefined, answer };
+  return { route, hasPlace: placeOf !== undefined, admit, answer };
+}
+
+function policyFor({ policy: name }: Route): Policy {
+  const policy = policyOf(name);
+  if (!policy) throw new Error(`${name} has no policy`);
+  return policy;
 }
 
 /** The person who asks, on a route that only they reach. */

@@ -282,6 +282,6 @@ describe('30 and 38 no answer', () => {
     const leaky = serve(route('GET', '/planted', { policy: 'health:read', answer: z.strictObject({ id: z.int() }) }), {
       handle: () => ({ id: 1, passwordHash: '$argon2id$' }),
     });
-    await expect(leaky.answer({ params: {}, query: {} } as never, {} as never, app.ground)).rejects.toThrow('passwordHash');
+    await expect(leaky.answer({ params: {}, query: {} } as never, app.ground)).rejects.toThrow('passwordHash');
   });
 });
