@@ -4,6 +4,7 @@ import { type PasswordHasher } from './accounts/password-hash';
 import { type AuditHead } from './audit/audit-head';
 import { type Db } from './db';
 import { type Letter } from './mail/letters';
+import { type CommitListener } from './writer/commit';
 
 /** What the server's parts stand on: made once at its start, handed down, never looked up. */
 export interface Ground {
@@ -22,6 +23,8 @@ export interface Ground {
   readonly signingKey: KeyObject;
   readonly passwords: PasswordHasher;
   readonly auditHead: AuditHead;
+  /** Hears, in the writer thread, of each commit that noted a change of a network or a revocation; what comes back ends it. */
+  readonly onCommitted: (listener: CommitListener) => () => void;
   /** Sends a letter in its own time; what becomes of it is in the log. */
   readonly post: (letter: Letter) => void;
   /** Whether mails stay here, in the demo's own mail server. */

@@ -11,6 +11,7 @@ import { ensureDeployment } from './deployment';
 import { type Ground } from './ground';
 import { startDemoMailServer } from './mail/demo-mail-server';
 import { postOffice } from './mail/post-office';
+import { onCommitted } from './writer/commit';
 
 const NOBODYS_BITS = 256;
 
@@ -63,6 +64,7 @@ export async function makeGround({ config, db, log, version, port, nowMs }: Sour
     signingKey: key.value,
     passwords: await passwordHasher(newSecret(NOBODYS_BITS)),
     auditHead,
+    onCommitted: (listener) => onCommitted(db, listener),
     post: office.post,
     keepsMails: demoMail !== undefined,
   };

@@ -2,9 +2,10 @@ import { eq, desc } from 'drizzle-orm';
 import { audit } from '#schema/schema';
 import { type Db } from '../db';
 import { utcText, type Ground } from '../ground';
+import { commit, type Tx } from '../writer/commit';
 import { NO_ROW_BEFORE, rowHash, type AuditRow } from './chain';
 
-export type Tx = Parameters<Parameters<Db['transaction']>[0]>[0];
+export type { Tx };
 
 /** Who makes a change, and the request that it comes with. */
 export interface Actor {
@@ -37,14 +38,11 @@ type Sources = Pick<Ground, 'db' | 'log' | 'nowMs' | 'auditHead'>;
  */
 export function change<T>(ground: Sources, actor: Actor, work: (tx: Tx, note: (note: Note) => void) => T): T {
   const rows: AuditRow[] = [];
-  const value = ground.db.transaction(
-    (tx) => {
-      const result = work(tx, (note) => rows.push(append(tx, actor, note, utcText(ground.nowMs()))));
-      if (rows.length === 0) throw new Error('a change was made without its audit entry');
-      return result;
-    },
-    { behavior: 'immediate' },
-  );
+  const value = commit(ground.db, (tx) => {
+    const result = work(tx, (note) => rows.push(append(tx, actor, note, utcText(ground.nowMs()))));
+    if (rows.length === 0) throw new Error('a change was made without its audit entry');
+    return result;
+  });
   for (const { seq, action, actorKind, actorId, subjectKind, subjectId, networkId, requestId } of rows)
     ground.log.info({ event: action, seq, actorKind, actorId, subjectKind, subjectId, networkId, requestId }, 'audited');
   keepHead(ground, rows);
