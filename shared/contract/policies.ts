@@ -9,6 +9,7 @@ export type Policy =
 
 const anyone: Policy = { who: 'anyone' };
 const signedIn: Policy = { who: 'signed-in' };
+const bySiteKey: Policy = { who: 'site-key' };
 const at = (...roles: readonly Role[]): Policy => ({ who: 'roles', roles, in: 'place' });
 const anywhere = (...roles: readonly Role[]): Policy => ({ who: 'roles', roles, in: 'anywhere' });
 
@@ -45,7 +46,11 @@ export const POLICIES = {
   'site-key:list': at('coordinator', 'operator'),
   'site-key:make': at('coordinator', 'operator'),
   'site-key:revoke': at('coordinator', 'operator'),
-  'site-key:read-own': { who: 'site-key' },
+  'site-key:read-own': bySiteKey,
+
+  'stream:hello': bySiteKey,
+  'stream:batch': bySiteKey,
+  'stream:state': bySiteKey,
 
   'audit:read': at('coordinator'),
   'kept-mail:read': at('coordinator'), // of the deployment: a kept mail may hold anyone's link
