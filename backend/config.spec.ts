@@ -10,6 +10,7 @@ describe('the configuration', () => {
     dataDir: join(root, 'data'),
     logLevel: 'info',
     production: false,
+    demo: true,
     publicOrigin: undefined,
     trustedProxies: [],
     sessionSecret: undefined,
@@ -38,6 +39,21 @@ describe('the configuration', () => {
       smtpUrl: 'smtps://mail.example',
     };
     expect(readConfig(env)).toMatchObject({ value });
+  });
+
+  it.each([
+    ['on in development', {}, true],
+    ['off in tests', { NODE_ENV: 'test' }, false],
+    ['off in production', production, false],
+    ['off where it is said to be', { DEMO: 'off' }, false],
+    ['on where it is said to be', { NODE_ENV: 'test', DEMO: 'on' }, true],
+  ])('has the demo %s', (_where, env, demo) => {
+    expect(readConfig(env)).toMatchObject({ ok: true, value: { demo } });
+  });
+
+  it('refuses the demo in production', () => {
+    const problem = { where: 'DEMO', text: 'DEMO="on" cannot be used: it must be "off" in production, which has no demo.' };
+    expect(readConfig({ ...production, DEMO: 'on' })).toMatchObject({ ok: false, problem });
   });
 
   it.each(['65536', '1.5', ' 80', '0x50', '1e3', '−1', '100000'])('refuses %j as a port', (PORT) => {

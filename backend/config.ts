@@ -93,6 +93,13 @@ const environment = z.object({
   NODE_ENV: oneOf(MODES).default('development'),
 
   /**
+   * DEMO: whether a database with nobody and nothing in it is filled with the demo: a network whose sites stream, and an account for each
+   * role, whose passwords are printed at every start. Of a database that has something of its own nothing is touched.
+   * Unit: none. Default: on in development, else off. Limit: on or off; in production off.
+   */
+  DEMO: oneOf(['on', 'off']).optional(),
+
+  /**
    * TLS: what ends TLS. The server itself speaks plain http; `proxy` declares that one in front of it speaks https with browsers.
    * Unit: none. Default: none. Limit: none or proxy; in production it must be proxy.
    */
@@ -156,6 +163,8 @@ export interface Config {
   readonly dataDir: string;
   readonly logLevel: (typeof LOG_LEVELS)[number];
   readonly production: boolean;
+  /** Whether the demo is made and streams. */
+  readonly demo: boolean;
   /** Absent for http://localhost and the port that is listened on. */
   readonly publicOrigin: string | undefined;
   readonly trustedProxies: readonly string[];
@@ -184,12 +193,14 @@ export function readConfig(env: Readonly<Record<string, string | undefined>>): O
     ([name, { is }]) => production && !(given[name] !== undefined && is(given[name])),
   );
   if (lacking) return refused(lacking[0], env, lacking[1].right);
+  if (production && data.DEMO === 'on') return refused('DEMO', env, '"off" in production, which has no demo');
   return valueOf({
     port: data.PORT,
     host: data.HOST,
     dataDir: data.DATA_DIR,
     logLevel: data.LOG_LEVEL,
     production,
+    demo: (data.DEMO ?? (data.NODE_ENV === 'development' ? 'on' : 'off')) === 'on',
     publicOrigin: data.PUBLIC_ORIGIN,
     trustedProxies: data.TRUSTED_PROXIES,
     sessionSecret: data.SESSION_SECRET,

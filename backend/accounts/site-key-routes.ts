@@ -1,4 +1,4 @@
-import { and, desc, eq, isNull, lt } from 'drizzle-orm';
+import { and, desc, eq, lt } from 'drizzle-orm';
 import { SITE_KEY_ROUTES } from '#shared/contract/people-routes';
 import { USUAL_ITEMS } from '#shared/contract/page';
 import { networks, siteKeys, sites } from '#schema/schema';
@@ -8,19 +8,8 @@ import { personOf, serve, type Served } from '../api/serve';
 import { change } from '../audit/change';
 import { utcText } from '../ground';
 import { actorOf } from './actor';
+import { makeSiteKey, SITE_KEY_COLUMNS } from './make-site-key';
 import { placeOfSite } from './place-of-site';
-import { newSiteKey } from './site-key-use';
-
-const MOST_LIVE_KEYS = 20;
-
-const COLUMNS = {
-  id: siteKeys.id,
-  label: siteKeys.label,
-  prefix: siteKeys.prefix,
-  createdAt: siteKeys.createdAt,
-  lastUsedAt: siteKeys.lastUsedAt,
-  revokedAt: siteKeys.revokedAt,
-};
 
 /** The keys by which sites send their triggers. */
 export const siteKeyRoutes = (): Served[] => [
@@ -28,7 +17,7 @@ export const siteKeyRoutes = (): Served[] => [
     placeOf: ({ params: { siteId } }, { db }) => placeOfSite(db, siteId),
     handle: ({ params: { siteId }, query: { cursor, limit = USUAL_ITEMS } }, { db }) => {
       const found = db
-        .select(COLUMNS)
+        .select(SITE_KEY_COLUMNS)
         .from(siteKeys)
         .where(and(eq(siteKeys.siteId, siteId), cursor === undefined ? undefined : lt(siteKeys.id, cursor)))
         .orderBy(desc(siteKeys.id))
@@ -41,32 +30,10 @@ export const siteKeyRoutes = (): Served[] => [
     placeOf: ({ params: { siteId } }, { db }) => placeOfSite(db, siteId),
     handle: (asked, ground) => {
       const { siteId } = asked.params;
-      return change(ground, actorOf(asked), (tx, note) => {
-        const { networkId } = tx.select({ networkId: sites.networkId }).from(sites).where(eq(sites.id, siteId)).get() ?? {
-          networkId: null,
-        };
-        const live = tx
-          .select({ id: siteKeys.id })
-          .from(siteKeys)
-          .where(and(eq(siteKeys.siteId, siteId), isNull(siteKeys.revokedAt)))
-          .all();
-        if (live.length >= MOST_LIVE_KEYS) throw conflict(`The site has ${MOST_LIVE_KEYS} keys: revoke one first.`);
-        const { key, prefix, hash } = newSiteKey();
-        const made = tx
-          .insert(siteKeys)
-          .values({
-            siteId,
-            label: asked.body.label,
-            prefix,
-            hash,
-            createdAt: utcText(ground.nowMs()),
-            createdBy: personOf(asked).personId,
-          })
-          .returning(COLUMNS)
-          .get();
-        note({ action: 'site-key:made', subjectKind: 'site', subjectId: siteId, networkId, details: { keyId: made.id, prefix } });
-        return { ...made, key };
-      });
+      const createdBy = personOf(asked).personId;
+      return change(ground, actorOf(asked), (tx, note) =>
+        makeSiteKey(tx, note, { siteId, label: asked.body.label, createdBy }, ground.nowMs()),
+      );
     },
   }),
   serve(SITE_KEY_ROUTES.revokeSiteKey, {
@@ -86,7 +53,7 @@ export const siteKeyRoutes = (): Served[] => [
           .update(siteKeys)
           .set({ revokedAt: utcText(ground.nowMs()), revokedBy: personOf(asked).personId })
           .where(eq(siteKeys.id, keyId))
-          .returning(COLUMNS)
+          .returning(SITE_KEY_COLUMNS)
           .get();
         const { networkId, prefix } = known;
         note({ action: 'site-key:revoked', subjectKind: 'site', subjectId: siteId, networkId, details: { keyId, prefix } });

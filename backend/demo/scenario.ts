@@ -45,9 +45,16 @@ export const NAMES: Readonly<Record<string, string>> = {
   'kittsun-fountain': 'Fountain of Kittsun Lake',
 };
 
+const LIGHT_RULE: NetworkFile['rule'] = {
+  code: 'light',
+  minimum_fold: 2,
+  sigmas: 3,
+  window: { kind: 'light-time', speed_c: 1, margin_ns: 0 },
+};
+
 /** The rules of the network; the first is the network file's. */
 export const RULES: readonly DemoRule[] = [
-  { code: 'light', name: 'Within light-time', minimum_fold: 2, sigmas: 3, window: { kind: 'light-time', speed_c: 1, margin_ns: 0 } },
+  { ...LIGHT_RULE, name: 'Within light-time' },
   {
     code: 'neighbours',
     name: 'Neighbours within a millisecond',
@@ -215,7 +222,6 @@ const CLOCKS: readonly { readonly code: string; readonly reference: string; read
 export function demoNetworkFile(firstTaiS: number): NetworkFile {
   const write = createTaiWriter(0);
   const time = (days: number): string => `${write({ taiS: firstTaiS + Math.round(days * S_PER_DAY), ps: 0 })} TAI`;
-  const [{ name: _name, ...rule }] = RULES as [DemoRule];
   return {
     network: 'Marram Watch',
     run: { name: 'First season', from: time(-RUN_DAYS) },
@@ -256,6 +262,6 @@ export function demoNetworkFile(firstTaiS: number): NetworkFile {
         velocity: { rapidity: 0.5, toward: { ra_deg: 62, dec_deg: -31 } },
       },
     ],
-    rule,
+    rule: LIGHT_RULE,
   };
 }
