@@ -156,7 +156,7 @@ function loadOrientation(path: string | undefined, table: LeapSecondTable): Load
 }
 
 /** TAI - UTC at an instant; before 1972 the first value, since no list says another. */
-function taiMinusUtcAt(table: LeapSecondTable, { taiS }: Instant): number {
+export function taiMinusUtcAt(table: LeapSecondTable, { taiS }: Instant): number {
   const utc = utcDayAt(table, taiS);
   return (utc && taiMinusUtcOnDay(table, utc.day)) ?? table.steps[0]?.taiMinusUtcS ?? 0;
 }

@@ -79,7 +79,8 @@ const toward = record({
 
 const speed = (unit: string) => notNegative(unit).optional();
 
-const velocity = record({
+/** A frame's velocity in its parent, in the words and units in which a person states it. */
+export const statedVelocity = record({
   beta: triple('a list of three numbers in c', 'a number in c').optional(),
   speed_c: speed('c'),
   speed_km_s: speed('km/s'),
@@ -99,7 +100,7 @@ const frame = record({
   name: text('a text').optional(),
   parent: code().optional(),
   kind: oneOf('barycentric').optional(),
-  velocity: velocity.optional(),
+  velocity: statedVelocity.optional(),
   at: oneOf('event', 'origin').optional(),
 }).refine((value) => (value.kind === undefined) !== (value.velocity === undefined), {
   error: 'with "velocity", or of "kind" "barycentric", and not both',
@@ -145,6 +146,8 @@ export const networkFileSchema = record({
     'selections',
   ).optional(),
 });
+
+export type StatedVelocity = z.infer<typeof statedVelocity>;
 
 /** The network file, in its own names and units. */
 export type NetworkFile = z.infer<typeof networkFileSchema>;

@@ -1,20 +1,23 @@
-import { type NetworkFile } from './network-file';
+import { type NetworkFile, type StatedVelocity } from './network-file';
 import { type Outcome, problemOf, valueOf } from '../outcome';
 import { unitFromAngles } from '../relativity/direction';
 import { type FrameDefinition, type FrameMotion, GEOCENTRIC_CODE } from '../relativity/frame-definition';
 import { type Speed, speedFromC, speedFromKmS, speedFromRapidity } from '../relativity/speed';
 import { velocityFromBeta, velocityToward } from '../relativity/velocity';
 
-type FileFrame = NonNullable<NetworkFile['frames']>[number];
-type FileVelocity = NonNullable<FileFrame['velocity']>;
-
-function speedOf(velocity: FileVelocity, path: string): Outcome<Speed> {
+function speedOf(velocity: StatedVelocity, path: string): Outcome<Speed> {
   if (velocity.speed_c !== undefined) return speedFromC(velocity.speed_c, `${path}.speed_c`);
   if (velocity.speed_km_s !== undefined) return speedFromKmS(velocity.speed_km_s, `${path}.speed_km_s`);
   return speedFromRapidity(velocity.rapidity ?? 0, `${path}.rapidity`);
 }
 
-function motionOf(velocity: FileVelocity, path: string): Outcome<FrameMotion> {
+/**
+ * The motion that a stated velocity means.
+ *
+ * @param path of the velocity, for the problem
+ * @returns the motion; or the problem `frame-speed` of a speed of c or more
+ */
+export function motionOf(velocity: StatedVelocity, path: string): Outcome<FrameMotion> {
   if (velocity.beta) {
     const beta = velocityFromBeta(velocity.beta, `${path}.beta`);
     return beta.ok ? valueOf({ kind: 'velocity', velocity: beta.value }) : beta;
@@ -34,7 +37,7 @@ function motionOf(velocity: FileVelocity, path: string): Outcome<FrameMotion> {
  *
  * @returns definitions in the order of the file; or the first problem: a speed of c or more, or a parent that a kind cannot have
  */
-export function frameDefinitions(file: NetworkFile): Outcome<readonly FrameDefinition[]> {
+export function frameDefinitions(file: Pick<NetworkFile, 'frames'>): Outcome<readonly FrameDefinition[]> {
   const definitions: FrameDefinition[] = [];
   for (const [at, frame] of (file.frames ?? []).entries()) {
     const motion = frame.velocity ? motionOf(frame.velocity, `frames[${at}].velocity`) : valueOf<FrameMotion>({ kind: 'barycentric' });
