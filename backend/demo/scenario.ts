@@ -25,9 +25,6 @@ export interface DemoEmitter {
   readonly toleranceNs: number;
 }
 
-/** The frame that moves as another sees us move: opposite to it. */
-export const OPPOSITE_FRAME = { code: 'astern', name: 'Against the courier', of: 'courier' } as const;
-
 /** Frames whose orders stand in the tables, from the first on. */
 export const PINNED_FRAMES = ['bary', 'cmb', 'courier'] as const;
 
@@ -254,6 +251,7 @@ export function demoNetworkFile(firstTaiS: number): NetworkFile {
         velocity: { speed_km_s: 369.82, toward: { ra_deg: 347.942, dec_deg: 6.944 } },
       },
       { code: 'courier', name: 'A courier from Tarrick to Ombra', velocity: { speed_c: 0.6, toward: { baseline: ['TRK', 'OMB'] } } },
+      { code: 'return', name: 'The courier on its way back', velocity: { speed_c: 0.6, toward: { baseline: ['OMB', 'TRK'] } } },
       { code: 'drift', name: 'A drift through the background', parent: 'cmb', velocity: { beta: [0.1, -0.04, 0.02] } },
       {
         code: 'skiff',
