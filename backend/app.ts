@@ -7,6 +7,7 @@ import { myRoutes } from './accounts/my-routes';
 import { peopleRoutes } from './accounts/people-routes';
 import { sessionRoutes } from './accounts/session-routes';
 import { siteKeyRoutes } from './accounts/site-key-routes';
+import { handOverTo } from './api/hand-over';
 import { registerRoutes } from './api/register';
 import { type Served } from './api/serve';
 import { auditRoutes } from './audit/trail';
@@ -16,6 +17,7 @@ import { keptMailRoutes } from './mail/kept-mails';
 import { pageRoutes } from './pages';
 import { failed, notFound } from './problem';
 import { securityHeaders } from './security';
+import { type Writer } from './writer/questions';
 
 /** Every route of the API: what is not here is not served. */
 export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>): Served[] => [
@@ -31,10 +33,11 @@ export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>)
 /**
  * The whole of HTTP: headers, the API under /api, the front end, and a problem for whatever is neither.
  *
- * @param ground what the API stands on
+ * @param ground what the part of the API stands on that only reads
  * @param frontend folder of the built front end
+ * @param writer who answers the rest
  */
-export function makeApp(ground: Ground, frontend: string): Express {
+export function makeApp(ground: Ground, frontend: string, writer: Pick<Writer, 'ask'>): Express {
   const { log, production, trustedProxies } = ground;
   const app = express();
   app.set('trust proxy', trustedProxies.length > 0 ? trustedProxies : false); // whose X-Forwarded-For is read
@@ -49,7 +52,7 @@ export function makeApp(ground: Ground, frontend: string): Express {
       res.setHeader('Cache-Control', 'no-store');
       next();
     },
-    registerRoutes(allRoutes(ground), ground),
+    registerRoutes(allRoutes(ground), ground, handOverTo(writer)),
     notFound,
   );
   app.use(pageRoutes(frontend));

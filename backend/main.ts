@@ -4,11 +4,15 @@ import { pino } from 'pino';
 import { makeApp } from './app';
 import { readConfig, type Config } from './config';
 import { type DataLock } from './data-lock';
-import { closeDb, holdDataDir, openDb, UnusableDatabase, type Db } from './db';
-import { makeGround, type Standing } from './make-ground';
+import { holdDataDir, openReading, UnusableDatabase } from './db';
+import { faultText } from './command/fault-text';
+import { type Ground } from './ground';
+import { makeReadingGround } from './make-reading-ground';
 import { frontendFolder } from './paths';
 import { serverLog } from './server-log';
 import { VERSION } from './version';
+import { type Writer } from './writer/questions';
+import { startWriterThread } from './writer/writer-thread';
 
 const HEADERS_TIMEOUT_MS = 10_000;
 const REQUEST_TIMEOUT_MS = 30_000;
@@ -16,6 +20,7 @@ const LOOK_FOR_LATE_MS = 1_000;
 const FINISH_MS = 3_000; // what requests in flight may take once the server is told to end
 const END_MS = 4_500; // by when it has ended whatever happens; whoever started it may count on 5 s
 const UNUSABLE = 2;
+const FAILED = 1;
 
 /** Ends the process for what its user can mend: one line, and a status of its own. */
 function refuse(text: string): never {
@@ -29,8 +34,8 @@ const config: Config = read.ok ? read.value : refuse(read.problem.text);
 const log = serverLog(config.logLevel, pino.destination({ dest: 2, sync: true }));
 
 let lock: DataLock | undefined;
-let db: Db | undefined;
-let standing: Standing | undefined;
+let writer: Writer | undefined;
+let ground: Ground | undefined;
 // The port is taken before the database is touched: another server that holds it may be using the same one.
 const server = createServer({
   headersTimeout: HEADERS_TIMEOUT_MS,
@@ -38,18 +43,33 @@ const server = createServer({
   connectionsCheckingInterval: LOOK_FOR_LATE_MS,
 });
 server.on('error', (fault) => refuse(listenFault(fault)));
-server.listen(config.port, config.host, () => void begin());
+server.listen(config.port, config.host, () => void begin().catch(fail));
 
 async function begin(): Promise<void> {
   lock = orRefuse(() => holdDataDir(config.dataDir));
-  db = orRefuse(() => openDb(config.dataDir));
   const { port } = server.address() as AddressInfo;
-  const made = await makeGround({ config, db, log, version: VERSION, port, nowMs: Date.now });
-  standing = made.ok ? made.value : refuse(made.problem.text);
-  server.on('request', makeApp(standing.ground, frontendFolder));
+  const started = await startWriterThread({ config, version: VERSION, port }, breakDown);
+  if (!started.ok) refuse(started.problem.text);
+  writer = started.value.writer;
+  const db = openReading(config.dataDir); // only now: the writer brings the tables up to date
+  ground = makeReadingGround({ config, db, log, version: VERSION, port, nowMs: Date.now }, started.value.facts, writer);
+  server.on('request', makeApp(ground, frontendFolder, writer));
   process.stdout.write(`Skewline is at ${urlOf(server)}\n`);
 }
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, end);
+
+/** Ends the process for what nobody foresaw at the start: one line, and the rest in the log for whoever asks for it. */
+function fail(fault: unknown): never {
+  log.debug({ err: fault }, 'the server did not start');
+  process.stderr.write(`skewline: ${faultText(fault)}\n`);
+  process.exit(FAILED);
+}
+
+/** Without its writer the server must not go on: what was asked of it has no answer, and whoever asks again finds the truth. */
+function breakDown(fault: unknown): never {
+  log.fatal({ err: fault }, 'the writer broke down');
+  process.exit(FAILED);
+}
 
 function orRefuse<T>(open: () => T): T {
   try {
@@ -79,15 +99,17 @@ function end(): void {
   ending = true;
   setTimeout(() => {
     log.error('the server did not end in time');
-    process.exit(1);
+    process.exit(FAILED);
   }, END_MS).unref();
   setTimeout(() => server.closeAllConnections(), FINISH_MS).unref();
   server.close(() => void close());
 }
 
 async function close(): Promise<void> {
-  await standing?.leave();
-  if (db) closeDb(db);
+  // The readers first: the last to close, which must be the writer, takes the write-ahead log away.
+  await ground?.searcher.close();
+  ground?.db.$client.close();
+  await writer?.close();
   lock?.release();
   process.exit(0);
 }

@@ -3,6 +3,7 @@ import { problemOf, valueOf, type Outcome } from '#shared/outcome';
 import { passwordHasher } from './accounts/password-hash';
 import { newSecret } from './accounts/secret-token';
 import { signingKey } from './accounts/signing-key';
+import { keepKeyUse } from './accounts/site-key-use';
 import { auditHeadIn } from './audit/audit-head';
 import { holds } from './audit/change';
 import { type Config } from './config';
@@ -11,6 +12,7 @@ import { ensureDeployment } from './deployment';
 import { type Ground } from './ground';
 import { startDemoMailServer } from './mail/demo-mail-server';
 import { postOffice } from './mail/post-office';
+import { makeSearcher } from './search/searcher';
 import { onCommitted } from './writer/commit';
 
 const NOBODYS_BITS = 256;
@@ -37,7 +39,7 @@ export const originOf = ({ publicOrigin }: Pick<Config, 'publicOrigin'>, port: n
   publicOrigin ?? `http://localhost:${port}`;
 
 /**
- * Makes what the server stands on: the key of sessions, the hasher, the way to the mail server (the demo's own where none is configured).
+ * Makes what the writer stands on: the key of sessions, the hasher, the way to the mail server (the demo's own where none is configured).
  *
  * @returns the ground, or the problem of a secret that cannot be used
  */
@@ -52,6 +54,7 @@ export async function makeGround({ config, db, log, version, port, nowMs }: Sour
   const origin = originOf(config, port);
   const from = config.mailFrom ?? `Skewline <skewline@${new URL(origin).hostname}>`;
   const office = postOffice(config.smtpUrl ?? demoMail?.smtpUrl ?? '', from, log);
+  const searcher = makeSearcher(db.$client.name);
   const ground: Ground = {
     db,
     log,
@@ -62,13 +65,16 @@ export async function makeGround({ config, db, log, version, port, nowMs }: Sour
     origin,
     trustedProxies: config.trustedProxies,
     signingKey: key.value,
+    noteKeyUse: (keyId) => keepKeyUse({ db, nowMs }, keyId),
     passwords: await passwordHasher(newSecret(NOBODYS_BITS)),
     auditHead,
     onCommitted: (listener) => onCommitted(db, listener),
+    searcher,
     post: office.post,
     keepsMails: demoMail !== undefined,
   };
   const leave = async (): Promise<void> => {
+    await searcher.close();
     await office.close();
     await demoMail?.close();
   };

@@ -18,3 +18,6 @@ export const migrationsFolder = join(root, 'schema', 'migrations');
 
 /** The built front end: index.html and what it loads. */
 export const frontendFolder = join(root, 'dist', 'frontend', 'browser');
+
+/** A built worker thread by its name: from the sources, as tests run them, it is the built one too. */
+export const workerFile = (name: string): string => join(root, 'dist', 'backend', 'workers', `${name}.worker.js`);

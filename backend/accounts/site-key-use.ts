@@ -26,7 +26,10 @@ export function newSiteKey(): { readonly key: string; readonly prefix: string; r
  *
  * @returns undefined when it is no key, an unknown one, or one that was revoked
  */
-export function useSiteKey(authorization: string, { db, nowMs }: Pick<Ground, 'db' | 'nowMs'>): SiteKeyHolder | undefined {
+export function useSiteKey(
+  authorization: string,
+  { db, nowMs, noteKeyUse }: Pick<Ground, 'db' | 'nowMs' | 'noteKeyUse'>,
+): SiteKeyHolder | undefined {
   const key = KEY.exec(authorization)?.[1];
   if (key === undefined) return undefined;
   const found = db
@@ -37,11 +40,14 @@ export function useSiteKey(authorization: string, { db, nowMs }: Pick<Ground, 'd
     .get();
   if (!found) return undefined;
   const { lastUsedAt, ...holder } = found;
-  const ms = nowMs();
-  if (lastUsedAt === null || lastUsedAt < utcText(ms - LAST_USED_EXACT_MS))
-    db.update(siteKeys)
-      .set({ lastUsedAt: utcText(ms) })
-      .where(eq(siteKeys.id, holder.keyId))
-      .run();
+  if (lastUsedAt === null || lastUsedAt < utcText(nowMs() - LAST_USED_EXACT_MS)) noteKeyUse(holder.keyId);
   return holder;
+}
+
+/** Writes down that a key was used now. */
+export function keepKeyUse({ db, nowMs }: Pick<Ground, 'db' | 'nowMs'>, keyId: number): undefined {
+  db.update(siteKeys)
+    .set({ lastUsedAt: utcText(nowMs()) })
+    .where(eq(siteKeys.id, keyId))
+    .run();
 }

@@ -1,5 +1,6 @@
 import { type ProblemDetails } from '#shared/contract/problem';
 import { type Ground } from '../ground';
+import { isLostWrite } from '../writer/lost-write';
 import { type Exchange, type Header } from './exchange';
 import { Refusal } from './refusal';
 import { type Served } from './serve';
@@ -39,7 +40,11 @@ export const INTERNAL_FAULT: Told = {
   detail: 'The server failed to answer. Ask whoever runs it to look for this id in its log.',
 };
 
-/** Answers an exchange by its route: what the handler gives, the refusal that it throws, or a fault of ours, told by its id alone. */
+/**
+ * Answers an exchange by its route: what the handler gives, the refusal that it throws, or a fault of ours, told by its id alone.
+ *
+ * @throws a lost write, which no answer may hide
+ */
 export async function answerTo(served: Served, exchange: Exchange, ground: Ground): Promise<Answer> {
   const { reply, requestId } = exchange;
   const withHeaders = (answer: Answer): Answer => ({ ...answer, headers: [...reply.headers, ...answer.headers] });
@@ -50,6 +55,7 @@ export async function answerTo(served: Served, exchange: Exchange, ground: Groun
     return withHeaders({ status, headers: [], content: { type: 'json', text: JSON.stringify(answer) } });
   } catch (fault) {
     if (fault instanceof Refusal) return withHeaders(problemAnswer(toldBy(fault), requestId));
+    if (isLostWrite(fault)) throw fault;
     ground.log.error({ err: fault, requestId }, 'request failed');
     return problemAnswer(INTERNAL_FAULT, requestId);
   }

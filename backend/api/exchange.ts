@@ -8,6 +8,8 @@ export interface Exchange {
   readonly path: string;
   readonly params: Readonly<Record<string, unknown>>;
   readonly query: Readonly<Record<string, unknown>>;
+  /** By their names in lower case. */
+  readonly headers: Readonly<Record<string, string>>;
   /** The value of a request's header, by its name in lower case. */
   readonly header: (name: string) => string | undefined;
   /** The address of who asks, as the socket or a trusted proxy gives it. */
@@ -29,6 +31,12 @@ export interface Reply {
   readonly headers: readonly Header[];
   readonly add: (...header: Header) => void;
 }
+
+/** Looks a header up. */
+export const headerIn =
+  (headers: Exchange['headers']): Exchange['header'] =>
+  (name) =>
+    Object.hasOwn(headers, name) ? headers[name] : undefined;
 
 /** A reply without headers yet. */
 export function newReply(): Reply {

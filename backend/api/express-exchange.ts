@@ -1,23 +1,29 @@
 import express, { type Request, type RequestHandler, type Response } from 'express';
 import { type Answer } from './answer';
-import { newReply, type Exchange } from './exchange';
+import { headerIn, newReply, type Exchange } from './exchange';
 import { unusableRequest } from './refusal';
 import { requestIdOf } from './request-id';
 
 /** The exchange that an Express request begins. */
 export function exchangeOf(req: Request, res: Response): Exchange {
+  const headers = headersOf(req);
   return {
     method: req.method,
     path: req.path,
     params: req.params,
     query: req.query,
-    header: (name) => req.get(name),
+    headers,
+    header: headerIn(headers),
     ip: req.ip ?? 'unknown',
     requestId: requestIdOf(req),
     bytes: (most) => readBytes(req, res, most),
     reply: newReply(),
   };
 }
+
+/** Node joins what comes several times, but for Set-Cookie, which no request has. */
+const headersOf = ({ headers }: Request): Record<string, string> =>
+  Object.fromEntries(Object.entries(headers).filter((header): header is [string, string] => typeof header[1] === 'string'));
 
 /** Sends an answer by an Express response. */
 export function sendAnswer(res: Response, { status, headers, content }: Answer): void {

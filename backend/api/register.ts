@@ -4,17 +4,19 @@ import { sendProblem } from '../problem';
 import { type Ground } from '../ground';
 import { answerTo } from './answer';
 import { exchangeOf, sendAnswer } from './express-exchange';
+import { type HandOver } from './hand-over';
 import { type Served } from './serve';
 
 /**
  * The one way in which a route gets served.
  *
  * @param served routes with what answers them
- * @param ground what the handlers stand on
+ * @param ground what the handlers stand on that only read
+ * @param handOver to where those are answered that change something
  * @throws when a route has no policy in the table, or is one of a place without saying where, or the same method and path come twice: the
  * server does not start
  */
-export function registerRoutes(served: readonly Served[], ground: Ground): Router {
+export function registerRoutes(served: readonly Served[], ground: Ground, handOver: HandOver): Router {
   const router = Router({ caseSensitive: true, strict: true });
   const paths = new Map<string, Served[]>();
   for (const one of served) {
@@ -28,7 +30,9 @@ export function registerRoutes(served: readonly Served[], ground: Ground): Route
     router.all(path, async (req, res) => {
       const way = ways.find(({ route }) => route.method === methodOf(req));
       if (way) {
-        sendAnswer(res, await answerTo(way, exchangeOf(req, res), ground));
+        const exchange = exchangeOf(req, res);
+        const answering = way.route.method === 'GET' ? answerTo(way, exchange, ground) : handOver(way, exchange, ground);
+        sendAnswer(res, await answering);
         return;
       }
       const allowed = ways.map(({ route }) => route.method).join(', ');

@@ -7,15 +7,15 @@ import { inviteFirstCoordinator } from '../accounts/first-coordinator';
 import { Refusal } from '../api/refusal';
 import { auditHeadIn } from '../audit/audit-head';
 import { readConfig } from '../config';
-import { closeDb, openDb, UnusableDatabase } from '../db';
+import { openForCommand, UnusableDatabase } from '../db';
 import { originOf } from '../make-ground';
 import { UsageProblem } from './usage-problem';
 
 const given = record({ email: email(), name: personName() });
 
 /**
- * Lets the first coordinator of a deployment in: prints the link at which they choose a password, good for 72 hours and once. The server may
- * run meanwhile.
+ * Lets the first coordinator of a deployment in: prints the link at which they choose a password, good for 72 hours and once. A server may
+ * run meanwhile: the command then only adds rows, in its turn.
  *
  * @param person as typed
  * @param env the environment's variables, which the server reads too
@@ -32,7 +32,7 @@ export function addUser(
   const { data, error } = given.safeParse(person);
   if (!data) throw new UsageProblem(sentence(error, person));
   const { dataDir, port } = config.value;
-  const db = openOrRefuse(dataDir);
+  const { db, close } = openOrRefuse(dataDir);
   try {
     const ground = {
       db,
@@ -47,7 +47,7 @@ export function addUser(
   } catch (fault) {
     throw fault instanceof Refusal ? new UsageProblem(fault.message) : fault;
   } finally {
-    closeDb(db);
+    close();
   }
 }
 
@@ -58,7 +58,7 @@ function sentence(error: z.core.$ZodError, person: unknown): string {
 
 function openOrRefuse(dataDir: string) {
   try {
-    return openDb(dataDir);
+    return openForCommand(dataDir);
   } catch (fault) {
     throw fault instanceof UnusableDatabase ? new UsageProblem(fault.message) : fault;
   }

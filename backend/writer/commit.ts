@@ -1,5 +1,6 @@
 import { type Db } from '../db';
 import { type ChangeKind } from '../live/note-change';
+import { isLostWrite } from './lost-write';
 
 export type Tx = Parameters<Parameters<Db['transaction']>[0]>[0];
 
@@ -41,30 +42,40 @@ const listenersOf = new WeakMap<Db, Set<CommitListener>>();
  * way to a transaction that notes a change or a revocation.
  *
  * @param db the writing connection
- * @param work synchronous; what it throws undoes the whole, and nobody is told
+ * @param work synchronous; what it throws undoes the whole, and nobody is told; a lost write ends the process, whoever catches it
  * @returns what the work returns
  */
 export function commit<T>(db: Db, work: (tx: Tx) => T): T {
   const noted: Noted = { changes: [], revoked: [] };
-  const value = db.transaction(
-    (tx) => {
-      notedBy.set(tx, noted);
-      return work(tx);
-    },
-    { behavior: 'immediate' },
-  );
+  const value = inTransaction(db, (tx) => {
+    notedBy.set(tx, noted);
+    return work(tx);
+  });
   if (noted.changes.length > 0 || noted.revoked.length > 0) for (const listener of listenersOf.get(db) ?? []) tell(listener, noted);
   return value;
 }
+
+function inTransaction<T>(db: Db, work: (tx: Tx) => T): T {
+  try {
+    return db.transaction(work, { behavior: 'immediate' });
+  } catch (fault) {
+    if (isLostWrite(fault)) endBy(fault);
+    throw fault;
+  }
+}
+
+/** Thrown where nothing catches it. */
+const endBy = (fault: unknown): void =>
+  void setImmediate(() => {
+    throw fault;
+  });
 
 /** What is committed stays so: a listener that fails ends the process, since what it keeps would no longer fit the database. */
 function tell(listener: CommitListener, noted: Noted): void {
   try {
     listener(noted);
   } catch (fault) {
-    setImmediate(() => {
-      throw fault;
-    });
+    endBy(fault);
   }
 }
 

@@ -45,6 +45,8 @@ afterAll(async () => {
   await app.close();
 });
 
+const handOver = () => Promise.reject(new Error('nothing is asked here'));
+
 describe('22 deny by default', () => {
   it('serves every route that the contract declares, and no other', () => {
     const served = allRoutes(app.ground).map(({ route: { method, path } }) => `${method} ${path}`);
@@ -54,21 +56,21 @@ describe('22 deny by default', () => {
   it('a route whose policy has no line in the table stops the start', () => {
     for (const policy of ['nothing:read', 'toString', '__proto__', '']) {
       const planted = serve(route('GET', '/planted', { policy: policy as PolicyName }), { handle: () => undefined });
-      expect(() => registerRoutes([planted], app.ground)).toThrow('GET /api/planted has no policy');
+      expect(() => registerRoutes([planted], app.ground, handOver)).toThrow('GET /api/planted has no policy');
     }
   });
 
   it('a route of a place that does not say where stops the start, and so does one that says where for nothing', () => {
     const placeless = serve(route('GET', '/planted', { policy: 'site-key:list' }), { handle: () => undefined });
-    expect(() => registerRoutes([placeless], app.ground)).toThrow('does not say where');
+    expect(() => registerRoutes([placeless], app.ground, handOver)).toThrow('does not say where');
     const placed = serve(route('GET', '/planted', { policy: 'me:read' }), { handle: () => undefined, placeOf: () => DEPLOYMENT });
-    expect(() => registerRoutes([placed], app.ground)).toThrow('says where');
+    expect(() => registerRoutes([placed], app.ground, handOver)).toThrow('says where');
   });
 
   it('a route that is served twice stops the start', () => {
     const twice = [1, 2].map(() => serve(route('GET', '/planted', { policy: 'me:read' }), { handle: () => undefined }));
-    expect(() => registerRoutes(twice, app.ground)).toThrow('served twice');
-    expect(registerRoutes(twice.slice(1), app.ground)).toBeInstanceOf(Router);
+    expect(() => registerRoutes(twice, app.ground, handOver)).toThrow('served twice');
+    expect(registerRoutes(twice.slice(1), app.ground, handOver)).toBeInstanceOf(Router);
   });
 
   it('each line of the table is the policy of something', () => {

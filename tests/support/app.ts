@@ -4,17 +4,21 @@ import { mkdirSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { makeApp } from '../../backend/app';
 import { type Config, readConfig } from '../../backend/config';
-import { closeDb, openDb } from '../../backend/db';
+import { openReading } from '../../backend/db';
 import { type Ground } from '../../backend/ground';
-import { makeGround } from '../../backend/make-ground';
+import { makeReadingGround } from '../../backend/make-reading-ground';
 import { serverLog } from '../../backend/server-log';
+import { type Writer } from '../../backend/writer/questions';
+import { writerInPlace } from '../../backend/writer/writer-in-place';
 import { newFolder } from './folder';
 
 /** The application over a real socket, with a real database file and a real mail server, and a clock that can be put forward. */
 export interface RunningApp {
   readonly url: string;
   readonly dataDir: string;
+  /** The writer's. */
   readonly ground: Ground;
+  readonly writer: Writer;
   /** The lines of its log so far. */
   readonly log: Record<string, unknown>[];
   /** The same, as they were written. */
@@ -23,7 +27,7 @@ export interface RunningApp {
   readonly close: () => Promise<void>;
 }
 
-/** Starts the application as `main` does, in this process. */
+/** Starts the application as `main` does, in this process and thread. */
 export async function startApp(changed: Partial<Config> = {}): Promise<RunningApp> {
   const dataDir = newFolder('app');
   const read = readConfig({ DATA_DIR: dataDir, NODE_ENV: 'test' });
@@ -32,18 +36,21 @@ export async function startApp(changed: Partial<Config> = {}): Promise<RunningAp
   const lines: string[] = [];
   const log = serverLog('debug', { write: (line: string) => void lines.push(line) });
   let aheadMs = 0;
-  const db = openDb(dataDir);
   const server = createServer();
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
   const { port } = server.address() as AddressInfo;
-  const made = await makeGround({ config, db, log, version: '0.0.0', port, nowMs: () => Date.now() + aheadMs });
-  if (!made.ok) throw new Error(made.problem.text);
-  const { ground, leave } = made.value;
-  server.on('request', makeApp(ground, pageFolder(dataDir)));
+  const sources = { config, log, version: '0.0.0', port, nowMs: () => Date.now() + aheadMs };
+  const begun = await writerInPlace(sources);
+  if (!begun.ok) throw new Error(begun.problem.text);
+  const { ground, writer } = begun.value;
+  const db = openReading(dataDir);
+  const reading = makeReadingGround({ ...sources, db }, ground, writer);
+  server.on('request', makeApp(reading, pageFolder(dataDir), writer));
   return {
     url: `http://127.0.0.1:${port}`,
     dataDir,
     ground,
+    writer,
     get log() {
       return lines.map((line) => JSON.parse(line) as Record<string, unknown>);
     },
@@ -52,8 +59,9 @@ export async function startApp(changed: Partial<Config> = {}): Promise<RunningAp
     close: async () => {
       server.closeAllConnections();
       await new Promise((resolve) => server.close(resolve));
-      await leave();
-      closeDb(db);
+      await reading.searcher.close();
+      db.$client.close();
+      await writer.close();
     },
   };
 }
