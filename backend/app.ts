@@ -11,12 +11,20 @@ import { handOverTo } from './api/hand-over';
 import { registerRoutes } from './api/register';
 import { type Served } from './api/serve';
 import { auditRoutes } from './audit/trail';
+import { clockRoutes } from './clocks/clock-routes';
+import { referenceRoutes } from './clocks/reference-routes';
+import { frameRoutes } from './frames/frame-routes';
 import { type Ground } from './ground';
 import { healthRoutes } from './health';
 import { keptMailRoutes } from './mail/kept-mails';
+import { networkRoutes } from './networks/network-routes';
+import { runRoutes } from './networks/run-routes';
 import { pageRoutes } from './pages';
 import { failed, notFound } from './problem';
+import { ruleRoutes } from './rules/rule-routes';
 import { securityHeaders } from './security';
+import { siteRoutes } from './sites/site-routes';
+import { tableRoutes } from './tables/table-routes';
 import { type Writer } from './writer/questions';
 
 /** Every route of the API: what is not here is not served. */
@@ -26,6 +34,14 @@ export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>)
   ...myRoutes(),
   ...peopleRoutes(),
   ...siteKeyRoutes(),
+  ...networkRoutes(),
+  ...runRoutes(),
+  ...siteRoutes(),
+  ...clockRoutes(),
+  ...referenceRoutes(),
+  ...frameRoutes(),
+  ...ruleRoutes(),
+  ...tableRoutes(),
   ...auditRoutes(),
   ...(keepsMails ? keptMailRoutes() : []),
 ];

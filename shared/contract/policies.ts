@@ -1,4 +1,4 @@
-import { rolesAt, type HeldRole, type Place, type Role } from './roles';
+import { ROLES, rolesAt, type HeldRole, type Place, type Role } from './roles';
 
 /** Who may do one thing. Where `in` is 'place', the request says which: the role must be held there. */
 export type Policy =
@@ -51,6 +51,61 @@ export const POLICIES = {
   'stream:hello': bySiteKey,
   'stream:batch': bySiteKey,
   'stream:state': bySiteKey,
+
+  'network:list': signedIn, // those in which they have a role
+  'network:read': at(...ROLES),
+  'network:make': at('coordinator'), // of the deployment
+  'network:change': at('coordinator'),
+  'network:close': at('coordinator'), // of the deployment
+  'run:list': at(...ROLES),
+  'run:make': at('coordinator'),
+  'run:change': at('coordinator'),
+  'site:list': at(...ROLES), // of other operators' sites an operator sees where they are
+  'site:read': at(...ROLES),
+  'site:make': at('coordinator'),
+  'site:change': at('coordinator', 'operator'),
+  'site:add-version': at('coordinator', 'operator'),
+  'site:close': at('coordinator'),
+  'clock:list': at(...ROLES), // an operator has the clocks of their sites
+  'clock:read': at(...ROLES),
+  'clock:read-history': at(...ROLES),
+  'clock:make': at('coordinator', 'operator'),
+  'clock:change': at('coordinator', 'operator'),
+  'clock-segment:add': at('coordinator', 'operator'),
+  'clock-segment:edit': at('coordinator', 'operator'),
+  'clock-segment:end': at('coordinator', 'operator'),
+  'time-reference:list': at(...ROLES),
+  'time-reference:make': at('coordinator'),
+  'time-reference:change': at('coordinator'),
+  'frame:list': at(...ROLES),
+  'frame:read': at(...ROLES),
+  'frame:make': at('coordinator', 'analyst'),
+  'frame:change': at('coordinator', 'analyst'),
+  'frame:close': at('coordinator', 'analyst'),
+  'rule:list': at(...ROLES),
+  'rule:read': at(...ROLES),
+  'rule:read-history': at(...ROLES),
+  'rule:make': at('coordinator', 'analyst'),
+  'rule:change': at('coordinator', 'analyst'),
+  'rule:activate': at('coordinator', 'analyst'),
+  'rule:deactivate': at('coordinator', 'analyst'),
+  'time-tables:read': signedIn,
+  'leap-second-table:upload': at('coordinator'), // of the deployment
+  'leap-second-table:put-in-force': at('coordinator'),
+  'orientation-table:upload': at('coordinator'),
+  'orientation-table:put-in-force': at('coordinator'),
+
+  'event:list': at(...ROLES), // an operator has those of their sites
+  'event:read': at(...ROLES),
+  'coincidence:list': at('coordinator', 'analyst', 'reviewer'), // it shows events of several sites
+  'coincidence:read': at('coordinator', 'analyst', 'reviewer'),
+  'pair:read': at(...ROLES), // an operator pairs events of their sites
+  'set-aside:list': at(...ROLES), // an operator has those of their sites
+  'set-aside:read': at(...ROLES),
+  'series:list': at(...ROLES),
+  'live-span:list': at(...ROLES),
+  'completeness:read': at(...ROLES), // an operator has their sites, and how far the network is
+  'change:list': at('coordinator', 'analyst', 'reviewer'),
 
   'audit:read': at('coordinator'),
   'kept-mail:read': at('coordinator'), // of the deployment: a kept mail may hold anyone's link
