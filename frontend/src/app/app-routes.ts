@@ -1,12 +1,80 @@
-import { type Routes } from '@angular/router';
+import { type Route, type Routes } from '@angular/router';
+import { type PolicyName } from '#shared/contract/policies';
+import { knownGuard, mayGuard, signedInGuard, strangerGuard } from './session/session-guards';
+
+const noPermission = () => import('./shell/not-permitted').then((file) => file.NotPermitted);
+
+/** A page for whoever may do what a policy allows; everyone else who is signed in reads that they may not. */
+const pageFor = (policy: PolicyName, page: Route & { readonly path: string }): Routes => [
+  { ...page, canMatch: [mayGuard(policy)] },
+  { path: page.path, title: 'Not permitted', loadComponent: noPermission },
+];
+
+/** Pages in the frame of the application, for who is signed in. */
+const inside: Routes = [
+  { path: '', pathMatch: 'full', redirectTo: 'desk' },
+  { path: 'desk', title: 'Desk', loadComponent: () => import('./shell/desk-place').then((file) => file.DeskPlace) },
+  { path: 'account', title: 'Your account', loadComponent: () => import('./account/account').then((file) => file.Account) },
+  ...pageFor('person:list', {
+    path: 'people',
+    title: 'People',
+    loadComponent: () => import('./coordinate/people').then((file) => file.People),
+  }),
+  ...pageFor('person:read', {
+    path: 'people/:personId',
+    title: 'Person',
+    loadComponent: () => import('./coordinate/person').then((file) => file.PersonPage),
+  }),
+  ...pageFor('audit:read', {
+    path: 'audit',
+    title: 'Audit trail',
+    loadComponent: () => import('./coordinate/audit').then((file) => file.Audit),
+  }),
+  ...pageFor('kept-mail:read', {
+    path: 'mails',
+    title: 'Mails',
+    loadComponent: () => import('./coordinate/mails').then((file) => file.Mails),
+  }),
+];
 
 /** The pages. Each is fetched when it is first opened, and names itself in the title. */
 export const routes: Routes = [
   {
-    path: '',
-    pathMatch: 'full',
-    title: 'Skewline: one order, where there is one',
-    loadComponent: () => import('./about/about').then((file) => file.About),
+    path: 'sign-in',
+    title: 'Sign in',
+    canActivate: [strangerGuard],
+    loadComponent: () => import('./sign-in/sign-in').then((file) => file.SignIn),
   },
-  { path: '**', title: 'No such page: Skewline', loadComponent: () => import('./about/no-such-page').then((file) => file.NoSuchPage) },
+  {
+    path: 'forgotten-password',
+    title: 'A new password',
+    loadComponent: () => import('./sign-in/forgotten-password').then((file) => file.ForgottenPassword),
+  },
+  {
+    path: 'invitation',
+    title: 'Welcome',
+    data: { purpose: 'invitation' },
+    loadComponent: () => import('./sign-in/choose-password').then((file) => file.ChoosePassword),
+  },
+  {
+    path: 'new-password',
+    title: 'A new password',
+    data: { purpose: 'reset' },
+    loadComponent: () => import('./sign-in/choose-password').then((file) => file.ChoosePassword),
+  },
+  { path: 'about', title: 'One order, where there is one', loadComponent: () => import('./about/about').then((file) => file.About) },
+  {
+    path: '',
+    loadComponent: () => import('./shell/shell').then((file) => file.Shell),
+    canActivate: [signedInGuard],
+    children: inside,
+  },
+  {
+    path: '**',
+    title: 'No such page',
+    canMatch: [knownGuard],
+    loadComponent: () => import('./shell/shell').then((file) => file.Shell),
+    children: [{ path: '**', title: 'No such page', loadComponent: () => import('./shell/not-here').then((file) => file.NotHere) }],
+  },
+  { path: '**', title: 'No such page', loadComponent: () => import('./about/no-such-page').then((file) => file.NoSuchPage) },
 ];

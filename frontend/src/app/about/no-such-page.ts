@@ -2,7 +2,7 @@ import { ChangeDetectionStrategy, Component } from '@angular/core';
 import { RouterLink } from '@angular/router';
 import { Wordmark } from '../ui/wordmark';
 
-/** What an address that leads nowhere shows. */
+/** What an address that leads nowhere shows to who is not signed in. */
 @Component({
   selector: 'sw-no-such-page',
   imports: [RouterLink, Wordmark],

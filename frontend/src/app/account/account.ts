@@ -1,0 +1,32 @@
+import { ChangeDetectionStrategy, Component, inject } from '@angular/core';
+import { SCALES } from '#shared/time/scales';
+import { Preferences } from '../preferences/preferences';
+import { SessionStore } from '../session/session-store';
+import { Segmented } from '../ui/segmented';
+import { MyName } from './my-name';
+import { MyPassword } from './my-password';
+import { MySessions } from './my-sessions';
+import { RoleWords } from '../coordinate/role-words';
+
+/** What everyone sees and changes of their own: name, password, sessions, and how this browser shows things. */
+@Component({
+  selector: 'sw-account',
+  imports: [MyName, MyPassword, MySessions, RoleWords, Segmented],
+  changeDetection: ChangeDetectionStrategy.OnPush,
+  templateUrl: './account.html',
+  styleUrl: './account.scss',
+})
+export class Account {
+  protected readonly session = inject(SessionStore);
+  protected readonly preferences = inject(Preferences);
+  protected readonly themes = [
+    { value: 'system', word: 'System' },
+    { value: 'light', word: 'Light' },
+    { value: 'dark', word: 'Dark' },
+  ] as const;
+  protected readonly scales = SCALES.map((scale) => ({ value: scale, word: scale }));
+  protected readonly switch = [
+    { value: 'on', word: 'On' },
+    { value: 'off', word: 'Off' },
+  ] as const;
+}
