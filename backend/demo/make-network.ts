@@ -1,14 +1,18 @@
+import { type FrameMotionStated } from '#shared/contract/frame-routes';
 import { type NetworkFile } from '#shared/contract/network-file';
+import { type RuleWindowGiven } from '#shared/contract/rule-routes';
 import { type Instant } from '#shared/time/instant';
 import { addSegment, makeClock } from '../clocks/make-clock';
 import { makeEmitter } from '../clocks/make-emitter';
 import { makeReference } from '../clocks/make-reference';
+import { makeFrame } from '../frames/make-frame';
 import { makeNetwork } from '../networks/make-network';
 import { makeRun } from '../networks/make-run';
 import { type Making } from '../networks/note-setup';
+import { makeRule, setActive } from '../rules/make-rule';
 import { makeSite } from '../sites/make-site';
 import { timeReader } from '../tables/times-given';
-import { demoNetworkFile, emitterOf, NAMES, NETWORK_CODE } from './scenario';
+import { demoNetworkFile, emitterOf, NAMES, NETWORK_CODE, PINNED_FRAMES, RULES, type DemoRule } from './scenario';
 
 /** What the demo's people and keys are for. */
 export interface DemoNetwork {
@@ -51,6 +55,20 @@ export function makeDemoNetwork(making: Making, firstTaiS: number): DemoNetwork 
     schedule: { first: { taiS: pulseTaiS, ps: 0 }, periodS },
     referenceId: idOf(references, reference),
   });
+  const frames = new Map<string, number>();
+  for (const frame of file.frames ?? []) {
+    const { code, name, parent } = frame;
+    const pinned = PINNED_FRAMES.findIndex((one) => one === code) + 1;
+    const parentId = parent === undefined ? null : idOf(frames, parent);
+    frames.set(
+      code,
+      makeFrame(making, { networkId, code, name, parentId, pinned: pinned === 0 ? null : pinned, motion: motionOf(frame, siteIds) }),
+    );
+  }
+  for (const { code, name, minimum_fold: minimumFold, sigmas, window, sites } of RULES) {
+    const state = { minimumFold, sigmas, window: windowOf(window), siteIds: sites?.map((site) => idOf(siteIds, site)) };
+    setActive(making, makeRule(making, { networkId, code, name, state }), true);
+  }
   return { networkId, siteIds };
 }
 
@@ -97,4 +115,22 @@ function stateOf(site: NetworkFile['sites'][number], clocks: Codes) {
     origin: 'survey' as const,
     note: '',
   };
+}
+
+type FileFrame = NonNullable<NetworkFile['frames']>[number];
+
+function motionOf({ velocity }: FileFrame, siteIds: Codes): FrameMotionStated {
+  if (!velocity) return { kind: 'barycentric' };
+  const { beta, speed_c: speedC, speed_km_s: speedKmS, rapidity, toward } = velocity;
+  if (beta) return { kind: 'velocity', betaC: beta };
+  if (toward?.baseline) {
+    const [from, to] = toward.baseline;
+    return { kind: 'toward-baseline', speedC, speedKmS, rapidity, fromSiteId: idOf(siteIds, from), toSiteId: idOf(siteIds, to) };
+  }
+  return { kind: 'velocity', speedC, speedKmS, rapidity, toward: { raDeg: toward?.ra_deg ?? 0, decDeg: toward?.dec_deg ?? 0 } };
+}
+
+function windowOf(window: DemoRule['window']): RuleWindowGiven {
+  if (window.kind === 'light-time') return { kind: 'light-time', speedC: window.speed_c, marginNs: window.margin_ns };
+  return { kind: 'fixed', widthNs: window.width_ns };
 }

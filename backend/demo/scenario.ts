@@ -4,6 +4,9 @@ import { createTaiWriter } from '#shared/time/format';
 /** The code of the demo's network. */
 export const NETWORK_CODE = 'marram';
 
+/** What all of the stream is drawn from. */
+export const SEED = 4_210;
+
 /** Seconds of stream before the first start, so that the screens are not empty. */
 export const HISTORY_S = 600;
 

@@ -1,6 +1,7 @@
 import { setTimeout as sleep } from 'node:timers/promises';
 import { problemOf, valueOf, type Outcome } from '#shared/outcome';
 import { closeDb, openDb, UnusableDatabase, type Db } from '../db';
+import { seedDemo } from '../demo/seed';
 import { type Ground } from '../ground';
 import { makeGround, type Sources } from '../make-ground';
 import { makeAnswers } from './answers';
@@ -41,6 +42,12 @@ export async function beginWriter(sources: WriterSources, tell: TellNews): Promi
     return problemOf(made.problem.code, made.problem.where, made.problem.text);
   }
   const { ground, leave } = made.value;
+  const seeded = await seedDemo(ground, sources.config);
+  if (!seeded.ok) {
+    await leave();
+    closeDb(db);
+    return problemOf(seeded.problem.code, seeded.problem.where, seeded.problem.text);
+  }
   ground.onCommitted((committed) => tellOf(committed, tell));
   const answers = await makeAnswers(ground);
   const underWay = new Set<Promise<unknown>>();
