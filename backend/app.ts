@@ -25,6 +25,11 @@ import { ruleRoutes } from './rules/rule-routes';
 import { securityHeaders } from './security';
 import { siteRoutes } from './sites/site-routes';
 import { tableRoutes } from './tables/table-routes';
+import { coincidenceRoutes } from './coincidences/coincidence-routes';
+import { eventRoutes } from './events/event-routes';
+import { pairRoutes } from './pairs/pair-routes';
+import { setAsideRoutes } from './set-asides/set-aside-routes';
+import { streamRoutes } from './streams/stream-routes';
 import { type Writer } from './writer/questions';
 
 /** Every route of the API: what is not here is not served. */
@@ -42,6 +47,11 @@ export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>)
   ...frameRoutes(),
   ...ruleRoutes(),
   ...tableRoutes(),
+  ...eventRoutes(),
+  ...coincidenceRoutes(),
+  ...pairRoutes(),
+  ...setAsideRoutes(),
+  ...streamRoutes(),
   ...auditRoutes(),
   ...(keepsMails ? keptMailRoutes() : []),
 ];

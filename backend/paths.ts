@@ -21,3 +21,6 @@ export const frontendFolder = join(root, 'dist', 'frontend', 'browser');
 
 /** A built worker thread by its name: from the sources, as tests run them, it is the built one too. */
 export const workerFile = (name: string): string => join(root, 'dist', 'backend', 'workers', `${name}.worker.js`);
+
+/** The built process that streams the demo's sites. */
+export const demoFeedFile = join(root, 'dist', 'backend', 'demo-feed.js');

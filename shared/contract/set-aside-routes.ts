@@ -1,0 +1,105 @@
+import * as z from 'zod';
+import { idsText, MOST_IDS, partOf, partQuery, wordText } from './list-query';
+import { idText } from './page';
+import { utc } from './people';
+import { route } from './routes';
+
+/** Why a record is set aside: what the batch command says, and what only a stream, an upload or a platform can meet. */
+export const SET_ASIDE_REASONS = [
+  'columns',
+  'site',
+  'sequence',
+  'series',
+  'kind',
+  'reading-empty',
+  'reading-form',
+  'date',
+  'time-of-day',
+  'no-leap-second',
+  'before-1972',
+  'sigma',
+  'amplitude',
+  'before-clock-record',
+  'outside-run',
+  'conflict',
+  'future',
+  'outside-ephemeris',
+  'ambiguous',
+  'unreadable',
+  'too-long',
+] as const;
+
+export const SET_ASIDE_STATES = ['open', 'accepted', 'dismissed'] as const;
+
+const networkParams = z.strictObject({ networkId: idText });
+const setAsideParams = z.strictObject({ setAsideId: idText });
+
+/** A record that could not be accepted, verbatim, with the reason and what was decided. */
+export const setAside = z.strictObject({
+  id: z.int(),
+  /** Null where the record's site is not known. */
+  siteId: z.int().nullable(),
+  site: z.string().nullable(),
+  /** `*` where it could not be read. */
+  series: z.string(),
+  /** Null where it could not be read. */
+  sequence: z.string().nullable(),
+  reason: z.enum(SET_ASIDE_REASONS),
+  /** What was wrong and what would be right. */
+  detail: z.string(),
+  verbatim: z.string(),
+  receivedAtMs: z.int(),
+  /** The upload and the line on which the record starts; null for what was streamed. */
+  intakeId: z.int().nullable(),
+  line: z.int().nullable(),
+  /** The record as one of the known ones, where it could be read as such. */
+  eventId: z.int().nullable(),
+  state: z.enum(SET_ASIDE_STATES),
+  retryAtMs: z.int().nullable(),
+  decidedAt: utc().nullable(),
+  /** Null where the program decided: a clock record or a run now holds it. */
+  decidedBy: z.strictObject({ id: z.int(), name: z.string() }).nullable(),
+  decision: z.string(),
+  version: z.int(),
+});
+
+/** One content of an identity. */
+const content = z.strictObject({
+  /** Its id as a record. */
+  eventId: z.int(),
+  variant: z.int(),
+  kind: z.string(),
+  reading: z.string(),
+  readingForm: z.string(),
+  sigma: z.string(),
+  amplitude: z.string(),
+  extra: z.record(z.string(), z.string()),
+  receivedAtMs: z.int(),
+  /** Whether it is the one that stands as the event. */
+  stands: z.boolean(),
+});
+
+/** What could not be accepted: an operator sees that of their own sites, and nobody's that names no site. */
+export const SET_ASIDE_ROUTES = {
+  listSetAsides: route('GET', '/networks/:networkId/set-asides', {
+    policy: 'set-aside:list',
+    params: networkParams,
+    query: z.strictObject({
+      ...partQuery,
+      /** Absent for the open ones. */
+      state: wordText(...SET_ASIDE_STATES, 'all'),
+      reason: wordText(...SET_ASIDE_REASONS),
+      siteIds: idsText(MOST_IDS).optional(),
+    }),
+    answer: partOf(setAside),
+  }),
+  /** With all contents of its identity where it could be read as a record: of a conflict, which may stand. */
+  readSetAside: route('GET', '/set-asides/:setAsideId', {
+    policy: 'set-aside:read',
+    params: setAsideParams,
+    answer: setAside.extend({ networkId: z.int(), contents: z.array(content) }),
+  }),
+};
+
+export type SetAside = z.infer<typeof setAside>;
+export type SetAsideContent = z.infer<typeof content>;
