@@ -1,16 +1,10 @@
 import { inArray } from 'drizzle-orm';
 import { people } from '#schema/schema';
 import { type Db } from '../db';
-import { readDemoFile, type DemoFile } from './demo-file';
+import { type DemoFile } from './demo-file';
 
 const ROLE_WIDTH = 12;
 const EMAIL_WIDTH = 28;
-
-/** The demo that a data folder holds secrets of, when they are this database's. */
-export function demoOf(dataDir: string, deploymentId: string): DemoFile | undefined {
-  const demo = readDemoFile(dataDir);
-  return demo?.deploymentId === deploymentId ? demo : undefined;
-}
 
 /**
  * Who can sign in to the demo, for whoever started it: role, e-mail address and password of each account, a line each.

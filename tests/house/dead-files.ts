@@ -3,7 +3,7 @@ import { importsOf, type Tree } from './tree';
 
 /** Started by a name that no import writes: by Node, a browser, or a tool's configuration. */
 const ENTRIES = [
-  /^backend\/(?:main|skewline)\.ts$/,
+  /^backend\/(?:main|skewline|demo-feed)\.ts$/,
   /^backend\/workers\/[^/]+\.worker\.ts$/,
   /^frontend\/src\/main\.ts$/,
   /(?:^|\/)[^/]+\.config\.ts$/,

@@ -27,6 +27,8 @@ export interface RunningServer {
   readonly url: string;
   readonly process: ChildProcess;
   readonly ended: Promise<Ended>;
+  /** What it has said on stdout so far. */
+  readonly said: () => string;
   /** Asks it to end and waits until it has. */
   stop(signal?: NodeJS.Signals): Promise<Ended>;
 }
@@ -74,6 +76,7 @@ export async function startServer(env: Readonly<Record<string, string>>): Promis
     url,
     process: child,
     ended,
+    said,
     stop: (signal = 'SIGTERM') => {
       child.kill(signal);
       return ended;
