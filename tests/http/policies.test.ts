@@ -2,7 +2,13 @@ import { Router } from 'express';
 import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import * as z from 'zod';
+import { CLOCK_ROUTES, REFERENCE_ROUTES } from '#shared/contract/clock-routes';
+import { FRAME_ROUTES } from '#shared/contract/frame-routes';
+import { NETWORK_ROUTES, RUN_ROUTES } from '#shared/contract/network-routes';
 import { problem } from '#shared/contract/problem';
+import { RULE_ROUTES } from '#shared/contract/rule-routes';
+import { SITE_ROUTES } from '#shared/contract/site-routes';
+import { TABLE_ROUTES } from '#shared/contract/table-routes';
 import { AUDIT_ROUTES, HEALTH_ROUTES, KEPT_MAIL_ROUTES } from '#shared/contract/record-routes';
 import { MY_ROUTES, PEOPLE_ROUTES, SESSION_ROUTES, SITE_KEY_ROUTES } from '#shared/contract/people-routes';
 import { judge, POLICIES, policyOf, type PolicyName } from '#shared/contract/policies';
@@ -15,7 +21,9 @@ import { newSiteKey } from '../../backend/accounts/site-key-use';
 import { siteKeys } from '#schema/schema';
 import { startApp, type RunningApp } from '../support/app';
 import { Client, type Answer, type Sending } from '../support/client';
+import { makeSetup, type Setup } from '../support/setup';
 import { makeWorld, PASSWORD, PERSONAS, type Persona, type World } from '../support/world';
+import { setupWalk } from './setup-walk';
 
 const DECLARED: readonly Route[] = [
   HEALTH_ROUTES,
@@ -25,15 +33,25 @@ const DECLARED: readonly Route[] = [
   SITE_KEY_ROUTES,
   AUDIT_ROUTES,
   KEPT_MAIL_ROUTES,
+  NETWORK_ROUTES,
+  RUN_ROUTES,
+  SITE_ROUTES,
+  CLOCK_ROUTES,
+  REFERENCE_ROUTES,
+  FRAME_ROUTES,
+  RULE_ROUTES,
+  TABLE_ROUTES,
 ].flatMap((group) => Object.values<Route>(group));
 const nameOf = ({ method, path }: Route): string => `${method} ${path}`;
 
 let app: RunningApp;
 let world: World;
 let siteKey: string;
+let setup: Setup;
 beforeAll(async () => {
   app = await startApp();
   world = await makeWorld(app);
+  setup = makeSetup(app, world);
   const { key, prefix, hash } = newSiteKey();
   siteKey = key;
   app.ground.db
@@ -165,6 +183,10 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
     },
   },
   'GET /site-key': { in: ['siteKey'] },
+  ...setupWalk(
+    () => world,
+    () => setup,
+  ),
   'GET /audit': { in: ['chief'] },
   'GET /kept-mails': { in: ['chief'] },
 };
@@ -242,6 +264,9 @@ const METHODS = ['PUT', 'DELETE', 'OPTIONS', 'HEAD'];
 const LEAKS =
   /sqlite|drizzle|node_modules|\$argon2|SELECT |INSERT |\.ts:|\/backend|\/tmp\/|\bat \w+ \(|swk_[\w-]{20,}|127\.0\.0\.1|[0-9a-f]{64}/i;
 
+/** The hash of an uploaded table is there to be quoted: it opens nothing. */
+const CONTENT_HASHES = /"sha256":"[0-9a-f]{64}"/g;
+
 describe('30 and 38 no answer', () => {
   it('to any bad request is a fault of ours, or tells a hash, token, address or path', { timeout: 600_000 }, async () => {
     const clients = (LONG ? ASKERS : FEW).map((asker) => [clientOf(asker), sendingOf(asker)] as const);
@@ -272,7 +297,7 @@ describe('30 and 38 no answer', () => {
             if (status >= 500) expect([status, problem.parse(JSON.parse(text)).title], what).toEqual([503, 'Busy']);
             if (status >= 400 && method !== 'HEAD')
               expect(headers.get('content-type'), what).toBe('application/problem+json; charset=utf-8');
-            expect(LEAKS.exec(text)?.[0], what).toBeUndefined();
+            expect(LEAKS.exec(text.replace(CONTENT_HASHES, ''))?.[0], what).toBeUndefined();
           }),
         );
     }
