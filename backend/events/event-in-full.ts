@@ -71,7 +71,7 @@ export const eventVersionsQuery = (id: number): Query => {
     `SELECT ${columns}, NULL AS endedChange FROM events e JOIN groundings g ON g.id = e.grounding_id WHERE e.trigger_id = ?
      UNION ALL
      SELECT ${columns}, v.ended_change AS endedChange FROM event_versions v JOIN groundings g ON g.id = v.grounding_id WHERE v.trigger_id = ?
-     ORDER BY endedChange IS NOT NULL, version DESC`,
+     ORDER BY version DESC`,
     id,
     id,
   );

@@ -9,6 +9,11 @@ import { problem } from '#shared/contract/problem';
 import { RULE_ROUTES } from '#shared/contract/rule-routes';
 import { SITE_ROUTES } from '#shared/contract/site-routes';
 import { TABLE_ROUTES } from '#shared/contract/table-routes';
+import { COINCIDENCE_ROUTES } from '#shared/contract/coincidence-routes';
+import { EVENT_ROUTES } from '#shared/contract/event-routes';
+import { PAIR_ROUTES } from '#shared/contract/pair-routes';
+import { SET_ASIDE_ROUTES } from '#shared/contract/set-aside-routes';
+import { STREAM_ROUTES } from '#shared/contract/stream-routes';
 import { AUDIT_ROUTES, HEALTH_ROUTES, KEPT_MAIL_ROUTES } from '#shared/contract/record-routes';
 import { MY_ROUTES, PEOPLE_ROUTES, SESSION_ROUTES, SITE_KEY_ROUTES } from '#shared/contract/people-routes';
 import { judge, POLICIES, policyOf, type PolicyName } from '#shared/contract/policies';
@@ -20,6 +25,7 @@ import { serve } from '../../backend/api/serve';
 import { newSiteKey } from '../../backend/accounts/site-key-use';
 import { siteKeys } from '#schema/schema';
 import { startApp, type RunningApp } from '../support/app';
+import { storeOneOfEach, type OneOfEach } from '../support/one-of-each';
 import { Client, type Answer, type Sending } from '../support/client';
 import { makeSetup, type Setup } from '../support/setup';
 import { makeWorld, PASSWORD, PERSONAS, type Persona, type World } from '../support/world';
@@ -31,6 +37,11 @@ const DECLARED: readonly Route[] = [
   MY_ROUTES,
   PEOPLE_ROUTES,
   SITE_KEY_ROUTES,
+  EVENT_ROUTES,
+  COINCIDENCE_ROUTES,
+  PAIR_ROUTES,
+  SET_ASIDE_ROUTES,
+  STREAM_ROUTES,
   AUDIT_ROUTES,
   KEPT_MAIL_ROUTES,
   NETWORK_ROUTES,
@@ -47,10 +58,12 @@ const nameOf = ({ method, path }: Route): string => `${method} ${path}`;
 let app: RunningApp;
 let world: World;
 let siteKey: string;
+let stored: OneOfEach;
 let setup: Setup;
 beforeAll(async () => {
   app = await startApp();
   world = await makeWorld(app);
+  stored = storeOneOfEach(app.ground.db, world.networks.first, [world.sites.alpha, world.sites.beta]);
   setup = makeSetup(app, world);
   const { key, prefix, hash } = newSiteKey();
   siteKey = key;
@@ -111,6 +124,14 @@ const sendingOf = (asker: Asker): Sending => (asker === 'siteKey' ? { headers: {
  */
 const ALL_PEOPLE: readonly Asker[] = Object.keys(PERSONAS) as Persona[];
 const COORDINATORS: readonly Asker[] = ['chief', 'coordinator', 'otherCoordinator'];
+/** Who sees all of the first network, its site alpha, or has any role in it; and who has none there. */
+const SEE_ALL: readonly Asker[] = ['chief', 'coordinator', 'analyst', 'reviewer'];
+const SEE_ALPHA: readonly Asker[] = [...SEE_ALL, 'operator'];
+const ROLES_OF_FIRST: readonly Asker[] = [...SEE_ALPHA, 'otherOperator'];
+const OUTSIDE: readonly Asker[] = ['otherCoordinator', 'nobodySpecial'];
+const NOT_ALPHAS: readonly Asker[] = ['otherOperator', ...OUTSIDE];
+const ofNetwork = (path: string) => ({ hidden: OUTSIDE, path: () => `/networks/${world.networks.first}${path}` });
+const ofAlpha = (path: string) => ({ hidden: NOT_ALPHAS, path: () => `/sites/${world.sites.alpha}${path}` });
 const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonly Asker[]; path?: () => string; body?: () => unknown }>> = {
   'GET /health': { in: ASKERS },
   'POST /sign-in': { in: [], body: () => ({ email: 'stranger@example.org', password: 'whatever it is' }) },
@@ -187,6 +208,27 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
     () => world,
     () => setup,
   ),
+  'GET /networks/:networkId/events': { ...ofNetwork('/events'), in: ROLES_OF_FIRST },
+  'GET /events/:eventId': { in: SEE_ALPHA, hidden: NOT_ALPHAS, path: () => `/events/${stored.event}` },
+  'GET /events/:eventId/coincidences': {
+    in: SEE_ALL,
+    hidden: NOT_ALPHAS,
+    path: () => `/events/${stored.event}/coincidences`,
+  },
+  'GET /networks/:networkId/coincidences': { ...ofNetwork('/coincidences'), in: SEE_ALL },
+  'GET /coincidences/:coincidenceId': { in: SEE_ALL, hidden: OUTSIDE, path: () => `/coincidences/${stored.coincidence}` },
+  'GET /networks/:networkId/pairs': {
+    in: SEE_ALPHA,
+    hidden: NOT_ALPHAS,
+    path: () => `/networks/${world.networks.first}/pairs?events=${stored.event}`,
+  },
+  'GET /networks/:networkId/set-asides': { ...ofNetwork('/set-asides'), in: ROLES_OF_FIRST },
+  'GET /set-asides/:setAsideId': { in: SEE_ALPHA, hidden: NOT_ALPHAS, path: () => `/set-asides/${stored.setAside}` },
+  'GET /sites/:siteId/series': { ...ofAlpha('/series'), in: SEE_ALPHA },
+  'GET /sites/:siteId/gaps': { ...ofAlpha('/gaps'), in: SEE_ALPHA },
+  'GET /sites/:siteId/live-spans': { ...ofAlpha('/live-spans'), in: SEE_ALPHA },
+  'GET /networks/:networkId/completeness': { ...ofNetwork('/completeness'), in: ROLES_OF_FIRST },
+  'GET /networks/:networkId/changes': { ...ofNetwork('/changes?after=0'), in: SEE_ALL },
   'GET /audit': { in: ['chief'] },
   'GET /kept-mails': { in: ['chief'] },
 };
