@@ -5,6 +5,7 @@ import { makeApp } from './app';
 import { readConfig, type Config } from './config';
 import { type DataLock } from './data-lock';
 import { holdDataDir, openReading, UnusableDatabase } from './db';
+import { showDemo } from './demo/show-demo';
 import { faultText } from './command/fault-text';
 import { type Ground } from './ground';
 import { makeReadingGround } from './make-reading-ground';
@@ -33,8 +34,10 @@ const read = readConfig(process.env);
 const config: Config = read.ok ? read.value : refuse(read.problem.text);
 const log = serverLog(config.logLevel, pino.destination({ dest: 2, sync: true }));
 
+let ending = false;
 let lock: DataLock | undefined;
 let writer: Writer | undefined;
+let endDemo: (() => void) | undefined;
 let ground: Ground | undefined;
 // The port is taken before the database is touched: another server that holds it may be using the same one.
 const server = createServer({
@@ -43,6 +46,8 @@ const server = createServer({
   connectionsCheckingInterval: LOOK_FOR_LATE_MS,
 });
 server.on('error', (fault) => refuse(listenFault(fault)));
+// A connection that was busy when the server was told to end is not kept for another request.
+server.on('request', ({ socket }, res) => res.once('close', () => ending && socket.end()));
 server.listen(config.port, config.host, () => void begin().catch(fail));
 
 async function begin(): Promise<void> {
@@ -54,7 +59,10 @@ async function begin(): Promise<void> {
   const db = openReading(config.dataDir); // only now: the writer brings the tables up to date
   ground = makeReadingGround({ config, db, log, version: VERSION, port, nowMs: Date.now }, started.value.facts, writer);
   server.on('request', makeApp(ground, frontendFolder, writer));
-  process.stdout.write(`Skewline is at ${urlOf(server)}\n`);
+  const say = (text: string): void => void process.stdout.write(text);
+  say(`Skewline is at ${urlOf(server)}\n`);
+  const { dataDir, demo } = config;
+  if (demo) endDemo = showDemo({ dataDir, deploymentId: ground.deploymentId, db, url: urlOf(server), say });
 }
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, end);
 
@@ -93,10 +101,10 @@ function urlOf(listening: Server): string {
   return `http://${everywhere ? 'localhost' : family === 'IPv6' ? `[${address}]` : address}:${port}/`;
 }
 
-let ending = false;
 function end(): void {
   if (ending) return;
   ending = true;
+  endDemo?.();
   setTimeout(() => {
     log.error('the server did not end in time');
     process.exit(FAILED);

@@ -10,6 +10,7 @@ import { change } from '../audit/change';
 import { type Db } from '../db';
 import { utcText, type Ground } from '../ground';
 import { invitation, invitationLink } from '../mail/letters';
+import { noteRevoked } from '../writer/commit';
 import { actorOf } from './actor';
 import { insertRole, refusePast } from './give-role';
 import { invitePerson } from './invite';
@@ -76,6 +77,7 @@ export const peopleRoutes = (): Served[] => [
           .returning(ROLE_COLUMNS)
           .all();
         if (!changed) throw stale();
+        noteRevoked(tx, { kind: 'role', personId });
         note({ action: 'role:changed', subjectKind: 'person', subjectId: personId, networkId, details: { roleId: id, role, expiresAt } });
         return changed;
       }),
@@ -92,6 +94,7 @@ export const peopleRoutes = (): Served[] => [
           .where(and(eq(roles.id, id), eq(roles.version, asked.body.version)))
           .run();
         if (taken.changes === 0) throw stale();
+        noteRevoked(tx, { kind: 'role', personId });
         note({ action: 'role:taken', subjectKind: 'person', subjectId: personId, networkId, details: { roleId: id, role, siteId } });
         return undefined;
       }),

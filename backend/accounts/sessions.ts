@@ -3,6 +3,7 @@ import { people, refreshTokens, sessions } from '#schema/schema';
 import { type Tx } from '../audit/change';
 import { type Db } from '../db';
 import { utcText, type Ground } from '../ground';
+import { noteRevoked } from '../writer/commit';
 import { type Claimed } from './access-token';
 import { newSecret, secretHash } from './secret-token';
 
@@ -103,11 +104,13 @@ export function endSession(tx: Tx, sessionId: number, reason: EndReason, nowMs: 
     .set({ endedAt: utcText(nowMs), endReason: reason })
     .where(and(eq(sessions.id, sessionId), isNull(sessions.endedAt)))
     .run();
+  noteRevoked(tx, { kind: 'session', sessionId });
   return ended.changes > 0;
 }
 
 /** Ends all sessions of a person, or all but one; says how many there were. */
 export function endSessions(tx: Tx, personId: number, reason: EndReason, nowMs: number, except?: number): number {
+  noteRevoked(tx, { kind: 'person', personId });
   return tx
     .update(sessions)
     .set({ endedAt: utcText(nowMs), endReason: reason })

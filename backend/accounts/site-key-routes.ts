@@ -7,6 +7,7 @@ import { absent, conflict } from '../api/refusal';
 import { personOf, serve, type Served } from '../api/serve';
 import { change } from '../audit/change';
 import { utcText } from '../ground';
+import { noteRevoked } from '../writer/commit';
 import { actorOf } from './actor';
 import { makeSiteKey, SITE_KEY_COLUMNS } from './make-site-key';
 import { placeOfSite } from './place-of-site';
@@ -55,6 +56,7 @@ export const siteKeyRoutes = (): Served[] => [
           .where(eq(siteKeys.id, keyId))
           .returning(SITE_KEY_COLUMNS)
           .get();
+        noteRevoked(tx, { kind: 'site-key', keyId, siteId });
         const { networkId, prefix } = known;
         note({ action: 'site-key:revoked', subjectKind: 'site', subjectId: siteId, networkId, details: { keyId, prefix } });
         return revoked;

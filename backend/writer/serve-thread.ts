@@ -17,6 +17,8 @@ import { type ThreadSources } from './writer-thread';
 export async function serveThread(port: MessagePort, sources: ThreadSources): Promise<void> {
   const send = (message: FromWriter): void => port.postMessage(message);
   const log = serverLog(sources.config.logLevel, pino.destination({ dest: 2, sync: true }));
+  // Here, since an error of the database loses its words between threads.
+  process.on('uncaughtExceptionMonitor', (fault) => log.fatal({ err: fault }, 'the writer failed'));
   const begun = await beginWriter({ ...sources, log, nowMs: Date.now }, (kind, news) =>
     send({ is: 'news', kind, news } as FromWriter),
   ).catch((fault: unknown) => {

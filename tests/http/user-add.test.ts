@@ -1,8 +1,10 @@
 import { spawnSync } from 'node:child_process';
 import { join } from 'node:path';
 import { statSync } from 'node:fs';
+import Database from 'better-sqlite3';
 import { describe, expect, it } from 'vitest';
 import { root } from '../../scripts/lib.mjs';
+import { appliedMigrations, closeDb, databaseFile, holdDataDir, openDb } from '../../backend/db';
 import { Client } from '../support/client';
 import { newFolder } from '../support/folder';
 import { PRODUCTION, runServer, startServer } from '../support/server';
@@ -54,6 +56,27 @@ describe('5 skewline user add', () => {
       expect((await fetch(new URL('/api/health', server.url))).status).toBe(200);
     } finally {
       await server.stop();
+    }
+  });
+
+  it('brings no table up to date while a server holds the data folder', () => {
+    const folder = newFolder('user-add-behind');
+    closeDb(openDb(folder));
+    const behind = new Database(databaseFile(folder));
+    const dropped = behind.prepare(
+      'DELETE FROM __drizzle_migrations WHERE created_at = (SELECT max(created_at) FROM __drizzle_migrations)',
+    );
+    expect(dropped.run().changes).toBe(1);
+    const applied = appliedMigrations(behind);
+    const lock = holdDataDir(folder);
+    try {
+      const { status, stdout, stderr } = userAdd(folder, 'ida@example.org', { NODE_ENV: 'test' });
+      expect([status, stdout]).toEqual([2, '']);
+      expect(stderr).toContain('lacks 1 migrations of this Skewline');
+      expect(appliedMigrations(behind)).toEqual(applied);
+    } finally {
+      lock.release();
+      behind.close();
     }
   });
 
