@@ -1,5 +1,6 @@
 import { Command, CommanderError, InvalidArgumentError } from 'commander';
 import { faultText } from './command/fault-text';
+import { type FeedOptions } from './command/feed-command';
 import { reconcileFiles } from './command/reconcile-command';
 import { terminalProgress } from './command/progress';
 import { UsageProblem } from './command/usage-problem';
@@ -18,15 +19,15 @@ const say = (line: string): void => void process.stderr.write(`${line.trim().rep
 for (const stream of [process.stdout, process.stderr]) stream.on('error', () => undefined);
 
 /**
- * An abort signal that Ctrl-C, SIGTERM and the end of the terminal set off.
+ * An abort signal that Ctrl-C, SIGTERM and the end of the terminal set off; its reason says what then became of the work.
  *
  * They are listened to until the process ends: Ctrl-C comes twice from a terminal in which npm hands it on, and the second may not end what the
  * first makes the command take away.
  */
-function stopSignal(): AbortSignal {
+function stopSignal(outcome: string): AbortSignal {
   const controller = new AbortController();
   for (const name of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const)
-    process.on(name, () => controller.abort(new Error(`stopped by ${name}; nothing was written`)));
+    process.on(name, () => controller.abort(new Error(`stopped by ${name}; ${outcome}`)));
   return controller.signal;
 }
 
@@ -78,7 +79,35 @@ Example:
 Exit status: 0 done (records set aside are counted on stderr), 2 unusable arguments or network file, 1 anything else.`,
     )
     .action(async (logs: string[], flags: ReconcileFlags) => {
-      await reconcileFiles({ ...flags, logs }, { signal: stopSignal(), progress: terminalProgress(process.stderr), say });
+      await reconcileFiles(
+        { ...flags, logs },
+        { signal: stopSignal('nothing was written'), progress: terminalProgress(process.stderr), say },
+      );
+    });
+  skewline
+    .command('feed')
+    .summary("stream a site's log to a server")
+    .description(
+      "Streams a log, as the site whose key is given, until each record is known to be in the server's database: through lost links and restarts of the server, without losing or doubling one. The columns are those of `reconcile`; the site column may be absent. What is malformed is sent too, and set aside by the server.",
+    )
+    .argument('<log>', 'CSV log; - for standard input')
+    .requiredOption('--server <url>', "the server's address, such as http://127.0.0.1:4210")
+    .option('--key-file <file>', "the site's key (default: the variable SKEWLINE_SITE_KEY)")
+    .option('--follow', 'go on with what is added to the file, until Ctrl-C', false)
+    .option('--complete', 'say at the end of the log that the site has sent all it has up to its latest reading', false)
+    .option('--resume', 'leave out the numbers that the server holds: faster, but a record that was changed since is not noticed', false)
+    .addHelpText(
+      'after',
+      `
+Example:
+  npx skewline feed --server http://127.0.0.1:4210 --key-file ORL.key --follow ORL.csv
+
+Exit status: 0 every record is answered (those set aside are counted on stderr), 2 unusable arguments, log or key, 1 anything else.`,
+    )
+    .action(async (log: string, flags: Omit<FeedOptions, 'log'>) => {
+      const { feed } = await import('./command/feed-command');
+      const signal = stopSignal('what had no answer is to be fed again');
+      await feed({ ...flags, log }, { env: process.env, input: process.stdin, signal, progress: terminalProgress(process.stderr), say });
     });
   skewline
     .command('user')

@@ -13,8 +13,11 @@ export interface RecordPlace {
   readonly lengthBytes: number;
 }
 
-/** Who takes the records of a file, in their order; the header is the first. `isWhole` is false where the quoting is broken. */
-export type RecordTaker = (fields: string[], place: RecordPlace, isWhole: boolean) => void;
+/**
+ * Who takes the records of a file, in their order; the header is the first. `isWhole` is false where the quoting is broken: there are no fields
+ * then, but the text as it stands, of a record that swallowed the rest its beginning.
+ */
+export type RecordTaker = (fields: string[], place: RecordPlace, isWhole: boolean, asItStands?: string) => void;
 
 /** A record that took everything from its first line to the end of its file. */
 export interface Swallowed {
@@ -30,6 +33,9 @@ const BLOCK_BYTES = 1 << 17;
  * Longest record, bytes. An open quote that is not closed within this is taken as never closed: it swallows the rest of the file.
  */
 const LONGEST_RECORD_BYTES = 1 << 24;
+
+/** What is handed over of a record that swallowed the rest of its file, bytes. */
+const SHOWN_OF_SWALLOWED_BYTES = 1 << 15;
 
 const LF = 0x0a;
 const CR = 0x0d;
@@ -62,7 +68,7 @@ export async function readRecords(
   try {
     refuseUtf16(descriptor, path);
     const sizeBytes = fstatSync(descriptor).size;
-    const reader = new BlockReader(take, sizeBytes, lastBytes(descriptor, sizeBytes));
+    const reader = new RecordReader(take, { fileBytes: sizeBytes, fileEnd: lastBytes(descriptor, sizeBytes) });
     const block = Buffer.allocUnsafe(BLOCK_BYTES);
     for (;;) {
       const bytes = readSync(descriptor, block, 0, BLOCK_BYTES, null);
@@ -79,7 +85,8 @@ export async function readRecords(
   }
 }
 
-class BlockReader {
+/** Reads records from blocks of bytes as they come. */
+export class RecordReader {
   swallowed: Swallowed | undefined;
   private rest: Buffer = Buffer.alloc(0);
   private offsetBytes = 0;
@@ -89,11 +96,16 @@ class BlockReader {
 
   constructor(
     private readonly take: RecordTaker,
-    private readonly fileBytes: number,
-    /** The last two bytes of the file. */
-    private readonly fileEnd: Buffer,
+    /** Of a file whose end is known: its size, and its last two bytes. */
+    private readonly file?: { readonly fileBytes: number; readonly fileEnd: Buffer },
   ) {}
 
+  /** Whether a record has begun and not ended. */
+  get isWithinRecord(): boolean {
+    return this.rest.length > 0;
+  }
+
+  /** Takes the next block, whose buffer may be used again. */
   add(block: Buffer): void {
     // The block's buffer is used again for the next one, so what is left over is always a copy.
     let bytes = this.rest.length === 0 ? Buffer.from(block) : Buffer.concat([this.rest, block]);
@@ -109,6 +121,7 @@ class BlockReader {
     if (this.rest.length > LONGEST_RECORD_BYTES) this.swallow();
   }
 
+  /** There is no more: what is left is the last record. */
   end(): void {
     if (this.swallowed || this.rest.length === 0) return;
     this.rest = this.rest.subarray(this.parse(this.rest, true));
@@ -119,9 +132,10 @@ class BlockReader {
   private swallow(): void {
     const why = this.rest.includes(QUOTE) ? 'a quote is not closed' : `the line is longer than ${LONGEST_RECORD_BYTES} bytes`;
     this.swallowed = { line: this.line, why };
-    const leftBytes = this.fileBytes - this.offsetBytes;
-    const [bytes, end] = leftBytes > this.rest.length ? [leftBytes, this.fileEnd] : [this.rest.length, this.rest];
-    this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes: bytes - lineEndBytes(end) }, false);
+    const leftBytes = (this.file?.fileBytes ?? 0) - this.offsetBytes;
+    const [bytes, end] = this.file && leftBytes > this.rest.length ? [leftBytes, this.file.fileEnd] : [this.rest.length, this.rest];
+    const shown = this.rest.subarray(0, SHOWN_OF_SWALLOWED_BYTES).toString('utf8');
+    this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes: bytes - lineEndBytes(end) }, false, shown);
   }
 
   /**
@@ -168,7 +182,8 @@ class BlockReader {
       const end = text.indexOf('\n');
       const spoilt = end < 0 ? text : text.slice(0, end + 1);
       const lengthBytes = spoilt.length - lineEndOf(spoilt).length;
-      this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes }, false);
+      const asItStands = Buffer.from(spoilt.slice(0, lengthBytes), 'latin1').toString('utf8');
+      this.take([], { line: this.line, offsetBytes: this.offsetBytes, lengthBytes }, false, asItStands);
       this.offsetBytes += spoilt.length;
       this.line++;
       text = text.slice(spoilt.length);

@@ -42,13 +42,21 @@ export function logArguments(texts: readonly string[], network: Network): readon
 }
 
 /** What is known of a log from its header. */
-interface LogHeader {
+export interface LogHeader {
   readonly layout: RecordLayout;
   /** For the content of each column; undefined for the site's, which belongs to the identity. */
   readonly seeds: readonly (ContentHash | undefined)[];
 }
 
-function headerOf(fields: readonly string[], log: LogArgument, line: number): LogHeader {
+/**
+ * What a header says of the columns.
+ *
+ * @param fields of the first record
+ * @param log its path and name for messages, and the site of a log that needs no column for it
+ * @param line on which it stands
+ * @throws UsageProblem for one that cannot be used
+ */
+export function headerOf(fields: readonly string[], log: Pick<LogArgument, 'path' | 'name' | 'site'>, line: number): LogHeader {
   const fault = (text: string): UsageProblem => new UsageProblem(`${log.path}: line ${line}: ${text}`);
   const doubled = fields.find((name, at) => fields.indexOf(name) !== at);
   if (doubled !== undefined) throw fault(`the column ${JSON.stringify(doubled)} stands twice; each column needs a name of its own`);
@@ -77,6 +85,16 @@ function headerOf(fields: readonly string[], log: LogArgument, line: number): Lo
     seeds: fields.map((name) => (name === 'site' ? undefined : columnSeed(name))),
   };
 }
+
+/** A header whose quotes are broken. */
+export const brokenHeader = (path: string, line: number): UsageProblem =>
+  new UsageProblem(
+    `${path}: line ${line}: a quote in the header is not closed, or followed by something else than a comma; the header must be whole`,
+  );
+
+/** A log without a header. */
+export const emptyLog = (path: string): UsageProblem =>
+  new UsageProblem(`${path}: is empty; its first line must be a header such as site,sequence,reading,sigma_ns,amplitude`);
 
 /** Room is made at once for this many records at most; logs of more let the columns grow. */
 const MOST_EXPECTED = 20_000_000;
@@ -109,10 +127,7 @@ export async function readLogs(
       log.path,
       (fields, place, isWhole) => {
         if (!header) {
-          if (!isWhole)
-            throw new UsageProblem(
-              `${log.path}: line ${place.line}: a quote in the header is not closed, or followed by something else than a comma; the header must be whole`,
-            );
+          if (!isWhole) throw brokenHeader(log.path, place.line);
           header = headerOf(fields, log, place.line);
           return;
         }
@@ -145,8 +160,7 @@ export async function readLogs(
       watch.warn(
         `${log.path}: line ${swallowed.line}: ${swallowed.why}: everything from there to the end of the file is one record, set aside`,
       );
-    if (!header)
-      throw new UsageProblem(`${log.path}: is empty; its first line must be a header such as site,sequence,reading,sigma_ns,amplitude`);
+    if (!header) throw emptyLog(log.path);
   }
   return store;
 }
