@@ -1,4 +1,4 @@
-import { once } from 'node:events';
+import { once, setMaxListeners } from 'node:events';
 import { shippedLeapSeconds } from '#shared/time/shipped-leap-seconds';
 import { presentInstant } from '../../tables/present';
 import { VERSION } from '../../version';
@@ -10,6 +10,7 @@ import { keepSession, readSession, resume } from './session';
 import { siteQueues } from './site-queues';
 
 const KEEP_MS = 10_000;
+const LISTENERS_A_SITE = 2; // its link, and its sleep between two ticks
 
 /** Where the demo streams to and from, and what tells it to end. */
 export interface FeedOptions {
@@ -34,6 +35,7 @@ export async function runFeed({ url, dataDir, signal, say }: FeedOptions): Promi
   const resumed = resume(readSession(dataDir), demo.firstTaiS, now().taiS);
   const queues = siteQueues(world, resumed);
   const keep = (): void => keepSession(dataDir, { ...resumed.session, lastTaiS: now().taiS });
+  setMaxListeners(LISTENERS_A_SITE * world.sites.size + 1, signal);
   const sites = Object.entries(demo.keys).map(async ([code, key]) => {
     const server = { url, key, software: `demo ${VERSION}` };
     try {
