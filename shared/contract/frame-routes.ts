@@ -63,7 +63,7 @@ export const frameMotion = z.discriminatedUnion(
         error: 'the id of another site than fromSiteId',
       }),
   ],
-  { error: `an object { } with "kind" ${KINDS}` },
+  { error: ({ input }) => (typeof input === 'object' && input !== null ? KINDS : `an object { } with "kind" ${KINDS}`) },
 );
 
 export type FrameMotionStated = z.infer<typeof frameMotion>;

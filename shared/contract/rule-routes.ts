@@ -37,7 +37,7 @@ export const ruleWindowGiven = z.discriminatedUnion(
       frameId: idOf('a frame of this network, or null for the geocentric one').nullable().optional(),
     }),
   ],
-  { error: `an object { } with "kind" ${WINDOW_KINDS}` },
+  { error: ({ input }) => (typeof input === 'object' && input !== null ? WINDOW_KINDS : `an object { } with "kind" ${WINDOW_KINDS}`) },
 );
 
 /** What a rule says. */
