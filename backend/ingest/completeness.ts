@@ -45,8 +45,8 @@ export class Completeness {
 
   constructor({ $client: client }: Db) {
     this.advance = client.prepare(
-      `UPDATE site_streams SET complete_tai_s = ?1, complete_ps = ?2, complete_said_at_ms = ?3 WHERE site_id = ?4
-       AND (complete_tai_s IS NULL OR (complete_tai_s, complete_ps) < (?1, ?2))`,
+      `UPDATE site_streams SET complete_tai_s = @taiS, complete_ps = @ps, complete_said_at_ms = @nowMs WHERE site_id = @siteId
+       AND (complete_tai_s IS NULL OR (complete_tai_s, complete_ps) < (@taiS, @ps))`,
     );
     // A span that has begun ends once it is said when; of two ends the later one holds.
     this.putSpan = client.prepare(
@@ -58,8 +58,9 @@ export class Completeness {
       'SELECT complete_tai_s AS taiS, complete_ps AS ps FROM site_streams WHERE site_id = ? AND complete_tai_s IS NOT NULL',
     );
     this.touch = client.prepare(
-      `UPDATE site_streams SET last_received_at_ms = ?1,
-         (last_tai_s, last_ps) = (SELECT tai_s, ps FROM events WHERE site_id = ?2 ORDER BY tai_s DESC, ps DESC LIMIT 1) WHERE site_id = ?2`,
+      `UPDATE site_streams SET last_received_at_ms = @nowMs,
+         (last_tai_s, last_ps) = (SELECT tai_s, ps FROM events WHERE site_id = @siteId ORDER BY tai_s DESC, ps DESC LIMIT 1)
+       WHERE site_id = @siteId`,
     );
   }
 
@@ -71,11 +72,11 @@ export class Completeness {
   /** Whether the site is now complete up to a later instant than before. */
   say(siteId: number, { upTo, live }: CompletenessSaid, nowMs: number): boolean {
     for (const { from, to } of live) this.putSpan.run(siteId, from.taiS, from.ps, to?.taiS ?? null, to?.ps ?? null, nowMs);
-    return upTo !== undefined && this.advance.run(upTo.taiS, upTo.ps, nowMs, siteId).changes > 0;
+    return upTo !== undefined && this.advance.run({ taiS: upTo.taiS, ps: upTo.ps, nowMs, siteId }).changes > 0;
   }
 
   /** When a site was last heard, and its latest event. */
   heard(siteId: number, nowMs: number): void {
-    this.touch.run(nowMs, siteId);
+    this.touch.run({ nowMs, siteId });
   }
 }

@@ -1,7 +1,7 @@
 import { SqliteError } from 'better-sqlite3';
 import { type Logger } from 'pino';
-import { type Tx } from '../audit/change';
 import { type Db } from '../db';
+import { commit, type Tx } from '../writer/commit';
 import { type GroupNotes } from './group-notes';
 import { type RecordKeeper } from './record-keeper';
 import { type Stored } from './stored';
@@ -49,8 +49,18 @@ export function writeBooks<T>(
   return { value, stored: notes.write(tx, nowMs) };
 }
 
-/** Whether a fault says that the database itself cannot be written, rather than that something in a record is not as we thought. */
-const isOfDatabase = (fault: unknown): boolean => fault instanceof SqliteError && !fault.code.startsWith('SQLITE_CONSTRAINT');
+/** A record that could be written in no form that we thought of; anything else that goes wrong is the database's fault or our own. */
+export class PoisonRecord extends Error {}
+
+/** Does what concerns one record alone, so that its faults are told apart from those of the database. */
+export function ofOneRecord<T>(work: () => T): T {
+  try {
+    return work();
+  } catch (cause) {
+    if (cause instanceof SqliteError && !cause.code.startsWith('SQLITE_CONSTRAINT')) throw cause;
+    throw new PoisonRecord('a record cannot be written', { cause });
+  }
+}
 
 /** Gathers whatever waits into one transaction after the other, and lets the event loop turn between two. */
 export class GroupLoop {
@@ -110,7 +120,7 @@ export class GroupLoop {
         for (const { work } of group) work(nowMs, tx);
       });
     } catch (fault) {
-      if (isOfDatabase(fault)) {
+      if (!(fault instanceof PoisonRecord)) {
         this.die(fault, group);
         return;
       }
@@ -132,7 +142,7 @@ export class GroupLoop {
         } catch (fault) {
           this.sources.log.error({ event: 'ingest:unreadable', err: fault }, 'a record could not be written');
           try {
-            if (isOfDatabase(fault)) throw fault;
+            if (!(fault instanceof PoisonRecord)) throw fault;
             this.commit((nowMs) => item.instead(part, nowMs));
           } catch (worse) {
             this.die(worse, group.slice(at));
@@ -150,12 +160,9 @@ export class GroupLoop {
     const now = nowMs();
     let told: readonly Stored[] = [];
     try {
-      db.transaction(
-        (tx) => {
-          told = writeBooks(this.sources, tx, now, () => work(now, tx)).stored;
-        },
-        { behavior: 'immediate' },
-      );
+      commit(db, (tx) => {
+        told = writeBooks(this.sources, tx, now, () => work(now, tx)).stored;
+      });
     } catch (fault) {
       keeper.forget();
       throw fault;

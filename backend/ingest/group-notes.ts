@@ -1,6 +1,6 @@
 import { type SET_ASIDE_WORDS } from '#schema/words';
 import { type Instant } from '#shared/time/instant';
-import { type Tx } from '../audit/change';
+import { type Tx } from '../writer/commit';
 import { type Db } from '../db';
 import { noteChange } from '../live/note-change';
 import { type StoredEvent } from '../reconcile/stored-event';

@@ -8,7 +8,7 @@ import { type Db } from '../db';
 import { type NetworkInForce } from '../reconcile/network-in-force';
 import { keepShippedLeapSeconds } from '../reconcile/tables-in-force';
 import { Completeness, type CompletenessSaid } from './completeness';
-import { GroupLoop, type Waiting } from './group-loop';
+import { GroupLoop, ofOneRecord, type Waiting } from './group-loop';
 import { GroupNotes, type SetAsideReason } from './group-notes';
 import { InForce } from './in-force';
 import { RecordKeeper, type Verdict } from './record-keeper';
@@ -134,7 +134,7 @@ export function openIngest({ db, log, nowMs, listener, fatal }: IngestSources): 
 
   function takeOne(siteId: number, record: SiteRecord, now: number): Verdict {
     const { at, site } = inForce.site(siteId);
-    return keeper.take(at, site, record, now);
+    return ofOneRecord(() => keeper.take(at, site, record, now));
   }
 
   function batch(siteId: number, records: readonly SiteRecord[]): Promise<readonly RecordAnswer[]> {
@@ -156,7 +156,7 @@ export function openIngest({ db, log, nowMs, listener, fatal }: IngestSources): 
         rows: records.length,
         work: (now) => {
           const { at, site } = inForce.site(siteId);
-          for (const [index, record] of records.entries()) answers[index] = keeper.take(at, site, record, now);
+          for (const [index, record] of records.entries()) answers[index] = ofOneRecord(() => keeper.take(at, site, record, now));
           completeness.heard(siteId, now);
         },
         done: () => resolve(answers),

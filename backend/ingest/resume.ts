@@ -47,7 +47,8 @@ export class Connections {
       )
       .pluck();
     this.connected = client.prepare(
-      `UPDATE site_streams SET connected_at_ms = (SELECT max(from_ms) FROM site_connections WHERE site_id = ?1 AND to_ms IS NULL) WHERE site_id = ?1`,
+      `UPDATE site_streams SET connected_at_ms = (SELECT max(from_ms) FROM site_connections WHERE site_id = @siteId AND to_ms IS NULL)
+       WHERE site_id = @siteId`,
     );
     this.complete = client.prepare<[number], { taiS: number; ps: number }>(
       'SELECT complete_tai_s AS taiS, complete_ps AS ps FROM site_streams WHERE site_id = ? AND complete_tai_s IS NOT NULL',
@@ -65,7 +66,7 @@ export class Connections {
   hello(siteId: number, keyId: number | null, nowMs: number): Resume {
     const connectionId = this.db.$client.transaction(() => {
       const { lastInsertRowid } = this.begin.run(siteId, keyId, nowMs);
-      this.connected.run(siteId);
+      this.connected.run({ siteId });
       return Number(lastInsertRowid);
     })();
     return { connectionId, series: this.standing(siteId), completeUpTo: this.complete.get(siteId) };
@@ -74,7 +75,7 @@ export class Connections {
   bye(connectionId: number, why: string, nowMs: number): void {
     this.db.$client.transaction(() => {
       const siteId = this.end.get(nowMs, why, connectionId);
-      if (siteId !== undefined) this.connected.run(siteId);
+      if (siteId !== undefined) this.connected.run({ siteId });
     })();
   }
 
