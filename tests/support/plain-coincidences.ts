@@ -3,8 +3,9 @@ import { C_M_S } from '#shared/constants';
 import { coincidenceSweep } from '#shared/coincidence/batch-finder';
 import { type KernelInput } from '#shared/coincidence/kernel';
 import { type CoincidenceRule } from '#shared/coincidence/rule';
-import { windowBounds } from '#shared/coincidence/window-bounds';
+import { type SeparationBounds, windowBounds } from '#shared/coincidence/window-bounds';
 import { type ErrorTables, type EventColumns } from '#shared/relativity/events';
+import { type Worldline } from '#shared/relativity/worldline';
 
 /** A site that moves in a straight line, its errors included. */
 export interface PlainSite {
@@ -120,20 +121,32 @@ const minus = (a: readonly number[], b: readonly number[]): number[] => a.map((x
 
 export const hasMovingFrame = (rule: CoincidenceRule): boolean => rule.window.kind === 'fixed' && rule.window.frame !== 'geocentric';
 
-export function boundsOf(network: PlainNetwork): KernelInput['bounds'] {
+/** The sites' worldlines as far as bounds need them, and how far apart two can be. */
+export function linesOf(network: PlainNetwork): {
+  readonly worldlines: readonly Worldline[];
+  readonly separation: (a: Worldline, b: Worldline) => SeparationBounds;
+} {
   const spreadS = network.spreadPs / 1e12;
-  const lines = network.sites.map((site) => ({
-    site,
+  const worldlines = network.sites.map((site) => ({
     placeAt: () => [0, 0, 0] as const,
     mostSpeedMS: length(site.velocityMS),
     mostRadiusM: length(site.placeM) + length(site.velocityMS) * spreadS + 1e-6,
   }));
-  return windowBounds(network.rule.window, lines, (a, b) => {
-    const [p, q] = [network.sites[lines.findIndex((l) => l === a)]!, network.sites[lines.findIndex((l) => l === b)]!];
-    const apart = length(minus(p.placeM, q.placeM));
-    const change = length(minus(p.velocityMS, q.velocityMS)) * spreadS + 1e-6;
-    return { leastM: Math.max(0, apart - change), mostM: apart + change };
-  });
+  const siteOf = (line: Worldline): PlainSite => network.sites[worldlines.findIndex((l) => l === line)]!;
+  return {
+    worldlines,
+    separation: (a, b) => {
+      const [p, q] = [siteOf(a), siteOf(b)];
+      const apart = length(minus(p.placeM, q.placeM));
+      const change = length(minus(p.velocityMS, q.velocityMS)) * spreadS + 1e-6;
+      return { leastM: Math.max(0, apart - change), mostM: apart + change };
+    },
+  };
+}
+
+export function boundsOf(network: PlainNetwork): KernelInput['bounds'] {
+  const { worldlines, separation } = linesOf(network);
+  return windowBounds(network.rule.window, worldlines, separation);
 }
 
 /** The kernel's input for events that are in order. */
