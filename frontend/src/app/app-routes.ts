@@ -1,5 +1,6 @@
 import { type Route, type Routes } from '@angular/router';
 import { type PolicyName } from '#shared/contract/policies';
+import { homeGuard } from './shell/home-guard';
 import { knownGuard, mayGuard, signedInGuard, strangerGuard } from './session/session-guards';
 
 const noPermission = () => import('./shell/not-permitted').then((file) => file.NotPermitted);
@@ -12,9 +13,32 @@ const pageFor = (policy: PolicyName, page: Route & { readonly path: string }): R
 
 /** Pages in the frame of the application, for who is signed in. */
 const inside: Routes = [
-  { path: '', pathMatch: 'full', redirectTo: 'desk' },
+  { path: '', pathMatch: 'full', canActivate: [homeGuard], children: [] },
+  ...pageFor('network:make', {
+    path: 'first-steps',
+    title: 'First steps',
+    loadComponent: () => import('./first-steps/first-steps').then((file) => file.FirstSteps),
+  }),
   { path: 'desk', title: 'Desk', loadComponent: () => import('./shell/desk-place').then((file) => file.DeskPlace) },
   { path: 'account', title: 'Your account', loadComponent: () => import('./account/account').then((file) => file.Account) },
+  ...pageFor('network:read', {
+    path: 'network',
+    title: 'Network',
+    loadComponent: () => import('./networks/network').then((file) => file.NetworkPage),
+  }),
+  ...pageFor('site:list', { path: 'sites', title: 'Sites', loadComponent: () => import('./sites/sites').then((file) => file.Sites) }),
+  ...pageFor('site:read', {
+    path: 'sites/:siteId',
+    title: 'Site',
+    loadComponent: () => import('./sites/site').then((file) => file.SitePage),
+  }),
+  ...pageFor('frame:list', { path: 'frames', title: 'Frames', loadComponent: () => import('./frames/frames').then((file) => file.Frames) }),
+  ...pageFor('rule:list', { path: 'rules', title: 'Rules', loadComponent: () => import('./rules/rules').then((file) => file.Rules) }),
+  ...pageFor('time-tables:read', {
+    path: 'tables',
+    title: 'Time and Earth',
+    loadComponent: () => import('./tables/tables').then((file) => file.Tables),
+  }),
   ...pageFor('person:list', {
     path: 'people',
     title: 'People',

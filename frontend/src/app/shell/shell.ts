@@ -7,22 +7,37 @@ import { ShortcutList } from '../commands/shortcut-list';
 import { ConnectionStore } from '../connection/connection-store';
 import { OfflineBanner } from '../connection/offline-banner';
 import { Preferences, type Theme } from '../preferences/preferences';
+import { NetworkStore } from '../networks/network-store';
 import { AskPassword } from '../session/ask-password';
 import { SessionStore } from '../session/session-store';
+import { TableWarnings } from '../tables/table-warnings';
 import { FrameGlyph } from '../ui/frame-glyph';
 import { Icon } from '../ui/icon';
 import { OpenDialog } from '../ui/open-dialog';
 import { Wordmark } from '../ui/wordmark';
 import { ConnectionMark } from './connection-mark';
-import { PLACES } from './navigation';
+import { FIRST_STEPS, PLACES } from './navigation';
+import { NetworkChooser } from './network-chooser';
 
 const IN_BOTTOM_BAR = 4;
+const SITES_NEEDED = 2; // for a pair
 const THEME_WORDS: Readonly<Record<Theme, string>> = { system: 'as the system', light: 'light', dark: 'dark' };
 
 /** The frame of the application around every page of who is signed in: top bar, rail or bottom bar, palette and keys. */
 @Component({
   selector: 'sw-shell',
-  imports: [ConnectionMark, FrameGlyph, Icon, OfflineBanner, RouterLink, RouterLinkActive, RouterOutlet, Wordmark],
+  imports: [
+    ConnectionMark,
+    FrameGlyph,
+    Icon,
+    NetworkChooser,
+    OfflineBanner,
+    RouterLink,
+    RouterLinkActive,
+    RouterOutlet,
+    TableWarnings,
+    Wordmark,
+  ],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './shell.html',
   styleUrl: './shell.scss',
@@ -35,7 +50,15 @@ export class Shell {
   protected readonly session = inject(SessionStore);
   protected readonly preferences = inject(Preferences);
 
-  protected readonly places = computed(() => PLACES.filter(({ policy }) => policy === undefined || this.session.may(policy)));
+  private readonly networks = inject(NetworkStore);
+  /** Whether the deployment still lacks what its coordinator was led to make. */
+  private readonly isEmpty = computed(
+    () => this.session.coordinatesAll() && (this.networks.sites.value()?.length ?? SITES_NEEDED) < SITES_NEEDED,
+  );
+  protected readonly places = computed(() => [
+    ...(this.isEmpty() ? [FIRST_STEPS] : []),
+    ...PLACES.filter(({ policy }) => policy === undefined || this.session.may(policy)),
+  ]);
   protected readonly inBar = computed(() => this.places().slice(0, IN_BOTTOM_BAR));
 
   constructor() {

@@ -1,0 +1,11 @@
+import { type RuleState } from '#shared/contract/rule-routes';
+
+/** When a rule takes two triggers of different sites as near, in words. */
+export function windowWords({ window }: Pick<RuleState, 'window'>): string {
+  if (window.kind === 'fixed') {
+    const frame = window.frameId === null ? 'the geocentric frame' : 'a frame of the network';
+    return `within ${window.widthNs} ns in ${frame}`;
+  }
+  const speed = window.speedC === 1 ? 'light-time' : `the time at ${window.speedC} c`;
+  return window.marginNs === 0 ? `${speed} and timing error` : `${speed}, timing error and ${window.marginNs} ns`;
+}
