@@ -1,16 +1,19 @@
 import { type FrameResolver } from '#shared/relativity/frame-resolver';
-import { type Instant } from '#shared/time/instant';
 import { type Db } from '../db';
+import { completenessOf } from '../ingest/completeness';
 import { type Stored, type StoredListener } from '../ingest/stored';
 import { type NetworkInForce } from '../reconcile/network-in-force';
 import { databaseLog } from './database-log';
 import { NetworkSearch } from './network-search';
+import { type StoredLog } from './stored-log';
 
 /** What the search of all networks stands on. */
 export interface SearchGround {
   /** The writing connection. */
   readonly db: Db;
   readonly nowMs: () => number;
+  /** What is in force of a network: the ingest's own, since the rows of what it hands over are of its error tables. */
+  readonly networkOf: (networkId: number) => NetworkInForce;
   /** The frames of a network, for rules whose window is fixed in one. */
   readonly framesOf: (network: NetworkInForce) => Pick<FrameResolver, 'velocityAt'>;
 }
@@ -24,18 +27,28 @@ export class CoincidenceSearch implements StoredListener {
 
   constructor(private readonly ground: SearchGround) {}
 
-  /**
-   * Takes a network in: what was stored and not searched when the process last ended is searched now, and the live edge is read.
-   *
-   * @param completeUpTo the instant up to which all its sites have sent everything
-   */
-  start(network: NetworkInForce, completeUpTo: Instant | undefined): void {
+  /** Takes a network in: what was stored and not searched when the process last ended is searched now, and the live edge is read. */
+  start(networkId: number): NetworkSearch {
     const { db, nowMs } = this.ground;
-    this.networks.set(network.id, new NetworkSearch({ db, nowMs, networkId: network.id }, this.logOf(network), completeUpTo));
+    const log = this.logOf(this.ground.networkOf(networkId));
+    const search = new NetworkSearch({ db, nowMs, networkId }, log, completenessOf(db, networkId));
+    this.networks.set(networkId, search);
+    return search;
   }
 
+  /** A search that failed half-way knows no longer what it knew: it is begun anew, from what is stored, with the next commit. */
   onStored = (stored: Stored): void => {
-    this.networks.get(stored.networkId)?.take(stored);
+    const search = this.networks.get(stored.networkId);
+    if (!search) {
+      this.start(stored.networkId);
+      return;
+    }
+    try {
+      search.take(stored);
+    } catch (fault) {
+      this.networks.delete(stored.networkId);
+      throw fault;
+    }
   };
 
   onInForce = (network: NetworkInForce): void => {
@@ -45,6 +58,11 @@ export class CoincidenceSearch implements StoredListener {
   /** A rule of a network was added, changed, or taken out of use. */
   rulesChanged(networkId: number): void {
     this.networks.get(networkId)?.rulesChanged();
+  }
+
+  /** Makes the finders of a network anew, for a set-up that was changed. */
+  rebuild(networkId: number): void {
+    this.networks.get(networkId)?.renew(this.logOf(this.ground.networkOf(networkId)));
   }
 
   /** Searches a network's whole log anew, by steps: a frame that a window is fixed in has changed. */
@@ -59,7 +77,7 @@ export class CoincidenceSearch implements StoredListener {
     return hasMore;
   }
 
-  private logOf(network: NetworkInForce): ReturnType<typeof databaseLog> {
+  private logOf(network: NetworkInForce): StoredLog {
     return databaseLog(this.ground.db, network, this.ground.framesOf(network));
   }
 }

@@ -36,25 +36,18 @@ function apply(stored: StoredNetwork, events: readonly PlainEvent[], { does, whi
     if (dies) stored.kill();
     else search.take(change);
   };
-  switch (does) {
-    case 'put':
-      return tell(stored.put(chosen));
-    case 'withdraw':
-      return tell(stored.withdraw(chosen));
-    case 'move':
-      return tell(stored.put(chosen.map((event, k) => (k === 2 ? { ...event, readingSigmaNs: 7 } : { ...event, atPs: elsewhere.atPs }))));
-    case 'conflict': {
-      tell(stored.withdraw(chosen));
-      stored.opened.take(stored.put(chosen));
-      return;
-    }
-    case 'complete':
-      return tell(stored.completeUpTo(elsewhere.atPs));
-    case 'kill':
-      return stored.kill();
-    default:
-      stored.finish();
-      expect(inForce(stored.db)).toEqual(batchInForce(stored.network, stored.standing.values()));
+  if (does === 'put') tell(stored.put(chosen));
+  else if (does === 'withdraw') tell(stored.withdraw(chosen));
+  else if (does === 'move')
+    tell(stored.put(chosen.map((event, k) => (k === 2 ? { ...event, readingSigmaNs: 7 } : { ...event, atPs: elsewhere.atPs }))));
+  else if (does === 'conflict') {
+    tell(stored.withdraw(chosen));
+    stored.opened.take(stored.put(chosen));
+  } else if (does === 'complete') tell(stored.completeUpTo(elsewhere.atPs));
+  else if (does === 'kill') stored.kill();
+  else {
+    stored.finish();
+    expect(inForce(stored.db)).toEqual(batchInForce(stored.network, stored.standing.values()));
   }
 }
 

@@ -1,5 +1,4 @@
 import { cpSync } from 'node:fs';
-import { join } from 'node:path';
 import { compareText } from '#shared/compare-text';
 import { type CoincidenceRule } from '#shared/coincidence/rule';
 import { pairOf } from '#shared/relativity/pair';
@@ -67,6 +66,7 @@ export class StoredNetwork {
   db: Db;
   /** What stands, by trigger. */
   readonly standing = new Map<number, Standing>();
+  private readonly triggerOf = new Map<string, number>();
   private readonly versions = new Map<string, StoredEvent>();
   private complete: Instant | undefined;
   private search: NetworkSearch | undefined;
@@ -155,7 +155,7 @@ export class StoredNetwork {
       const withdrawn: WithdrawnEvent[] = [];
       for (const event of events) {
         const known = this.find(event);
-        if (known && known.plain.atPs === event.atPs && known.plain.readingSigmaNs === event.readingSigmaNs) continue;
+        if (known?.plain.atPs === event.atPs && known.plain.readingSigmaNs === event.readingSigmaNs) continue;
         const stored = known
           ? {
               ...this.made(event, amplitudeOf),
@@ -166,6 +166,7 @@ export class StoredNetwork {
         if (known) this.keepVersion(known.stored, change);
         this.writeEvent(stored, change, known ? 'again' : 'new');
         this.standing.set(stored.triggerId, { plain: event, stored });
+        this.triggerOf.set(nameOf(event), stored.triggerId);
         arrived.push(stored);
       }
       return { arrived: [...new Map(arrived.map((event) => [event.triggerId, event])).values()], withdrawn };
@@ -206,9 +207,8 @@ export class StoredNetwork {
   }
 
   private find(event: PlainEvent): Standing | undefined {
-    return [...this.standing.values()].find(
-      ({ plain }) => plain.site === event.site && plain.series === event.series && plain.sequence === event.sequence,
-    );
+    const triggerId = this.triggerOf.get(nameOf(event));
+    return triggerId === undefined ? undefined : this.standing.get(triggerId);
   }
 
   private made(event: PlainEvent, amplitudeOf: (event: PlainEvent) => number): Omit<StoredEvent, 'triggerId' | 'eventVersion'> {
