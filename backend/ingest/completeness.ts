@@ -26,7 +26,7 @@ export function completenessOf(db: Db, networkId: number): Instant | undefined {
 /** A span in which a site could trigger, both ends included; without an end while it goes on. */
 export interface LiveSpan {
   readonly from: Instant;
-  readonly to: Instant | undefined;
+  readonly to?: Instant | undefined;
 }
 
 /** What a site says of its stream. */

@@ -154,3 +154,8 @@ export function insertNetwork(db: Db, input: unknown, code = 'net'): NetworkRows
   const siteIds = new Map(file.sites.map((site) => [site.code, insertSite(db, networkId, clockIds, site)]));
   return { networkId, siteIds, clockIds, frameIds: insertFrames(db, networkId, siteIds, file) };
 }
+
+/** Somebody who may decide; the same at the second asking. */
+export const personRow = (db: Db): number =>
+  db.$client.prepare<[], number>('SELECT id FROM people LIMIT 1').pluck().get() ??
+  insertRow(db, 'people', { email: 'ada@example.org', name: 'Ada', created_at: AT });
