@@ -1,9 +1,9 @@
 import { type HeldSeries, type Runs, type SiteState, type SiteStateKept } from '#shared/contract/site-socket';
+import { type Outcome } from '#shared/outcome';
 import { type SiteRecord } from '#shared/contract/site-record';
 
-/** One connection of a site: by which key it came, and for which site of which network. */
+/** Who sends: by which key, and for which site of which network. */
 export interface SiteSender {
-  readonly connectionId: string;
   readonly keyId: number;
   readonly siteId: number;
   readonly networkId: number;
@@ -11,6 +11,8 @@ export interface SiteSender {
 
 /** What is held of a site when it says hello. */
 export interface HeldOfSite {
+  /** By which the desk knows the connection. */
+  readonly connectionId: number;
   readonly series: readonly HeldSeries[];
   /** Whether there are more numberings or ranges than `series` says. */
   readonly more: boolean;
@@ -32,7 +34,8 @@ export interface BatchFates {
 export interface SiteDesk {
   readonly hello: (sender: SiteSender, software: string) => Promise<HeldOfSite>;
   readonly batch: (sender: SiteSender, records: readonly SiteRecord[]) => Promise<BatchFates>;
-  readonly state: (sender: SiteSender, state: SiteState) => Promise<Pick<SiteStateKept, 'completeTo'>>;
-  /** The connection is no more, and why. */
-  readonly bye: (sender: SiteSender, why: string) => Promise<void>;
+  /** Gives the instant to which the site is complete now, or the problem with what it said. */
+  readonly state: (sender: SiteSender, state: SiteState) => Promise<Outcome<SiteStateKept['completeTo']>>;
+  /** A connection is no more, and why. */
+  readonly bye: (connectionId: number, why: string) => Promise<void>;
 }

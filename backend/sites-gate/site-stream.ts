@@ -73,6 +73,7 @@ export class SiteStream {
   private asked = 0;
   private unsent = 0;
   private why: string | undefined;
+  private connectionId: number | undefined;
 
   constructor(
     private readonly socket: Socket,
@@ -81,7 +82,7 @@ export class SiteStream {
   ) {
     const { keyId, siteId, networkId } = holder;
     this.siteId = siteId;
-    this.sender = { connectionId: socket.id, keyId, siteId, networkId };
+    this.sender = { keyId, siteId, networkId };
     this.account = ground.office.open();
     this.helloBy = setTimeout(() => this.end('No hello came.', ground.retryAfterMs()), HELLO_MS);
     socket.onAny((event: unknown, ...args: unknown[]) => this.take(String(event).slice(0, MOST_SHOWN_NAME), args));
@@ -91,7 +92,7 @@ export class SiteStream {
 
   /** Tells of credit that there is to give. */
   giveCredit(): void {
-    if (!this.hasSaidHello || !this.socket.connected) return;
+    if (this.connectionId === undefined || !this.socket.connected) return;
     const granted = this.ground.office.grant(this.account);
     if (granted.records > 0 || granted.bytes > 0) this.tell('stream:credited', granted);
   }
@@ -118,8 +119,11 @@ export class SiteStream {
     const { siteId, keyId } = this.sender;
     const ended = this.why ?? why;
     this.ground.log.info({ event: 'site-stream:ended', siteId, keyId, why: ended, faults: this.faults }, 'a site is no longer connected');
-    if (!this.hasSaidHello) return;
-    this.ground.desk.bye(this.sender, ended).catch((fault: unknown) => this.ground.log.error(fault, 'the end of a stream was not kept'));
+    if (this.connectionId !== undefined) this.bye(this.connectionId, ended);
+  }
+
+  private bye(connectionId: number, why: string): void {
+    this.ground.desk.bye(connectionId, why).catch((fault: unknown) => this.ground.log.error(fault, 'the end of a stream was not kept'));
   }
 
   private tell(name: SiteNewsName, news: unknown): void {
@@ -224,9 +228,12 @@ export class SiteStream {
   private async hello({ protocol, software }: SiteHello): Promise<Answer> {
     if (protocol !== SITE_PROTOCOL)
       return refusalOf('protocol', `The protocol ${protocol} is not spoken here: this server speaks ${SITE_PROTOCOL}.`);
-    const { series, more, completeTo } = await this.ground.desk.hello(this.sender, software);
-    clearTimeout(this.helloBy);
+    if (this.hasSaidHello) return this.unusable('The hello of this connection was said already.');
     this.hasSaidHello = true;
+    clearTimeout(this.helloBy);
+    const { connectionId, series, more, completeTo } = await this.ground.desk.hello(this.sender, software);
+    if (this.socket.connected) this.connectionId = connectionId;
+    else this.bye(connectionId, 'the link was lost');
     return {
       ok: true,
       protocol: SITE_PROTOCOL,
@@ -279,7 +286,10 @@ export class SiteStream {
   }
 
   private async state(state: SiteState): Promise<Answer> {
-    return { ok: true, ...(await this.ground.desk.state(this.sender, state)) };
+    const kept = await this.ground.desk.state(this.sender, state);
+    if (kept.ok) return { ok: true, completeTo: kept.value };
+    const { code, where, text } = kept.problem;
+    return code === 'unknown' ? refusalOf('unknown', text, { retryAfterMs: RETRY_UNKNOWN_MS }) : this.unusable(`${where} ${text}`);
   }
 }
 

@@ -3,6 +3,7 @@ import { type AddressInfo } from 'node:net';
 import { pino } from 'pino';
 import { io, type Socket } from 'socket.io-client';
 import { networks, siteKeys, sites } from '#schema/schema';
+import { valueOf } from '#shared/outcome';
 import { type Runs } from '#shared/contract/site-socket';
 import { type SiteRecord } from '#shared/contract/site-record';
 import { newSiteKey } from '../../backend/accounts/site-key-use';
@@ -34,7 +35,7 @@ export function recordingDesk(): RecordingDesk {
     unsureEvery: 0,
     hello: (_sender, software) => {
       desk.said.push(`hello ${software}`);
-      return Promise.resolve({ series: [], more: false, completeTo: null });
+      return Promise.resolve({ connectionId: 1, series: [], more: false, completeTo: null });
     },
     batch: async ({ siteId }, records) => {
       desk.attempts++;
@@ -56,9 +57,9 @@ export function recordingDesk(): RecordingDesk {
     },
     state: (_sender, state) => {
       desk.said.push(`state ${JSON.stringify(state)} after ${kept.size}`);
-      return Promise.resolve({ completeTo: state.completeTo ?? null });
+      return Promise.resolve(valueOf(state.completeTo ?? null));
     },
-    bye: (_sender, why) => {
+    bye: (_connectionId, why) => {
       desk.said.push(`bye ${why}`);
       return Promise.resolve();
     },
