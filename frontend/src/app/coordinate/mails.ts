@@ -22,7 +22,6 @@ export class Mails {
   private readonly api = inject(ApiClient);
   private readonly toasts = inject(ToastStore);
   protected readonly withLinks = withLinks;
-  protected readonly origin = location.origin;
   protected readonly mails = new LongList<KeptMail>(
     (cursor) => this.api.call(KEPT_MAIL_ROUTES.listKeptMails, { query: { cursor } }),
     (text) => this.toasts.fail(text),

@@ -2,11 +2,15 @@ import { describe, expect, it } from 'vitest';
 import { withLinks } from './with-links';
 
 describe('the text of a mail', () => {
-  it('has the addresses of this server as links, and of no other', () => {
-    const text = 'Choose here:\n\nhttp://localhost:4210/invitation#abc\n\nnot http://localhost:4210.example/x';
-    expect(withLinks(text, 'http://localhost:4210').filter(({ link }) => link)).toEqual([
-      { text: 'http://localhost:4210/invitation#abc', link: true },
+  const text = 'Choose here:\n\nhttp://localhost:4210/invitation#a-b_c\n\nnot http://localhost:4210/people';
+
+  it('has its links as paths of the server that is open, and no other address as one', () => {
+    expect(withLinks(text).filter(({ href }) => href !== undefined)).toEqual([
+      { text: 'http://localhost:4210/invitation#a-b_c', href: '/invitation#a-b_c' },
     ]);
-    expect(withLinks(text, 'http://localhost:4210').map((piece) => piece.text).join('')).toBe(text); // prettier-ignore
+  });
+
+  it('is whole', () => {
+    expect(withLinks(text).reduce((sum, piece) => sum + piece.text, '')).toBe(text);
   });
 });

@@ -1,15 +1,16 @@
-/** A piece of a text: words, or an address of this server that can be followed. */
+/** A piece of a text: words, and for a link of ours the address behind it on the server that is open. */
 export interface Piece {
   readonly text: string;
-  readonly link: boolean;
+  readonly href: string | undefined;
 }
 
+const ADDRESS = /(https?:\/\/[^\s<>"]+)/;
+const OURS = /^https?:\/\/[^/]+(\/(?:invitation|new-password)#[\w-]+)$/;
+
 /**
- * Takes a text apart at the addresses of one server.
- *
- * @param text of a mail
- * @param origin whose addresses become links; those of any other stay words
+ * Takes the text of a kept mail apart at its links: they are followed on the server that is open, by whichever of its names the mail says.
+ * Every other address stays words.
  */
-export function withLinks(text: string, origin: string): readonly Piece[] {
-  return text.split(/(https?:\/\/[^\s<>"]+)/).map((piece) => ({ text: piece, link: piece.startsWith(`${origin}/`) }));
+export function withLinks(text: string): readonly Piece[] {
+  return text.split(ADDRESS).map((piece) => ({ text: piece, href: OURS.exec(piece)?.[1] }));
 }

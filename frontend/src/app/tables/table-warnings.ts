@@ -14,7 +14,7 @@ import { TableStore } from './table-store';
       <p>
         <sw-icon name="warning" /><span>{{ warning.text }}</span>
         @if (session.coordinatesAll()) {
-          <a routerLink="/tables">Load a newer table</a>
+          <a routerLink="/tables">Load a table</a>
         }
       </p>
     }
@@ -32,6 +32,9 @@ import { TableStore } from './table-store';
     }
     span {
       flex: 1;
+    }
+    span::first-letter {
+      text-transform: uppercase;
     }
     @media (max-width: 700px) {
       p {

@@ -16,12 +16,12 @@ const GROUND = { light: 'rgb(238, 241, 234)', dark: 'rgb(15, 21, 19)' };
 
 for (const colorScheme of ['light', 'dark'] as const)
   for (const viewport of SIZES)
-    test.describe(`the first page, ${colorScheme}, ${viewport.width} px wide`, () => {
+    test.describe(`the page about Skewline, ${colorScheme}, ${viewport.width} px wide`, () => {
       test.use({ colorScheme, viewport });
 
       test('says what Skewline is, its limits, and that the database answers', async ({ page, watch }) => {
-        await page.goto('/');
-        await expect(page).toHaveTitle('Skewline: one order, where there is one');
+        await page.goto('/about');
+        await expect(page).toHaveTitle('One order, where there is one: Skewline');
         await expect(page.getByRole('heading', { level: 1 })).toHaveText('Some orders depend on the frame.');
         await expect(page.getByRole('main')).toContainText('reconciles the trigger logs of a distributed detector network');
         for (const limit of LIMITS) await expect(page.getByRole('main')).toContainText(limit);
@@ -33,7 +33,7 @@ for (const colorScheme of ['light', 'dark'] as const)
       });
 
       test('stands in its own colours and fonts and within its width', async ({ page }) => {
-        await page.goto('/');
+        await page.goto('/about');
         await expect(page.getByRole('status')).toContainText('The database answers.');
         expect(await page.evaluate(() => getComputedStyle(document.body).backgroundColor)).toBe(GROUND[colorScheme]);
         await page.evaluate(() => document.fonts.ready);
@@ -47,14 +47,14 @@ for (const colorScheme of ['light', 'dark'] as const)
       });
 
       test('draws light at 45 degrees', async ({ page }) => {
-        await page.goto('/');
+        await page.goto('/about');
         const ray = await page.locator('sw-turning-picture path.light').first().getAttribute('d');
         const [x1 = 0, y1 = 0, x2 = 0, y2 = 0] = (ray ?? '').match(/-?[\d.]+/g)?.map(Number) ?? [];
         expect(Math.abs((y2 - y1) / (x2 - x1))).toBeCloseTo(1, 4);
       });
 
       test('has no fault that axe finds, also when the database or the server is gone', async ({ page }) => {
-        await page.goto('/');
+        await page.goto('/about');
         await expect(page.getByRole('status')).toContainText('The database answers.');
         const faults = async () => (await new AxeBuilder({ page }).withTags(WCAG).analyze()).violations;
         expect(await faults()).toEqual([]);
@@ -74,7 +74,7 @@ for (const colorScheme of ['light', 'dark'] as const)
 test('a database that is deleted is told on the page, and again well after a restart', async ({ page }) => {
   const folder = newFolder('browser-gone');
   const first = await startServer({ DATA_DIR: folder });
-  await page.goto(first.url);
+  await page.goto(`${first.url}about`);
   await expect(page.getByRole('status')).toContainText('The database answers.');
   rmSync(join(folder, 'skewline.sqlite'));
   await page.reload();
@@ -91,13 +91,13 @@ test('a database that is deleted is told on the page, and again well after a res
 });
 
 test('the skip link leads past the header by the keyboard', async ({ page }) => {
-  await page.goto('/');
+  await page.goto('/about');
   await expect(page.getByRole('main')).toBeVisible();
   await page.keyboard.press('Tab');
   await expect(page.getByRole('link', { name: 'Skip to the content' })).toBeFocused();
   await page.keyboard.press('Enter');
   await expect(page.getByRole('main')).toBeFocused();
-  expect(new URL(page.url()).pathname).toBe('/');
+  expect(new URL(page.url()).pathname).toBe('/about');
 });
 
 test('an address that leads nowhere says so and leads back', async ({ page, watch }) => {
@@ -106,12 +106,12 @@ test('an address that leads nowhere says so and leads back', async ({ page, watc
   await expect(page.getByRole('heading', { level: 1 })).toHaveText('No such page');
   expect((await new AxeBuilder({ page }).withTags(WCAG).analyze()).violations).toEqual([]);
   await page.getByRole('link', { name: 'the first page' }).click();
-  await expect(page.getByRole('heading', { level: 1 })).toHaveText('Some orders depend on the frame.');
+  await expect(page.getByRole('heading', { level: 1 })).toHaveText('Sign in');
   expect(watch.faults).toEqual([]);
 });
 
 test('an injected script does not run', async ({ page }) => {
-  await page.goto('/');
+  await page.goto('/about');
   const outcome = await page.evaluate(() => {
     const box = document.createElement('div');
     try {
