@@ -3,7 +3,7 @@ import { type CoincidenceBrief } from '#shared/contract/coincidence';
 import { type Order } from '#shared/contract/list-query';
 import { behind, orderedBy, timeBounds, type Position } from '../search/keyset';
 import { joined, part, type Query } from '../search/query';
-import { MOST_CANDIDATES, type Narrowing, type Search } from '../search/run-search';
+import { type Narrowing, type Search } from '../search/run-search';
 
 /** A row of the list of coincidences. */
 export interface CoincidenceRow {
@@ -202,7 +202,7 @@ function narrowingOf(asked: CoincidencesAsked, way: Way): Narrowing {
       ),
     );
   return {
-    count: part(`SELECT count(*) FROM (SELECT 1 FROM ${way.from} WHERE ${counted.sql} LIMIT ?)`, ...counted.values, MOST_CANDIDATES + 1),
+    countTo: (most) => part(`SELECT count(*) FROM (SELECT 1 FROM ${way.from} WHERE ${counted.sql} LIMIT ?)`, ...counted.values, most),
     rows: select(way, conditions, orderedBy(columns, order), limit),
   };
 }

@@ -1,7 +1,7 @@
-import { type FrameResolver } from '#shared/relativity/frame-resolver';
 import { type Db } from '../db';
 import { completenessOf } from '../ingest/completeness';
 import { type Stored, type StoredListener } from '../ingest/stored';
+import { framesInForce } from '../reconcile/frames-in-force';
 import { type NetworkInForce } from '../reconcile/network-in-force';
 import { databaseLog } from './database-log';
 import { NetworkSearch } from './network-search';
@@ -14,8 +14,6 @@ export interface SearchGround {
   readonly nowMs: () => number;
   /** What is in force of a network: the ingest's own, since the rows of what it hands over are of its error tables. */
   readonly networkOf: (networkId: number) => NetworkInForce;
-  /** The frames of a network, for rules whose window is fixed in one. */
-  readonly framesOf: (network: NetworkInForce) => Pick<FrameResolver, 'velocityAt'>;
 }
 
 /**
@@ -78,6 +76,9 @@ export class CoincidenceSearch implements StoredListener {
   }
 
   private logOf(network: NetworkInForce): StoredLog {
-    return databaseLog(this.ground.db, network, this.ground.framesOf(network));
+    const { db } = this.ground;
+    const frames = framesInForce(db, network);
+    if (!frames.ok) throw new Error(`the frames of network ${network.code}: ${frames.problem.where} ${frames.problem.text}`);
+    return databaseLog(db, network, frames.value.resolver);
   }
 }
