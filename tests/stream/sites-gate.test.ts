@@ -41,7 +41,7 @@ describe('16 an origin', () => {
   });
 
   it('that is ours, or that a program does not say, is', async () => {
-    for (const headers of [{ origin: gate.url }, {}]) {
+    for (const headers of [{ origin: gate.url }, {}] as Record<string, string>[]) {
       const socket = plainLink(gate.url, gate.keys[0], headers);
       expect(await connecting(socket)).toBeUndefined();
       socket.disconnect();
