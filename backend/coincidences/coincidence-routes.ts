@@ -3,6 +3,7 @@ import { USUAL_ITEMS } from '#shared/contract/page';
 import { absent } from '../api/refusal';
 import { serve, type Served } from '../api/serve';
 import { placeOfNetwork } from '../networks/network-rows';
+import { atChange, lastChange } from '../search/at-change';
 import { partFrom, positionFrom, positionText } from '../search/keyset';
 import { rowsOf } from '../search/query';
 import { sitesWithin } from '../search/sites-within';
@@ -20,15 +21,19 @@ export const coincidenceRoutes = (): Served[] => [
       const { cursor, sort = 'time', order = 'up', limit = USUAL_ITEMS, siteIds = [], ruleId, from, to, leastFold, state, name } = query;
       const { columns, positionOf } = COINCIDENCE_SORTINGS[sort];
       const after = cursor === undefined ? undefined : positionFrom(cursor, sort, columns.length);
-      if (sitesWithin(db, networkId, siteIds)?.length !== siteIds.length) return NONE;
+      const change = lastChange(db, networkId); // before a search, which reads by itself: it holds at least what there was then
+      if (sitesWithin(db, networkId, siteIds)?.length !== siteIds.length) return { ...NONE, change };
       const versions =
         ruleId === undefined ? undefined : rowsOf<{ id: number }>(db, ruleVersionsQuery(networkId, ruleId)).map(({ id }) => id);
-      if (versions?.length === 0) return NONE;
+      if (versions?.length === 0) return { ...NONE, change };
       const filters = { from, to, class: query.class, leastFold, state, name, siteIds, ruleVersionIds: versions };
       const list = coincidenceList({ networkId, ...filters, sort, order, after, limit });
-      const found = list.kind === 'query' ? rowsOf<CoincidenceRow>(db, list.query) : await searcher.run<CoincidenceRow>(list.search);
-      const { items, next, back } = partFrom(found, limit, (row) => positionText(sort, positionOf(row)));
-      return { items: coincidencesInBrief(db, items), next, back };
+      const listed = (found: readonly CoincidenceRow[]) => {
+        const { items, next, back } = partFrom(found, limit, (row) => positionText(sort, positionOf(row)));
+        return { items: coincidencesInBrief(db, items), next, back };
+      };
+      if (list.kind === 'query') return atChange(db, networkId, () => listed(rowsOf<CoincidenceRow>(db, list.query)));
+      return { ...listed(await searcher.run<CoincidenceRow>(list.search)), change };
     },
   }),
   serve(COINCIDENCE_ROUTES.readCoincidence, {

@@ -6,6 +6,7 @@ import { serve, type Served } from '../api/serve';
 import { coincidencesInBrief } from '../coincidences/coincidence-brief';
 import { coincidencesOfEventQuery, type CoincidenceRow } from '../coincidences/coincidence-list';
 import { placeOfNetwork } from '../networks/network-rows';
+import { atChange, lastChange } from '../search/at-change';
 import { partFrom, positionFrom, positionText } from '../search/keyset';
 import { rowsOf } from '../search/query';
 import { sitesWithin } from '../search/sites-within';
@@ -24,11 +25,15 @@ export const eventRoutes = (): Served[] => [
       const { cursor, order = 'up', limit = USUAL_ITEMS, kind, from, to } = query;
       const after = cursor === undefined ? undefined : positionFrom(cursor, BY_TIME, TIME_WIDTH);
       const siteIds = sitesWithin(db, networkId, sitesShown(sitesSeen(caller, networkId), query.siteIds));
-      if (siteIds?.length === 0) return { items: [], next: null, back: null };
+      const change = lastChange(db, networkId); // before a search, which reads by itself: it holds at least what there was then
+      if (siteIds?.length === 0) return { items: [], next: null, back: null, change };
       const asked = eventListQuery({ networkId, siteIds, kind, from, to, after, order, limit });
-      const found = kind === undefined ? rowsOf<EventRow>(db, asked) : await searcher.run<EventRow>({ narrowings: [], walk: asked });
-      const { items, next, back } = partFrom(found, limit, ({ taiS, ps, id }) => positionText(BY_TIME, [taiS, ps, id]));
-      return { items: eventsInBrief(db, items), next, back };
+      const listed = (found: readonly EventRow[]) => {
+        const { items, next, back } = partFrom(found, limit, ({ taiS, ps, id }) => positionText(BY_TIME, [taiS, ps, id]));
+        return { items: eventsInBrief(db, items), next, back };
+      };
+      if (kind === undefined) return atChange(db, networkId, () => listed(rowsOf<EventRow>(db, asked)));
+      return { ...listed(await searcher.run<EventRow>({ narrowings: [], walk: asked })), change };
     },
   }),
   serve(EVENT_ROUTES.readEvent, {

@@ -4,6 +4,7 @@ import { sitesSeen, sitesShown } from '../accounts/sites-seen';
 import { absent } from '../api/refusal';
 import { serve, type Served } from '../api/serve';
 import { placeOfNetwork } from '../networks/network-rows';
+import { atChange, lastChange } from '../search/at-change';
 import { partFrom, positionFrom, positionText } from '../search/keyset';
 import { rowsOf } from '../search/query';
 import { sitesWithin } from '../search/sites-within';
@@ -17,20 +18,18 @@ export const setAsideRoutes = (): Served[] => [
     handle: async ({ params: { networkId }, query, caller }, { db, searcher }) => {
       const { cursor, order = 'up', limit = USUAL_ITEMS, state = 'open', reason } = query;
       const siteIds = sitesWithin(db, networkId, sitesShown(sitesSeen(caller, networkId), query.siteIds));
-      if (siteIds?.length === 0) return { items: [], next: null, back: null };
+      const change = lastChange(db, networkId); // before a search, which reads by itself: it holds at least what there was then
+      if (siteIds?.length === 0) return { items: [], next: null, back: null, change };
       const sites = { siteIds };
       const after = cursor === undefined ? undefined : positionFrom(cursor, sortOf(sites), widthOf(sites));
       const { query: asked, isAnswered } = setAsideListQuery({ networkId, siteIds, state, reason, order, after, limit });
-      const found =
-        isAnswered || areFew(db, siteIds)
-          ? rowsOf<SetAsidePlace>(db, withoutClock(asked))
-          : await searcher.run<SetAsidePlace>({ narrowings: [], walk: asked });
-      const { items, next, back } = partFrom(found, limit, (row) => positionText(sortOf(sites), positionOf(sites, row)));
-      const rows = setAsidesOf(
-        db,
-        items.map(({ id }) => id),
-      );
-      return { items: rows.map(({ networkId: _, ...row }) => row), next, back };
+      const listed = (found: readonly SetAsidePlace[]) => {
+        const { items, next, back } = partFrom(found, limit, (row) => positionText(sortOf(sites), positionOf(sites, row)));
+        const ids = items.map(({ id }) => id);
+        return { items: setAsidesOf(db, ids).map(({ networkId: _, ...row }) => row), next, back };
+      };
+      if (isAnswered || areFew(db, siteIds)) return atChange(db, networkId, () => listed(rowsOf<SetAsidePlace>(db, withoutClock(asked))));
+      return { ...listed(await searcher.run<SetAsidePlace>({ narrowings: [], walk: asked })), change };
     },
   }),
   serve(SET_ASIDE_ROUTES.readSetAside, {

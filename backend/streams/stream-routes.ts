@@ -5,6 +5,7 @@ import { sitesSeen } from '../accounts/sites-seen';
 import { absent, unusable } from '../api/refusal';
 import { serve, type Served } from '../api/serve';
 import { placeOfNetwork } from '../networks/network-rows';
+import { atChange } from '../search/at-change';
 import { partFrom, positionFrom, positionText } from '../search/keyset';
 import { rowsOf } from '../search/query';
 import { type ChangeRow, changesQuery, headQuery } from './change-list';
@@ -55,11 +56,12 @@ export const streamRoutes = (): Served[] => [
   }),
   serve(STREAM_ROUTES.readCompleteness, {
     placeOf: ({ params: { networkId } }, { db }) => placeOfNetwork(db, networkId),
-    handle: ({ params: { networkId }, caller }, { db, nowMs }) => {
-      const streams = streamsOf(db, networkId, nowMs());
-      const seen = sitesSeen(caller, networkId);
-      return { completeTo: leastComplete(streams), sites: streams.filter(({ siteId }) => seen?.includes(siteId) ?? true) };
-    },
+    handle: ({ params: { networkId }, caller }, { db, nowMs }) =>
+      atChange(db, networkId, () => {
+        const streams = streamsOf(db, networkId, nowMs());
+        const seen = sitesSeen(caller, networkId);
+        return { completeTo: leastComplete(streams), sites: streams.filter(({ siteId }) => seen?.includes(siteId) ?? true) };
+      }),
   }),
   serve(STREAM_ROUTES.listChanges, {
     placeOf: ({ params: { networkId } }, { db }) => placeOfNetwork(db, networkId),

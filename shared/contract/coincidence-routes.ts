@@ -1,6 +1,6 @@
 import * as z from 'zod';
 import { COINCIDENCE_CLASSES, coincidenceBrief, coincidenceInFull } from './coincidence';
-import { idsText, isUsableSpan, partOf, partQuery, SPAN_FAULT, spanQuery, wordText } from './list-query';
+import { idsText, isUsableSpan, partAt, partQuery, SPAN_FAULT, spanQuery, wordText } from './list-query';
 import { idText } from './page';
 import { route } from './routes';
 
@@ -39,7 +39,7 @@ export const COINCIDENCE_ROUTES = {
           .optional(),
       })
       .refine(isUsableSpan, SPAN_FAULT),
-    answer: partOf(coincidenceBrief),
+    answer: partAt(coincidenceBrief),
   }),
   readCoincidence: route('GET', '/coincidences/:coincidenceId', {
     policy: 'coincidence:read',

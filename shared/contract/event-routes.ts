@@ -2,7 +2,7 @@ import * as z from 'zod';
 import { KINDS, SIGMA_SOURCES } from '../reconcile/record';
 import { coincidenceBrief } from './coincidence';
 import { instant } from './leaves';
-import { idsText, isUsableSpan, MOST_IDS, partOf, partQuery, SPAN_FAULT, spanQuery, wordText } from './list-query';
+import { idsText, isUsableSpan, MOST_IDS, partAt, partOf, partQuery, SPAN_FAULT, spanQuery, wordText } from './list-query';
 import { idText } from './page';
 import { utc } from './people';
 import { route } from './routes';
@@ -145,7 +145,7 @@ export const EVENT_ROUTES = {
     query: z
       .strictObject({ ...partQuery, ...spanQuery, siteIds: idsText(MOST_IDS).optional(), kind: wordText(...KINDS) })
       .refine(isUsableSpan, SPAN_FAULT),
-    answer: partOf(eventBrief),
+    answer: partAt(eventBrief),
   }),
   readEvent: route('GET', '/events/:eventId', { policy: 'event:read', params: eventParams, answer: eventInFull }),
   /** Those in force that hold it, in time order. */

@@ -75,3 +75,9 @@ export const SPAN_FAULT = { path: ['to'], error: `an instant behind "from", at m
  */
 export const partOf = <Item extends z.ZodType>(item: Item) =>
   z.strictObject({ items: z.array(item).max(MOST_ITEMS), next: z.string().nullable(), back: z.string().nullable() });
+
+/**
+ * A part of a list that the live socket goes on from: `change` is the number of the network's last change when it was read. The changes
+ * behind it are what is not in it yet (live-socket.ts); a search may hold some of them already, which doubles nothing.
+ */
+export const partAt = <Item extends z.ZodType>(item: Item) => partOf(item).extend({ change: z.int() });

@@ -107,6 +107,10 @@ export const POLICIES = {
   'completeness:read': at(...ROLES), // an operator has their sites, and how far the network is
   'change:list': at('coordinator', 'analyst', 'reviewer'),
 
+  'network:follow': at(...ROLES), // of what follows an operator has their sites', and no coincidences
+  'network:missed': at(...ROLES),
+  'network:leave': signedIn,
+
   'audit:read': at('coordinator'),
   'kept-mail:read': at('coordinator'), // of the deployment: a kept mail may hold anyone's link
 } as const satisfies Readonly<Record<string, Policy>>;

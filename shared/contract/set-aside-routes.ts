@@ -1,5 +1,5 @@
 import * as z from 'zod';
-import { idsText, MOST_IDS, partOf, partQuery, wordText } from './list-query';
+import { idsText, MOST_IDS, partAt, partQuery, wordText } from './list-query';
 import { idText } from './page';
 import { utc } from './people';
 import { route } from './routes';
@@ -91,7 +91,7 @@ export const SET_ASIDE_ROUTES = {
       reason: wordText(...SET_ASIDE_REASONS),
       siteIds: idsText(MOST_IDS).optional(),
     }),
-    answer: partOf(setAside),
+    answer: partAt(setAside),
   }),
   /** With all contents of its identity where it could be read as a record: of a conflict, which may stand. */
   readSetAside: route('GET', '/set-asides/:setAsideId', {

@@ -77,7 +77,7 @@ export const STREAM_ROUTES = {
   readCompleteness: route('GET', '/networks/:networkId/completeness', {
     policy: 'completeness:read',
     params: networkParams,
-    answer: z.strictObject({ completeTo: instant().nullable(), sites: z.array(siteStream) }),
+    answer: z.strictObject({ completeTo: instant().nullable(), sites: z.array(siteStream), change: z.int() }),
   }),
   /**
    * Changes behind a number, in their order. Where `isMissing`, those that follow it are no longer all kept: take everything anew.
