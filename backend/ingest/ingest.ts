@@ -7,6 +7,7 @@ import { type RecordFate, type SiteRecord } from '#shared/contract/site-record';
 import { type Db } from '../db';
 import { type NetworkInForce } from '../reconcile/network-in-force';
 import { keepShippedLeapSeconds } from '../reconcile/tables-in-force';
+import { onCommitted } from '../writer/commit';
 import { Completeness, type CompletenessSaid } from './completeness';
 import { GroupLoop, ofOneRecord, type Waiting } from './group-loop';
 import { GroupNotes, type SetAsideReason } from './group-notes';
@@ -63,7 +64,7 @@ export interface Ingest {
   readonly complete: (siteId: number, said: CompletenessSaid) => Promise<Outcome<Instant | undefined>>;
   /** Looks again at records whose time has come; to be called every second or so, and at the start. Answers how many stand now. */
   readonly retryDue: () => Promise<number>;
-  /** What a network is reconciled by has changed: reads it again and computes anew what rests on it. */
+  /** What a network is reconciled by has changed: reads it again, at once, and computes anew what rests on it. Commits that note it are heard. */
   readonly setupChanged: (networkId: number) => Promise<Reprocessed>;
   readonly reprocess: (networkId: number, siteIds: readonly number[]) => Promise<Reprocessed>;
   /** What is in force of a network. */
@@ -86,7 +87,8 @@ export interface IngestParts {
 /**
  * Opens the ingest over a writing connection.
  *
- * Connections that a former process left open are ended, and networks whose set-up changed after their last reprocessing are reprocessed.
+ * Connections that a former process left open are ended, and networks whose set-up changed after their last reprocessing are reprocessed, as
+ * they are after each commit that notes a change of their set-up.
  *
  * @throws where the connection does not write each commit to the disk before it answers
  */
@@ -189,9 +191,17 @@ export function openIngest({ db, log, nowMs, listener, fatal }: IngestSources): 
     return reprocess(sources, networkId, changed);
   }
 
+  /** What nobody waits for; the next start does what it left undone. */
+  const inItsOwnTime = (work: Promise<unknown>): void =>
+    void work.catch((fault: unknown) => log.error({ event: 'ingest:reprocess', err: fault }, 'a reprocessing did not come to its end'));
+
+  onCommitted(db, ({ changes }) => {
+    const networkIds = new Set(changes.flatMap(({ kind, networkId }) => (kind === 'setup' ? [networkId] : [])));
+    for (const networkId of networkIds) inItsOwnTime(setupChanged(networkId));
+  });
   for (const networkId of setupsAhead(db)) {
     const all = inForce.network(networkId).network.sites.map(({ id }) => id);
-    void reprocess(sources, networkId, all);
+    inItsOwnTime(reprocess(sources, networkId, all));
   }
 
   return {

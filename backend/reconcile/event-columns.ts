@@ -2,7 +2,7 @@ import { compareIdentities } from '#shared/coincidence/event-identity';
 import { type VersionedColumns, emptyVersionedEvents } from '#shared/coincidence/held-events';
 import { compareText } from '#shared/compare-text';
 import { type ErrorTables } from '#shared/relativity/events';
-import { compareInstants, type Instant } from '#shared/time/instant';
+import { compareInstants } from '#shared/time/instant';
 import { type Db } from '../db';
 import { ErrorRows } from './error-rows';
 import { createEventReader, EVENT_QUERY, type EventRow, type StoredEvent } from './stored-event';
@@ -93,31 +93,4 @@ export function eventColumnsOf(db: Db, networkId: number, triggerIds: readonly n
     names: stored.map((event) => eventName(codes[event.site] ?? '', event)),
     rowOf: new Map(stored.map(({ triggerId }, row) => [triggerId, row])),
   };
-}
-
-/**
- * Reads a network's events from an instant on, in the order of time, a page at a time: nothing stays open between two pages.
- *
- * @param toEvent as `createEventReader` makes it
- * @param from the first instant
- * @param most events of a page
- */
-export function* eventPages(
-  db: Db,
-  networkId: number,
-  toEvent: (row: EventRow) => StoredEvent,
-  { from, most }: { readonly from: Instant; readonly most: number },
-): Generator<readonly StoredEvent[]> {
-  const read = db.$client.prepare<[number, number, number, number, number], EventRow>(
-    `${EVENT_QUERY} WHERE e.network_id = ? AND (e.tai_s, e.ps, e.trigger_id) > (?, ?, ?) ORDER BY e.tai_s, e.ps, e.trigger_id LIMIT ?`,
-  );
-  let after = { taiS: from.taiS, ps: from.ps, triggerId: 0 };
-  for (;;) {
-    const page = read.all(networkId, after.taiS, after.ps, after.triggerId, most).map(toEvent);
-    const last = page.at(-1);
-    if (!last) return;
-    yield page;
-    if (page.length < most) return;
-    after = last;
-  }
 }

@@ -1,4 +1,3 @@
-import { EVER_TAI_S } from '#schema/forms';
 import { type Vec3 } from '#shared/relativity/vector';
 import { type ClockSegment, EXACT_CLOCK } from '#shared/time/clock-record';
 import { type Instant } from '#shared/time/instant';
@@ -143,6 +142,3 @@ export function referenceSigmaNs(db: Db, versionId: number): number {
   if (sigma === undefined) throw new Error(`there is no version ${versionId} of a time reference`);
   return sigma;
 }
-
-/** From ever on. */
-export const EVER: Instant = { taiS: EVER_TAI_S, ps: 0 };

@@ -1,11 +1,13 @@
 import pino from 'pino';
 import { afterEach, describe, expect, it } from 'vitest';
-import { insertSegment, personRow } from '../support/network-rows';
+import { insertRow, insertSegment, personRow } from '../support/network-rows';
 import { type Actor } from '../../backend/audit/change';
 import { checkConservation } from '../../backend/ingest/conservation';
 import { acceptSetAside, dismissConflict, dismissSetAside, type DecisionSources } from '../../backend/ingest/decisions';
 import { ClosedSite, openIngest } from '../../backend/ingest/ingest';
 import { eventRowHash } from '../../backend/ingest/hashes';
+import { noteChange } from '../../backend/live/note-change';
+import { commit, type Tx } from '../../backend/writer/commit';
 import { eventColumnsOf } from '../../backend/reconcile/event-columns';
 import { count, ingestOver, type IngestAtWork, newIngest, record, TEST_NOW_MS } from '../support/ingest';
 import { smallNetwork } from '../support/small-network';
@@ -292,6 +294,36 @@ describe('a change of what is in force', () => {
     expect(count(at.db, 'SELECT count(*) FROM event_versions')).toBe(1);
     expect(count(at.db, 'SELECT count(*) FROM events')).toBe(2);
     expect(await at.ingest.setupChanged(at.network.networkId)).toEqual({ events: 0, accepted: 0 });
+  });
+
+  it('is heard of by the commit that notes it, and by the next start where the process ended before', async () => {
+    const at = start();
+    await at.send('A', record());
+    const delayBy = (number: number, isHeard: boolean): void => {
+      const columns =
+        'scale, clock_id, exact_clock, position_kind, itrs_x_m, itrs_y_m, itrs_z_m, reading_sigma_ns, position_sigma_m, origin, created_at';
+      const change = (tx: Tx): void => {
+        at.db.$client.exec(
+          "UPDATE site_versions SET superseded_at = '2026-03-01T00:00:00.000Z' WHERE site_id = 1 AND superseded_at IS NULL",
+        );
+        at.db.$client.exec(`INSERT INTO site_versions (site_id, number, from_tai_s, from_ps, delay_ns, delay_sigma_ns, ${columns})
+          SELECT 1, ${number}, from_tai_s, from_ps, ${number}000, 1, ${columns} FROM site_versions WHERE site_id = 1 AND number = 1`);
+        if (isHeard) noteChange(tx, at.network.networkId, 'setup', { what: 'site', id: 1 }, TEST_NOW_MS);
+      };
+      commit(at.db, change);
+    };
+    const eventVersion = (): number => count(at.db, 'SELECT version FROM events');
+    delayBy(2, true);
+    await expect.poll(eventVersion).toBe(2);
+    await at.ingest.whenIdle();
+    // A set-up that changed behind the ingest's back, with its change noted: as after a kill between the two.
+    delayBy(3, false);
+    const last = count(at.db, 'SELECT last FROM change_heads');
+    insertRow(at.db, 'changes', { network_id: at.network.networkId, number: last + 1, at_ms: TEST_NOW_MS, kind: 'setup', body: '{}' });
+    expect(eventVersion()).toBe(2);
+    const again = ingestOver(at.db, at.network);
+    await expect.poll(eventVersion).toBe(3);
+    await again.ingest.whenIdle();
   });
 
   it('takes events away that it holds no longer, and brings them back when it does', async () => {
