@@ -21,4 +21,4 @@ await build({
   packages: 'external',
   logLevel: 'warning',
 });
-for (const name of ['finder', 'command']) run(process.execPath, [`dist/bench/${name}.bench.js`], { stdout: 1 });
+for (const name of ['finder', 'command', 'lists']) run(process.execPath, [`dist/bench/${name}.bench.js`], { stdout: 1 });

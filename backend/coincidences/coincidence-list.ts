@@ -202,7 +202,7 @@ function narrowingOf(asked: CoincidencesAsked, way: Way): Narrowing {
       ),
     );
   return {
-    countTo: (most) => part(`SELECT count(*) FROM (SELECT 1 FROM ${way.from} WHERE ${counted.sql} LIMIT ?)`, ...counted.values, most),
+    count: part(`SELECT count(*) FROM (SELECT 1 FROM ${way.from} WHERE ${counted.sql} LIMIT ?)`, ...counted.values),
     rows: select(way, conditions, orderedBy(columns, order), limit),
   };
 }

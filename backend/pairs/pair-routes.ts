@@ -12,7 +12,16 @@ import { ErrorRows } from '../reconcile/error-rows';
 import { eventColumnsOf } from '../reconcile/event-columns';
 import { framesInForce } from '../reconcile/frames-in-force';
 import { networkInForce } from '../reconcile/network-in-force';
+import { part, rowsOf, type Query } from '../search/query';
 import { pairsOfSet } from './pairs-of-set';
+
+/** At which sites events that stand lie. */
+const sitesOfEventsQuery = (networkId: number, ids: readonly number[]): Query =>
+  part(
+    'SELECT e.site_id AS siteId FROM json_each(?) i CROSS JOIN events e ON e.trigger_id = i.value WHERE e.network_id = ?',
+    JSON.stringify(ids),
+    networkId,
+  );
 
 /** The frames of a network as they are in force. */
 function framesOf(db: Db, networkId: number): FrameResolver {
@@ -38,10 +47,12 @@ export const pairRoutes = (): Served[] => [
     placeOf: ({ params: { networkId } }, { db }) => placeOfNetwork(db, networkId),
     handle: ({ params: { networkId }, query, caller }, { db }): PairsOfSet => {
       const { sigmas = USUAL_SIGMAS } = query;
-      const { stored, events, errors, names, siteCodes } = eventColumnsOf(db, networkId, query.events);
       const seen = sitesSeen(caller, networkId);
+      const sites = rowsOf<{ siteId: number }>(db, sitesOfEventsQuery(networkId, query.events));
+      if (sites.length < query.events.length || sites.some(({ siteId }) => seen?.includes(siteId) === false)) throw absent();
+      const { stored, events, errors, names, siteCodes } = eventColumnsOf(db, networkId, query.events);
       const [first] = stored;
-      if (!first || stored.length < query.events.length || stored.some(({ siteId }) => seen?.includes(siteId) === false)) throw absent();
+      if (!first) throw absent();
       const frames = framesOf(db, networkId);
       const codes = query.frames ?? frames.codes;
       const velocities = velocitiesAt(frames, codes, first);

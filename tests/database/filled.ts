@@ -2,7 +2,7 @@ import type Database from 'better-sqlite3';
 
 const SITES = 8;
 const PER_SECOND = 20;
-const FIRST_TAI_S = 1_772_323_237;
+export const FIRST_TAI_S = 1_772_323_237;
 
 const NUMBERS = 'WITH RECURSIVE n(i) AS (SELECT 1 UNION ALL SELECT i + 1 FROM n WHERE i < ?)';
 const AT = "'2026-03-01T00:00:00.000Z'";

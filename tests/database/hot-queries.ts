@@ -1,3 +1,27 @@
+import { type CoincidenceSort } from '#shared/contract/coincidence-routes';
+import { membersQuery, pairsQuery } from '../../backend/coincidences/coincidence-brief';
+import {
+  formerQuery,
+  fullMembersQuery,
+  fullPairsQuery,
+  grewFromQuery,
+  grewIntoQuery,
+} from '../../backend/coincidences/coincidence-in-full';
+import {
+  COINCIDENCE_SORTINGS,
+  coincidenceList,
+  coincidencesOfEventQuery,
+  ruleVersionsQuery,
+  type CoincidencesAsked,
+} from '../../backend/coincidences/coincidence-list';
+import { eventVersionsQuery } from '../../backend/events/event-in-full';
+import { eventListQuery, eventNamesQuery } from '../../backend/events/event-list';
+import { type Query } from '../../backend/search/query';
+import { setAsideListQuery, withoutClock } from '../../backend/set-asides/set-aside-list';
+import { changesQuery } from '../../backend/streams/change-list';
+import { liveSpansQuery, spanBeforeQuery } from '../../backend/streams/live-span-list';
+import { heldRangesQuery, seriesQuery } from '../../backend/streams/series-list';
+
 /** A query that runs often or over much: the index that serves it, and values that find rows in what `filled.ts` makes. */
 export interface HotQuery {
   readonly serves: string;
@@ -22,60 +46,74 @@ const query = (
   values,
 });
 
-const EVENTS = 'SELECT trigger_id, site_id, tai_s, ps, x_m, y_m, z_m, sigma_ns, amplitude FROM events';
-const SETS = 'SELECT id, set_hash, fold, first_tai_s, first_ps, span_ns, class, nearest_margin_sigma FROM coincidences';
 const KEY = 'PRIMARY KEY';
 
-/** A list of coincidences in the order of a column and then of ids, from a cursor on, in both directions. */
-const sortedBy = (column: string, index: string, after: number, also = ''): HotQuery[] =>
-  (['>', '<'] as const).map((turn) =>
-    query(
-      `coincidences by ${column} ${turn === '>' ? 'upwards' : 'downwards'}`,
-      index,
-      `${SETS} WHERE network_id = ? AND is_current = 1${also} AND (${column}, id) ${turn} (?, ?) ORDER BY ${column} ${turn === '>' ? '' : 'DESC'}, id ${turn === '>' ? '' : 'DESC'} LIMIT ${PAGE}`,
-      1,
-      after,
-      50,
-    ),
+/** A query of the product as it is, with its values. */
+const ofProduct = (serves: string, indexes: string | readonly string[], { sql, values }: Query): HotQuery =>
+  query(serves, indexes, sql, ...values);
+
+const CURSOR = { taiS: CURSOR_S, ps: 0 };
+const EVENTS_ASKED = { networkId: 1, siteIds: undefined, order: 'up', limit: PAGE } as const;
+const SETS_ASKED = { networkId: 1, siteIds: [], ruleVersionIds: undefined, sort: 'time', order: 'up', limit: PAGE } as const;
+const SET_ASIDES_ASKED = { networkId: 1, siteIds: undefined, state: 'open', reason: undefined, order: 'up', limit: PAGE } as const;
+const AFTER_TIME = [CURSOR_S, 0, 0];
+
+/** A list of coincidences that one index answers. */
+function sets(serves: string, indexes: string | readonly string[], asked: Partial<CoincidencesAsked>): HotQuery {
+  const list = coincidenceList({ ...SETS_ASKED, ...asked });
+  if (list.kind === 'search') throw new Error(`${serves} is a search`);
+  return ofProduct(serves, indexes, list.query);
+}
+
+/** A sort of the list from a cursor on, both ways. */
+const sortedBy = (sort: CoincidenceSort, ...after: readonly number[]): HotQuery[] =>
+  (['up', 'down'] as const).map((order) =>
+    sets(`coincidences by ${sort}, ${order}wards`, COINCIDENCE_SORTINGS[sort].index, { sort, order, after }),
   );
+
+/** The ways of a search: what is counted and sorted by itself, and the walk where that is too much. `in_time()` is the search thread's. */
+function searched(serves: string, asked: Partial<CoincidencesAsked>, indexes: readonly string[], walked: string): HotQuery[] {
+  const list = coincidenceList({ ...SETS_ASKED, ...asked });
+  if (list.kind === 'query') throw new Error(`${serves} is no search`);
+  const counted = list.search.narrowings.map(({ count: { sql, values } }, at) =>
+    ofProduct(`${serves}: counting by ${indexes[at] ?? ''}`, ['CO-ROUTINE (subquery-1)', indexes[at] ?? '', 'SCAN (subquery-1)'], {
+      sql,
+      values: [...values, PAGE],
+    }),
+  );
+  return [...counted, ofProduct(`${serves}: walking`, walked, withoutClock(list.search.walk))];
+}
+
+/** Sites in time order, merged. */
+const merged = (...sites: readonly string[]): readonly string[] => [
+  'MERGE (UNION ALL)',
+  ...sites.flatMap((index, at) => [at === 0 ? 'LEFT' : 'RIGHT', index]),
+];
 
 export const HOT_QUERIES: readonly HotQuery[] = [
   // Events.
-  query(
-    'events from a cursor on',
+  ofProduct('events from a cursor on', 'events_by_time', eventListQuery({ ...EVENTS_ASKED, after: AFTER_TIME })),
+  ofProduct('events back from a cursor', 'events_by_time', eventListQuery({ ...EVENTS_ASKED, after: AFTER_TIME, order: 'down' })),
+  ofProduct(
+    'events from a cursor on, within a span',
     'events_by_time',
-    `${EVENTS} WHERE network_id = ? AND (tai_s, ps, trigger_id) > (?, ?, ?) ORDER BY tai_s, ps, trigger_id LIMIT ${PAGE}`,
-    1,
-    CURSOR_S,
-    0,
-    0,
+    eventListQuery({ ...EVENTS_ASKED, from: { taiS: FIRST_S, ps: 0 }, to: { taiS: CURSOR_S + 5, ps: 0 }, after: AFTER_TIME }),
   ),
-  query(
-    'events back from a cursor',
-    'events_by_time',
-    `${EVENTS} WHERE network_id = ? AND (tai_s, ps, trigger_id) < (?, ?, ?) ORDER BY tai_s DESC, ps DESC, trigger_id DESC LIMIT ${PAGE}`,
-    1,
-    CURSOR_S,
-    0,
-    0,
+  ofProduct("a site's events from a cursor on", 'events_of_site', eventListQuery({ ...EVENTS_ASKED, siteIds: [1], after: AFTER_TIME })),
+  ofProduct(
+    "two sites' events from a cursor on",
+    merged('events_of_site', 'events_of_site'),
+    eventListQuery({ ...EVENTS_ASKED, siteIds: [1, 2], after: AFTER_TIME }),
   ),
   query(
     'events within a span (desk, finder at the start)',
     'events_by_time',
-    `${EVENTS} WHERE network_id = ? AND tai_s BETWEEN ? AND ? ORDER BY tai_s, ps, trigger_id`,
+    'SELECT trigger_id, site_id, tai_s, ps FROM events WHERE network_id = ? AND tai_s BETWEEN ? AND ? ORDER BY tai_s, ps, trigger_id',
     1,
     CURSOR_S,
     CURSOR_S + 5,
   ),
-  query(
-    "a site's events from a cursor on",
-    'events_of_site',
-    `${EVENTS} WHERE site_id = ? AND (tai_s, ps, trigger_id) > (?, ?, ?) ORDER BY tai_s, ps, trigger_id LIMIT ${PAGE}`,
-    1,
-    CURSOR_S,
-    0,
-    0,
-  ),
+  ofProduct('what events are called', ['SCAN i VIRTUAL TABLE INDEX 1:', KEY, KEY], eventNamesQuery([17, 18])),
   query(
     'how many events a change of a clock concerns',
     'events_of_site',
@@ -86,12 +124,7 @@ export const HOT_QUERIES: readonly HotQuery[] = [
     CURSOR_S + 60,
     0,
   ),
-  query(
-    'an event and what it was',
-    [KEY, KEY],
-    'SELECT e.tai_s, v.tai_s FROM events e LEFT JOIN event_versions v ON v.trigger_id = e.trigger_id WHERE e.trigger_id = ?',
-    17,
-  ),
+  ofProduct('an event and what it was', ['MERGE (UNION ALL)', 'LEFT', KEY, KEY, 'RIGHT', KEY, KEY], eventVersionsQuery(17)),
   query(
     "a site's rate over a span",
     KEY,
@@ -112,28 +145,21 @@ export const HOT_QUERIES: readonly HotQuery[] = [
     '17',
   ),
   query('the records of an intake', 'triggers_of_intake', 'SELECT id FROM triggers WHERE intake_id = ?', 1),
-  query(
-    'the next set-asides',
-    'set_asides_open',
-    `SELECT id, reason, verbatim FROM set_asides WHERE network_id = ? AND state = 'open' AND id > ? ORDER BY id LIMIT ${PAGE}`,
-    1,
-    500,
-  ),
-  query(
+  ofProduct('the next set-asides', 'set_asides_open', setAsideListQuery({ ...SET_ASIDES_ASKED, after: [500] }).query),
+  ofProduct(
     'the next set-asides of a reason',
     'set_asides_open_by_reason',
-    `SELECT id, verbatim FROM set_asides WHERE network_id = ? AND state = 'open' AND reason = ? AND id > ? ORDER BY id LIMIT ${PAGE}`,
-    1,
-    'sigma',
-    500,
+    setAsideListQuery({ ...SET_ASIDES_ASKED, reason: 'sigma', after: [500] }).query,
   ),
-  query(
+  ofProduct(
     "a site's set-asides, newest first",
     'set_asides_of_site',
-    `SELECT id, reason FROM set_asides WHERE site_id = ? AND (received_at_ms, id) < (?, ?) ORDER BY received_at_ms DESC, id DESC LIMIT ${PAGE}`,
-    1,
-    5000,
-    5000,
+    setAsideListQuery({ ...SET_ASIDES_ASKED, siteIds: [1], state: 'all', order: 'down', after: [5000, 5000] }).query,
+  ),
+  ofProduct(
+    "two sites' set-asides",
+    merged('set_asides_of_site', 'set_asides_of_site'),
+    setAsideListQuery({ ...SET_ASIDES_ASKED, siteIds: [1, 2], state: 'all', after: [5000, 5000] }).query,
   ),
   query(
     'how many set-asides a site had since an instant',
@@ -158,108 +184,52 @@ export const HOT_QUERIES: readonly HotQuery[] = [
   ),
   query('what is set aside of a trigger', 'set_asides_of_trigger', 'SELECT id, reason, state FROM set_asides WHERE trigger_id = ?', 1),
   query('the set-asides of an intake', 'set_asides_of_intake', 'SELECT id, line FROM set_asides WHERE intake_id = ? ORDER BY line', 1),
-  query(
-    'the gaps of a series',
-    KEY,
-    'SELECT first, last, since_ms FROM held_ranges WHERE site_id = ? AND series = ? ORDER BY first_digits, first',
-    1,
-    '',
-  ),
-  query(
-    "a site's live spans that touch a span",
+  ofProduct('the gaps of a series', KEY, heldRangesQuery(1, '', '17', PAGE)),
+  ofProduct('the series of a site', KEY, seriesQuery(1, '', { order: 'up', limit: PAGE })),
+  ofProduct(
+    "a site's live spans within a span",
     'live_spans_of_site',
-    'SELECT from_tai_s, from_ps, to_tai_s, to_ps FROM live_spans WHERE withdrawn_at IS NULL AND site_id = ? AND (from_tai_s, from_ps) <= (?, ?) ORDER BY from_tai_s, from_ps',
-    1,
-    CURSOR_S,
-    0,
+    liveSpansQuery(1, { from: CURSOR, to: { taiS: CURSOR_S + 60, ps: 0 } }, { order: 'up', limit: PAGE }),
   ),
+  ofProduct("a site's live span before an instant", 'live_spans_of_site', spanBeforeQuery(1, CURSOR)),
   // Coincidences.
-  query(
-    'coincidences from a cursor on',
+  sets('coincidences from a cursor on', 'coincidences_by_time', { after: AFTER_TIME }),
+  sets('coincidences back from a cursor', 'coincidences_by_time', { after: AFTER_TIME, order: 'down' }),
+  sets('coincidences within a span', 'coincidences_by_time', {
+    after: AFTER_TIME,
+    from: { taiS: FIRST_S, ps: 0 },
+    to: { taiS: CURSOR_S + 9, ps: 0 },
+  }),
+  sets('coincidences of a fold and above, the largest first', 'coincidences_by_fold', { sort: 'fold', order: 'down', leastFold: 3 }),
+  ...sortedBy('fold', 2, ...AFTER_TIME),
+  sets('coincidences of a class', 'coincidences_by_class', { class: 'spacelike', after: AFTER_TIME }),
+  sets('coincidences of a rule', 'coincidences_by_rule', { ruleVersionIds: [1], after: AFTER_TIME }),
+  sets('coincidences of a site', ['members_of_site', KEY], { siteIds: [1], after: AFTER_TIME }),
+  ...sortedBy('margin', -3, 50),
+  ...sortedBy('span', 500, 50),
+  ...sortedBy('turning', 0.4, 50),
+  ...sortedBy('amplitude', 500, 50),
+  ...sortedBy('chance', 500, 50),
+  ...searched(
+    'coincidences of a class by margin',
+    { sort: 'margin', class: 'timelike' },
+    ['coincidences_by_class'],
+    'coincidences_by_margin',
+  ),
+  ...searched(
+    'coincidences of a name, open, by span',
+    { sort: 'span', name: '0000000000', state: 'open' },
+    ['coincidences_by_name', 'coincidences_open'],
+    'coincidences_by_span',
+  ),
+  ...searched(
+    'coincidences of a fold and above, by time',
+    { leastFold: 3, from: CURSOR },
+    ['coincidences_by_fold', 'coincidences_by_time'],
     'coincidences_by_time',
-    `${SETS} WHERE network_id = ? AND is_current = 1 AND (first_tai_s, first_ps, id) > (?, ?, ?) ORDER BY first_tai_s, first_ps, id LIMIT ${PAGE}`,
-    1,
-    CURSOR_S,
-    0,
-    0,
   ),
-  query(
-    'coincidences back from a cursor',
-    'coincidences_by_time',
-    `${SETS} WHERE network_id = ? AND is_current = 1 AND (first_tai_s, first_ps, id) < (?, ?, ?) ORDER BY first_tai_s DESC, first_ps DESC, id DESC LIMIT ${PAGE}`,
-    1,
-    CURSOR_S,
-    0,
-    0,
-  ),
-  query(
-    'coincidences of a fold',
-    'coincidences_by_fold',
-    `${SETS} WHERE network_id = ? AND is_current = 1 AND fold = ? AND (first_tai_s, first_ps, id) > (?, ?, ?) ORDER BY first_tai_s, first_ps, id LIMIT ${PAGE}`,
-    1,
-    2,
-    CURSOR_S,
-    0,
-    0,
-  ),
-  query(
-    'coincidences by fold, the largest first',
-    'coincidences_by_fold',
-    `${SETS} WHERE network_id = ? AND is_current = 1 AND (fold, first_tai_s, first_ps, id) < (?, ?, ?, ?) ORDER BY fold DESC, first_tai_s DESC, first_ps DESC, id DESC LIMIT ${PAGE}`,
-    1,
-    2,
-    CURSOR_S,
-    0,
-    0,
-  ),
-  query(
-    'coincidences of a class',
-    'coincidences_by_class',
-    `${SETS} WHERE network_id = ? AND is_current = 1 AND class = ? AND (first_tai_s, first_ps, id) > (?, ?, ?) ORDER BY first_tai_s, first_ps, id LIMIT ${PAGE}`,
-    1,
-    'spacelike',
-    CURSOR_S,
-    0,
-    0,
-  ),
-  query(
-    'coincidences of a rule',
-    'coincidences_by_rule',
-    `${SETS} WHERE rule_version_id = ? AND is_current = 1 AND (first_tai_s, first_ps, id) > (?, ?, ?) ORDER BY first_tai_s, first_ps, id LIMIT ${PAGE}`,
-    1,
-    CURSOR_S,
-    0,
-    0,
-  ),
-  query(
-    'coincidences of a site',
-    ['members_of_site', KEY],
-    `SELECT c.id, c.fold FROM members m JOIN coincidences c ON c.id = m.coincidence_id WHERE m.site_id = ? AND m.is_current = 1 AND (m.first_tai_s, m.first_ps, m.coincidence_id) > (?, ?, ?) ORDER BY m.first_tai_s, m.first_ps, m.coincidence_id LIMIT ${PAGE}`,
-    1,
-    CURSOR_S,
-    0,
-    0,
-  ),
-  ...sortedBy('nearest_margin_sigma', 'coincidences_by_margin', -3),
-  ...sortedBy('span_ns', 'coincidences_by_span', 500),
-  ...sortedBy('least_turning_speed_c', 'coincidences_by_turning', 0.4, ' AND least_turning_speed_c IS NOT NULL'),
-  ...sortedBy('amplitude', 'coincidences_by_amplitude', 500, ' AND amplitude IS NOT NULL'),
-  ...sortedBy('expected_by_chance', 'coincidences_by_chance', 500, ' AND expected_by_chance IS NOT NULL'),
-  query(
-    'coincidences by the name of the set',
-    'coincidences_by_name',
-    `${SETS} WHERE network_id = ? AND is_current = 1 AND set_hash >= ? AND set_hash < ? ORDER BY set_hash`,
-    1,
-    '0'.repeat(10) + '11',
-    '0'.repeat(10) + '11g',
-  ),
-  query(
-    'what a coincidence was before',
-    'coincidences_former',
-    `SELECT id FROM coincidences WHERE network_id = ? AND set_hash = ? AND state = 'former' ORDER BY id`,
-    1,
-    `${'0'.repeat(11)}a${'0'.repeat(51)}a`,
-  ),
+  ofProduct('the versions of a rule in use', [KEY, 'rule_versions_number', 'coincidences_by_rule'], ruleVersionsQuery(1, 1)),
+  ofProduct('what a coincidence was before', 'coincidences_former', formerQuery(1, `${'0'.repeat(11)}a${'0'.repeat(51)}a`)),
   query(
     'coincidences that completeness makes final',
     'coincidences_open',
@@ -271,28 +241,28 @@ export const HOT_QUERIES: readonly HotQuery[] = [
   query(
     'coincidences in force since a change',
     'coincidences_since',
-    `${SETS} WHERE network_id = ? AND is_current = 1 AND since_change > ? ORDER BY since_change LIMIT ${PAGE}`,
+    `SELECT id, set_hash FROM coincidences WHERE network_id = ? AND is_current = 1 AND since_change > ? ORDER BY since_change LIMIT ${PAGE}`,
     1,
     50,
   ),
   query('what a job has staged', 'coincidences_of_job', `SELECT id FROM coincidences WHERE job_id = ? AND state = 'staged'`, 1),
-  query('the members of a coincidence', KEY, 'SELECT place, trigger_id, site_id FROM members WHERE coincidence_id = ? ORDER BY place', 17),
-  query('the pairs of a coincidence', KEY, 'SELECT a, b, class, margin_sigma FROM pairs WHERE coincidence_id = ? ORDER BY a, b', 17),
-  query(
+  ofProduct(
+    'the members of coincidences',
+    ['SCAN i VIRTUAL TABLE INDEX 1:', KEY, KEY, KEY, KEY, KEY, 'USE TEMP B-TREE FOR ORDER BY'],
+    membersQuery([17, 18]),
+  ),
+  ofProduct('the pairs of coincidences', ['SCAN i VIRTUAL TABLE INDEX 1:', KEY, 'USE TEMP B-TREE FOR ORDER BY'], pairsQuery([17, 18])),
+  ofProduct('the members of a coincidence in full', [KEY, KEY, KEY, KEY, KEY], fullMembersQuery(17)),
+  ofProduct('the pairs of a coincidence in full', KEY, fullPairsQuery(17)),
+  ofProduct(
     'the coincidences of an event',
-    ['members_of_trigger', KEY],
-    'SELECT c.id, c.state FROM members m JOIN coincidences c ON c.id = m.coincidence_id WHERE m.trigger_id = ? ORDER BY m.coincidence_id',
-    17,
+    ['members_of_trigger', KEY, 'USE TEMP B-TREE FOR ORDER BY'],
+    coincidencesOfEventQuery({ eventId: 17, order: 'up', limit: PAGE }),
   ),
-  query('what a coincidence grew into', 'growths_into', 'SELECT coincidence_id FROM growths WHERE grew_from_id = ?', 17),
+  ofProduct('what a coincidence grew from', [KEY, KEY, 'USE TEMP B-TREE FOR ORDER BY'], grewFromQuery(17)),
+  ofProduct('what a coincidence grew into', ['growths_into', KEY, 'USE TEMP B-TREE FOR ORDER BY'], grewIntoQuery(17)),
   // What all share.
-  query(
-    'changes after a number',
-    KEY,
-    `SELECT number, kind, body FROM changes WHERE network_id = ? AND number > ? ORDER BY number LIMIT ${PAGE}`,
-    1,
-    500,
-  ),
+  ofProduct('changes after a number', KEY, changesQuery(1, 500, PAGE)),
   query('the audit trail back from a row', KEY, `SELECT seq, action FROM audit WHERE seq < ? ORDER BY seq DESC LIMIT ${PAGE}`, 500),
   query(
     'the audit trail of a network',

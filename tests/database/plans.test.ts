@@ -40,7 +40,8 @@ const planOf = ({ sql, values }: Pick<HotQuery, 'sql' | 'values'>): string[] =>
 /** What each table is searched by, or the plan's line where it is not searched by an index. */
 const indexesOf = (plan: readonly string[]): string[] =>
   plan.map(
-    (line) => /^SEARCH \w+ USING (?:COVERING )?(?:INDEX (\w+)|(?:INTEGER )?(PRIMARY KEY)) /.exec(line)?.slice(1).find(Boolean) ?? line,
+    (line) =>
+      /^SEARCH \w+ (?:EXISTS )?USING (?:COVERING )?(?:INDEX (\w+)|(?:INTEGER )?(PRIMARY KEY)) /.exec(line)?.slice(1).find(Boolean) ?? line,
   );
 
 describe(`over ${ROWS} rows of each`, () => {
