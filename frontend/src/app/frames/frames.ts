@@ -47,7 +47,8 @@ export class Frames {
 
   constructor() {
     effect(() => {
-      if (this.networks.network()) untracked(() => void this.frames.load());
+      this.networks.network();
+      if (this.networks.networks.state().kind === 'loaded') untracked(() => void this.frames.load());
     });
   }
 

@@ -40,7 +40,8 @@ export class Rules {
 
   constructor() {
     effect(() => {
-      if (this.networks.network()) untracked(() => void this.rules.load());
+      this.networks.network();
+      if (this.networks.networks.state().kind === 'loaded') untracked(() => void this.rules.load());
     });
   }
 
