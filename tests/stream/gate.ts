@@ -80,18 +80,25 @@ export interface RunningGate {
   readonly close: () => Promise<void>;
 }
 
-export async function startGate(desk: SiteDesk, { production = false } = {}): Promise<RunningGate> {
+/** Makes a gate over a new database with two sites, ORL and VES. */
+export function startGate(desk: SiteDesk): Promise<RunningGate> {
   const db = openDb(newFolder('gate'));
   const { id: networkId } = db
     .insert(networks)
     .values({ code: 'NET', name: 'Net', originTaiS: 0, originPs: 0, createdAt: AT })
     .returning({ id: networks.id })
     .get();
-  const made = (['ORL', 'VES'] as const).map((code) => {
-    const { id: siteId } = db.insert(sites).values({ code, name: code, networkId, createdAt: AT }).returning({ id: sites.id }).get();
+  const siteOf = (code: string): number =>
+    db.insert(sites).values({ code, name: code, networkId, createdAt: AT }).returning({ id: sites.id }).get().id;
+  return startGateOver(db, desk, [siteOf('ORL'), siteOf('VES')]);
+}
+
+/** Makes a gate over a database that is there, with a new key for each of two sites. */
+export async function startGateOver(db: Db, desk: SiteDesk, siteIds: readonly [number, number]): Promise<RunningGate> {
+  const made = siteIds.map((siteId) => {
     const { key, prefix, hash } = newSiteKey();
     const { id } = db.insert(siteKeys).values({ siteId, label: 'test', prefix, hash, createdAt: AT }).returning({ id: siteKeys.id }).get();
-    return { siteId, key, id };
+    return { key, id };
   });
   const log: Record<string, unknown>[] = [];
   const server = createServer((_req, res) => res.writeHead(404).end());
@@ -102,7 +109,7 @@ export async function startGate(desk: SiteDesk, { production = false } = {}): Pr
     log: pino({ level: 'debug' }, { write: (line: string) => void log.push(JSON.parse(line) as Record<string, unknown>) }),
     nowMs: Date.now,
     origin: `http://127.0.0.1:${port}`,
-    production,
+    production: false,
   };
   const gate = openSitesGate(server, ground, desk);
   const [first, second] = made;
@@ -114,7 +121,7 @@ export async function startGate(desk: SiteDesk, { production = false } = {}): Pr
     gate,
     keys: [first!.key, second!.key],
     keyIds: [first!.id, second!.id],
-    siteIds: [first!.siteId, second!.siteId],
+    siteIds,
     log,
     close: async () => {
       if (isClosed) return;
