@@ -1,4 +1,5 @@
 import type Database from 'better-sqlite3';
+import { SHIPPED_LEAP_SECONDS_LIST, shippedLeapSeconds } from '#shared/time/shipped-leap-seconds';
 
 const SITES = 8;
 const PER_SECOND = 20;
@@ -16,12 +17,14 @@ export function fillGround(db: Database.Database): void {
     INSERT INTO people (id, email, name, created_at) VALUES (1, 'a@example.org', 'Ada', ${AT}), (2, 'b@example.org', 'Bo', ${AT});
     INSERT INTO networks (id, code, name, origin_tai_s, origin_ps, created_at) VALUES (1, 'net', 'Net', ${FIRST_TAI_S}, 0, ${AT});
     INSERT INTO runs (id, network_id, code, name, from_tai_s, from_ps, created_at) VALUES (1, 1, 'run', '', ${FIRST_TAI_S}, 0, ${AT});
-    INSERT INTO leap_second_tables (id, body, sha1, updated_tai_s, expires_tai_s, is_in_force, created_at)
-      VALUES (1, '#', '${'0'.repeat(40)}', 0, ${FIRST_TAI_S * 2}, 1, ${AT});
     INSERT INTO rules (id, network_id, code, name, is_active, created_at) VALUES (1, 1, 'light2', '', 1, ${AT});
     INSERT INTO rule_versions (id, rule_id, number, minimum_fold, sigmas, window_kind, speed_c, margin_ns, created_at)
       VALUES (1, 1, 1, 2, 3, 'light-time', 1, 0, ${AT});
   `);
+  const { sha1, updated, expires } = shippedLeapSeconds();
+  db.prepare(
+    `INSERT INTO leap_second_tables (id, body, sha1, updated_tai_s, expires_tai_s, is_in_force, created_at) VALUES (1, ?, ?, ?, ?, 1, ${AT})`,
+  ).run(SHIPPED_LEAP_SECONDS_LIST, sha1, updated.taiS, expires.taiS);
   for (let site = 1; site <= SITES; site++) {
     db.exec(`
       INSERT INTO sites (id, network_id, code, name, created_at) VALUES (${site}, 1, 'S${site}', '', ${AT});
