@@ -10,6 +10,8 @@ import { faultText } from './command/fault-text';
 import { type Ground } from './ground';
 import { makeReadingGround } from './make-reading-ground';
 import { frontendFolder } from './paths';
+import { openSitesGate, type SitesGate } from './sites-gate/sites-gate';
+import { writerDesk } from './sites-gate/writer-desk';
 import { serverLog } from './server-log';
 import { VERSION } from './version';
 import { type Writer } from './writer/questions';
@@ -39,6 +41,7 @@ let lock: DataLock | undefined;
 let writer: Writer | undefined;
 let endDemo: (() => void) | undefined;
 let ground: Ground | undefined;
+let sitesGate: SitesGate | undefined;
 // The port is taken before the database is touched: another server that holds it may be using the same one.
 const server = createServer({
   headersTimeout: HEADERS_TIMEOUT_MS,
@@ -59,6 +62,7 @@ async function begin(): Promise<void> {
   const db = openReading(config.dataDir); // only now: the writer brings the tables up to date
   ground = makeReadingGround({ config, db, log, version: VERSION, port, nowMs: Date.now }, started.value.facts, writer);
   server.on('request', makeApp(ground, frontendFolder, writer));
+  sitesGate = openSitesGate(server, ground, writerDesk(writer));
   const say = (text: string): void => void process.stdout.write(text);
   say(`Skewline is at ${urlOf(server)}\n`);
   const { dataDir, demo } = config;
@@ -110,6 +114,8 @@ function end(): void {
     process.exit(FAILED);
   }, END_MS).unref();
   setTimeout(() => server.closeAllConnections(), FINISH_MS).unref();
+  // Its sockets hold the server open until it has ended them.
+  void sitesGate?.close();
   server.close(() => void close());
 }
 

@@ -7,6 +7,7 @@ import { makeGround, type Sources } from '../make-ground';
 import { makeAnswers } from './answers';
 import { type Committed } from './commit';
 import { isLostWrite } from './lost-write';
+import { openStream } from './stream';
 import { QuestionFailed, type News, type QuestionKind, type Questions } from './questions';
 
 const LEAVE_MS = 1_000; // what mails on their way may take at the end
@@ -49,7 +50,12 @@ export async function beginWriter(sources: WriterSources, tell: TellNews): Promi
     return problemOf(seeded.problem.code, seeded.problem.where, seeded.problem.text);
   }
   ground.onCommitted((committed) => tellOf(committed, tell));
-  const answers = await makeAnswers(ground);
+  const stream = openStream(ground, (fault) => {
+    setImmediate(() => {
+      throw fault; // where nothing catches it: the process ends
+    });
+  });
+  const answers = makeAnswers(ground, stream);
   const underWay = new Set<Promise<unknown>>();
   let closing = false;
   const answerOne = async <K extends QuestionKind>(kind: K, body: Questions[K]['body']): Promise<Questions[K]['answer']> => {
@@ -76,6 +82,7 @@ export async function beginWriter(sources: WriterSources, tell: TellNews): Promi
     close: async () => {
       closing = true;
       await Promise.all(underWay);
+      await stream.close();
       await Promise.race([leave(), sleep(LEAVE_MS, undefined, { ref: false })]);
       closeDb(db);
     },

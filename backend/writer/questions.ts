@@ -1,4 +1,8 @@
+import { type SiteRecord } from '#shared/contract/site-record';
+import { type SiteState, type SiteStateKept } from '#shared/contract/site-socket';
+import { type Outcome } from '#shared/outcome';
 import { type Answer } from '../api/answer';
+import { type BatchFates, type HeldOfSite, type SiteSender } from '../sites-gate/site-desk';
 import { type SentExchange } from './sent-exchange';
 import { type Revoked } from './commit';
 
@@ -14,6 +18,14 @@ export interface Questions {
   'http:exchange': { readonly body: SentExchange; readonly answer: Answer };
   /** A site's key was used to read something. */
   'site-key:used': { readonly body: { readonly keyId: number }; readonly answer: undefined };
+  /** What the gate for sites asks of the desk. */
+  'site:hello': { readonly body: { readonly sender: SiteSender; readonly software: string }; readonly answer: HeldOfSite };
+  'site:batch': { readonly body: { readonly sender: SiteSender; readonly records: readonly SiteRecord[] }; readonly answer: BatchFates };
+  'site:state': {
+    readonly body: { readonly sender: SiteSender; readonly state: SiteState };
+    readonly answer: Outcome<SiteStateKept['completeTo']>;
+  };
+  'site:bye': { readonly body: { readonly connectionId: number; readonly why: string }; readonly answer: undefined };
 }
 
 export type QuestionKind = keyof Questions;

@@ -1,0 +1,97 @@
+import { CoincidenceSearch } from '../coincidences/coincidence-search';
+import { type Ground } from '../ground';
+import { type Ingest, openIngest } from '../ingest/ingest';
+import { keepParts } from '../ingest/parts-of';
+import { networks } from '#schema/schema';
+import { ingestDesk } from '../sites-gate/ingest-desk';
+import { type Answers } from './questions';
+
+const LOOK_FOR_DUE_MS = 1_000; // readings of the future, whose time has come
+
+/** The way of records in the writer thread: from what a site sends to coincidences. */
+export interface Stream {
+  readonly answers: Pick<Answers, 'site:hello' | 'site:batch' | 'site:state' | 'site:bye'>;
+  /** Waits for what is being written. */
+  readonly close: () => Promise<void>;
+}
+
+/**
+ * Opens the stream: the ingest, and behind it the search of coincidences, which first catches up with what was stored.
+ *
+ * @param ground of the writer thread
+ * @param fatal ends the process: what was to be written is not known to be kept
+ */
+export function openStream(ground: Ground, fatal: (fault: unknown) => void): Stream {
+  const { db, log, nowMs } = ground;
+  const rest = restOf(() => search.step(), fatal);
+  // The two need each other: the search reads by the ingest's tables, the ingest tells the search.
+  const listener = {
+    onStored: (stored: Parameters<CoincidenceSearch['onStored']>[0]): void => {
+      search.onStored(stored);
+      rest.wake();
+    },
+    onInForce: (network: Parameters<CoincidenceSearch['onInForce']>[0]): void => {
+      search.onInForce(network);
+      rest.wake();
+    },
+  };
+  const search: CoincidenceSearch = new CoincidenceSearch({ db, nowMs, networkOf: (networkId) => ingest.network(networkId) });
+  const ingest: Ingest = openIngest({ db, log, nowMs, listener, fatal });
+  keepParts(db, ingest.parts);
+  for (const { id } of db.select({ id: networks.id }).from(networks).all()) search.start(id);
+  ground.onCommitted(({ changes }) => {
+    for (const { kind, networkId } of changes) if (kind === 'rule') search.rulesChanged(networkId);
+    if (changes.length > 0) rest.wake();
+  });
+  rest.wake();
+  let looking = false;
+  const due = setInterval(() => {
+    if (looking) return;
+    looking = true;
+    void ingest
+      .retryDue()
+      .catch((fault: unknown) => log.error({ event: 'ingest:retry', err: fault }, 'records whose time has come were not looked at'))
+      .finally(() => (looking = false));
+  }, LOOK_FOR_DUE_MS);
+  const desk = ingestDesk(ingest);
+  return {
+    answers: {
+      'site:hello': ({ sender, software }) => desk.hello(sender, software),
+      'site:batch': ({ sender, records }) => desk.batch(sender, records),
+      'site:state': ({ sender, state }) => desk.state(sender, state),
+      'site:bye': async ({ connectionId, why }) => {
+        await desk.bye(connectionId, why);
+        return undefined;
+      },
+    },
+    close: async () => {
+      clearInterval(due);
+      rest.end();
+      await ingest.whenIdle();
+    },
+  };
+}
+
+/** Does what nobody waits for, a bounded piece at a time, and lets whoever asks something in between two of them. */
+function restOf(step: () => boolean, fatal: (fault: unknown) => void) {
+  let waiting: NodeJS.Immediate | undefined;
+  let ended = false;
+  const wake = (): void => {
+    if (waiting || ended) return;
+    waiting = setImmediate(() => {
+      waiting = undefined;
+      try {
+        if (step()) wake();
+      } catch (fault) {
+        fatal(fault);
+      }
+    });
+  };
+  return {
+    wake,
+    end: (): void => {
+      ended = true;
+      clearImmediate(waiting);
+    },
+  };
+}
