@@ -30,8 +30,8 @@ export const changeHint = z.strictObject({
 });
 
 /**
- * What changes did to a network: its rows as they are at `to`. Put over whatever was read at any number from `from - 1` to `to` (what is
- * there by its id takes the place of what was), it gives what is at `to`; so an overlap doubles nothing.
+ * What changes did to a network. Put over whatever was read at any number from `from - 1` to `to` (what is there by its id takes the place of
+ * what was), it gives what is at `to`; so an overlap doubles nothing. What a later change touches again may be left out: that one tells it.
  *
  * Where `isCut`, there was more than a message may hold, and none of it is told: take the list anew.
  */
@@ -69,7 +69,13 @@ export const networkChanges = z.strictObject({
 });
 
 /** What a browser that reads slowly is told in the place of all changes that it missed: it asks for them by `network:missed`. */
-export const changesInSum = z.strictObject({ kind: z.literal('sum'), ...span });
+export const changesInSum = z.strictObject({
+  kind: z.literal('sum'),
+  ...span,
+  /** How many events came, and how many coincidences appeared. */
+  events: z.int(),
+  coincidences: z.int(),
+});
 
 export const networkChanged = z.discriminatedUnion('kind', [networkChanges, changesInSum]);
 

@@ -43,6 +43,7 @@ export const siteStream = z.strictObject({
   lastReceivedAtMs: z.int().nullable(),
   /** Null while it is not connected. */
   connectedAtMs: z.int().nullable(),
+  /** No more than 1,000 are counted. */
   setAsidesLastHour: z.int(),
 });
 

@@ -48,6 +48,11 @@ export class ApiClient {
     }
   }
 
+  /** Renews the session where it is due, so that what leans on it between two calls goes on. */
+  keepSession(): Promise<void> {
+    return this.session.renewWhenDue(() => this.renew());
+  }
+
   private renew(): Promise<unknown> {
     return firstValueFrom(this.http.post('/api/refresh', {})).catch((fault: unknown) => {
       throw readFault(fault);
