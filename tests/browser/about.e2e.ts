@@ -26,7 +26,7 @@ for (const colorScheme of ['light', 'dark'] as const)
         await expect(page.getByRole('main')).toContainText('reconciles the trigger logs of a distributed detector network');
         for (const limit of LIMITS) await expect(page.getByRole('main')).toContainText(limit);
         expect(LIMITS.join(' ')).toMatch(/neglect gravitational time dilation.*Not for navigation, aviation, or any safety-of-life timing/);
-        await expect(page.getByRole('status')).toContainText('The database answers.');
+        await expect(page.getByRole('main').getByRole('status')).toContainText('The database answers.');
         await expect(page.getByRole('img', { name: /light cone/ })).toBeVisible();
         expect(watch.faults).toEqual([]);
         expect(watch.foreign).toEqual([]);
@@ -34,7 +34,7 @@ for (const colorScheme of ['light', 'dark'] as const)
 
       test('stands in its own colours and fonts and within its width', async ({ page }) => {
         await page.goto('/about');
-        await expect(page.getByRole('status')).toContainText('The database answers.');
+        await expect(page.getByRole('main').getByRole('status')).toContainText('The database answers.');
         expect(await page.evaluate(() => getComputedStyle(document.body).backgroundColor)).toBe(GROUND[colorScheme]);
         await page.evaluate(() => document.fonts.ready);
         const families = await page.evaluate(() =>
@@ -55,18 +55,18 @@ for (const colorScheme of ['light', 'dark'] as const)
 
       test('has no fault that axe finds, also when the database or the server is gone', async ({ page }) => {
         await page.goto('/about');
-        await expect(page.getByRole('status')).toContainText('The database answers.');
+        await expect(page.getByRole('main').getByRole('status')).toContainText('The database answers.');
         const faults = async () => (await new AxeBuilder({ page }).withTags(WCAG).analyze()).violations;
         expect(await faults()).toEqual([]);
         await page.route('**/api/health', (route) =>
           route.fulfill({ status: 503, contentType: 'application/problem+json', body: '{"detail":"It was moved.","id":"1"}' }),
         );
         await page.reload();
-        await expect(page.getByRole('status')).toContainText('It was moved.');
+        await expect(page.getByRole('main').getByRole('status')).toContainText('It was moved.');
         expect(await faults()).toEqual([]);
         await page.route('**/api/health', (route) => route.abort());
         await page.getByRole('button', { name: 'Ask again' }).click();
-        await expect(page.getByRole('status')).toContainText('The server does not answer.');
+        await expect(page.getByRole('main').getByRole('status')).toContainText('The server does not answer.');
         expect(await faults()).toEqual([]);
       });
     });
@@ -75,18 +75,18 @@ test('a database that is deleted is told on the page, and again well after a res
   const folder = newFolder('browser-gone');
   const first = await startServer({ DATA_DIR: folder });
   await page.goto(`${first.url}about`);
-  await expect(page.getByRole('status')).toContainText('The database answers.');
+  await expect(page.getByRole('main').getByRole('status')).toContainText('The database answers.');
   rmSync(join(folder, 'skewline.sqlite'));
   await page.reload();
-  await expect(page.getByRole('status')).toContainText('The database does not answer.');
-  await expect(page.getByRole('status')).toContainText('moved, replaced or deleted');
+  await expect(page.getByRole('main').getByRole('status')).toContainText('The database does not answer.');
+  await expect(page.getByRole('main').getByRole('status')).toContainText('moved, replaced or deleted');
   const { port } = new URL(first.url);
   await first.stop();
   await page.getByRole('button', { name: 'Ask again' }).click();
-  await expect(page.getByRole('status')).toContainText('The server does not answer.');
+  await expect(page.getByRole('main').getByRole('status')).toContainText('The server does not answer.');
   const second = await startServer({ DATA_DIR: folder, PORT: port });
   await page.getByRole('button', { name: 'Ask again' }).click();
-  await expect(page.getByRole('status')).toContainText('The database answers.');
+  await expect(page.getByRole('main').getByRole('status')).toContainText('The database answers.');
   await second.stop();
 });
 
