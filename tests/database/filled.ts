@@ -23,7 +23,7 @@ export function fillGround(db: Database.Database): void {
   `);
   const { sha1, updated, expires } = shippedLeapSeconds();
   db.prepare(
-    `INSERT INTO leap_second_tables (id, body, sha1, updated_tai_s, expires_tai_s, is_in_force, created_at) VALUES (1, ?, ?, ?, ?, 1, ${AT})`,
+    `INSERT OR IGNORE INTO leap_second_tables (id, body, sha1, updated_tai_s, expires_tai_s, is_in_force, created_at) VALUES (1, ?, ?, ?, ?, 1, ${AT})`,
   ).run(SHIPPED_LEAP_SECONDS_LIST, sha1, updated.taiS, expires.taiS);
   for (let site = 1; site <= SITES; site++) {
     db.exec(`
