@@ -23,6 +23,7 @@ import { pageRoutes } from './pages';
 import { failed, notFound } from './problem';
 import { ruleRoutes } from './rules/rule-routes';
 import { securityHeaders } from './security';
+import { siteStateRoutes } from './live/site-state-routes';
 import { siteRoutes } from './sites/site-routes';
 import { tableRoutes } from './tables/table-routes';
 import { coincidenceRoutes } from './coincidences/coincidence-routes';
@@ -52,6 +53,7 @@ export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>)
   ...pairRoutes(),
   ...setAsideRoutes(),
   ...streamRoutes(),
+  ...siteStateRoutes(),
   ...auditRoutes(),
   ...(keepsMails ? keptMailRoutes() : []),
 ];

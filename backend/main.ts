@@ -8,6 +8,7 @@ import { holdDataDir, openReading, UnusableDatabase } from './db';
 import { showDemo } from './demo/show-demo';
 import { faultText } from './command/fault-text';
 import { type Ground } from './ground';
+import { openLive, type LiveServer } from './live/live-server';
 import { makeReadingGround } from './make-reading-ground';
 import { frontendFolder } from './paths';
 import { openSitesGate, type SitesGate } from './sites-gate/sites-gate';
@@ -41,6 +42,7 @@ let lock: DataLock | undefined;
 let writer: Writer | undefined;
 let endDemo: (() => void) | undefined;
 let ground: Ground | undefined;
+let live: LiveServer | undefined;
 let sitesGate: SitesGate | undefined;
 // The port is taken before the database is touched: another server that holds it may be using the same one.
 const server = createServer({
@@ -62,6 +64,7 @@ async function begin(): Promise<void> {
   const db = openReading(config.dataDir); // only now: the writer brings the tables up to date
   ground = makeReadingGround({ config, db, log, version: VERSION, port, nowMs: Date.now }, started.value.facts, writer);
   server.on('request', makeApp(ground, frontendFolder, writer));
+  live = openLive(server, ground, writer); // after the application, whose answers it leaves in place
   sitesGate = openSitesGate(server, ground, writerDesk(writer));
   const say = (text: string): void => void process.stdout.write(text);
   say(`Skewline is at ${urlOf(server)}\n`);
@@ -116,6 +119,7 @@ function end(): void {
   setTimeout(() => server.closeAllConnections(), FINISH_MS).unref();
   // Its sockets hold the server open until it has ended them.
   void sitesGate?.close();
+  live?.close(); // the server closes once every link has ended
   server.close(() => void close());
 }
 

@@ -8,7 +8,7 @@ export const REFRESH_COOKIE = '__Host-skewline-refresh';
 const MOST_COOKIE_CHARACTERS = 2_048;
 
 /** The value of a cookie; undefined when it is absent or longer than any of ours. */
-export function cookieOf({ header }: Exchange, name: string): string | undefined {
+export function cookieOf({ header }: Pick<Exchange, 'header'>, name: string): string | undefined {
   const value = parseCookie(header('cookie') ?? '')[name];
   return value !== undefined && value.length <= MOST_COOKIE_CHARACTERS ? value : undefined;
 }

@@ -1,4 +1,4 @@
-import { rolesAt } from '#shared/contract/roles';
+import { type HeldRole, rolesAt } from '#shared/contract/roles';
 import { type Caller } from '../api/caller';
 
 /**
@@ -7,10 +7,14 @@ import { type Caller } from '../api/caller';
  * @returns the ids of the sites, or undefined for all of them
  */
 export function sitesSeen(caller: Caller, networkId: number): readonly number[] | undefined {
-  if (caller.kind !== 'person') return [];
-  const roles = rolesAt(caller.held, { kind: 'network', networkId });
+  return caller.kind === 'person' ? ownSites(caller.held, networkId) : [];
+}
+
+/** The same for the roles that someone holds. */
+export function ownSites(held: readonly HeldRole[], networkId: number): readonly number[] | undefined {
+  const roles = rolesAt(held, { kind: 'network', networkId });
   if (roles.some((role) => role !== 'operator')) return undefined;
-  const own = caller.held.flatMap((held) => (held.networkId === networkId && held.siteId !== null ? [held.siteId] : []));
+  const own = held.flatMap((one) => (one.networkId === networkId && one.siteId !== null ? [one.siteId] : []));
   return [...new Set(own)];
 }
 

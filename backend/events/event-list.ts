@@ -34,7 +34,8 @@ export interface EventsAsked {
 }
 
 const KEY = ['tai_s', 'ps', 'trigger_id'] as const;
-const COLUMNS =
+/** The columns of an event's row. */
+export const EVENT_COLUMNS =
   'trigger_id AS id, site_id AS siteId, kind, tai_s AS taiS, ps, x_m AS xM, y_m AS yM, z_m AS zM, sigma_ns AS sigmaNs, amplitude';
 
 /**
@@ -46,7 +47,7 @@ export function eventListQuery({ networkId, siteIds, kind, from, to, after, orde
   const kinds = kind === undefined ? [] : [part('in_time() = 1 AND kind = ?', kind)];
   const of = (index: string, column: string, id: number): Query => {
     const where = joined([part(`${column} = ?`, id), ...bounds, ...kinds], ' AND ');
-    return part(`SELECT ${COLUMNS} FROM events INDEXED BY ${index} WHERE ${where.sql}`, ...where.values);
+    return part(`SELECT ${EVENT_COLUMNS} FROM events INDEXED BY ${index} WHERE ${where.sql}`, ...where.values);
   };
   const selects =
     siteIds === undefined ? [of('events_by_time', 'network_id', networkId)] : siteIds.map((id) => of('events_of_site', 'site_id', id));

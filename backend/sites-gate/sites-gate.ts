@@ -9,6 +9,7 @@ import {
   type SiteRefusalCode,
 } from '#shared/contract/site-socket';
 import { policyOf } from '#shared/contract/policies';
+import { isOurOrigin, sayForbidden } from '../api/socket-door';
 import { type Ground } from '../ground';
 import { arrivalsOf } from './arrivals';
 import { CreditOffice } from './credit-office';
@@ -146,17 +147,9 @@ function refuseUndeclared(name: string): void {
     throw new Error(`the event ${name} has no policy for site keys: it needs a line in shared/contract/policies.ts`);
 }
 
-const LOCAL_HOSTS = ['localhost', '127.0.0.1', '[::1]'];
-
 /** Programs say no origin; a browser always says one, and no page of another site may reach the gate. */
 function comesFromOurs({ headers: { origin } }: IncomingMessage, ours: Pick<Ground, 'origin' | 'production'>): boolean {
-  if (origin === undefined || origin === ours.origin) return true;
-  return !ours.production && URL.canParse(origin) && LOCAL_HOSTS.includes(new URL(origin).hostname);
-}
-
-/** Engine.io would say 400 to whoever asked for a WebSocket. */
-function sayForbidden({ socket }: IncomingMessage): void {
-  socket.end('HTTP/1.1 403 Forbidden\r\nConnection: close\r\nContent-Length: 0\r\n\r\n');
+  return origin === undefined || isOurOrigin(origin, ours);
 }
 
 /** An error that socket.io hands to the client with its data. */

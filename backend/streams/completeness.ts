@@ -4,6 +4,7 @@ import { type Db } from '../db';
 import { part, rowsOf, type Query } from '../search/query';
 
 const HOUR_MS = 3_600_000;
+const MOST_COUNTED = 1_000;
 
 interface StreamRow extends Omit<SiteStream, 'completeTo' | 'lastEventAt'> {
   readonly completeTaiS: number | null;
@@ -19,7 +20,8 @@ export const streamsQuery = (networkId: number, nowMs: number): Query =>
   part(
     `SELECT s.id AS siteId, s.code AS site, f.complete_tai_s AS completeTaiS, f.complete_ps AS completePs, f.complete_said_at_ms AS completeSaidAtMs,
        f.last_tai_s AS lastTaiS, f.last_ps AS lastPs, f.last_received_at_ms AS lastReceivedAtMs, f.connected_at_ms AS connectedAtMs,
-       (SELECT count(*) FROM set_asides a INDEXED BY set_asides_of_site WHERE a.site_id = s.id AND a.received_at_ms >= ?) AS setAsidesLastHour
+       (SELECT count(*) FROM (SELECT 1 FROM set_asides a INDEXED BY set_asides_of_site WHERE a.site_id = s.id AND a.received_at_ms >= ?
+         LIMIT ${MOST_COUNTED})) AS setAsidesLastHour
      FROM sites s JOIN site_streams f ON f.site_id = s.id WHERE s.network_id = ? AND s.closed_at IS NULL ORDER BY s.code`,
     nowMs - HOUR_MS,
     networkId,

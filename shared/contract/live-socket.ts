@@ -78,11 +78,12 @@ export const LIVE_ANSWERS = {
 const networkEnded = z.strictObject({ networkId: z.int(), text: z.string() });
 
 /**
- * The link ends. 'sign-in': the session has ended, or was not renewed. 'too-slow': what was sent is not read. 'faults': too many messages were
- * unusable. 'closing': the server ends, come again after `retryAfterMs`.
+ * The link ends. 'sign-in': the session has ended, or was not renewed. 'too-many': newer pages of this person are open. 'faults': too many messages were
+ * unusable. 'closing': the server ends, come again after `retryAfterMs`. A browser that
+ * does not read what it is sent is cut without a word.
  */
 export const liveEnded = z.strictObject({
-  code: z.enum(['sign-in', 'too-slow', 'faults', 'closing']),
+  code: z.enum(['sign-in', 'too-many', 'faults', 'closing']),
   text: z.string(),
   retryAfterMs: z.int().optional(),
 });

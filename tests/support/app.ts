@@ -6,6 +6,7 @@ import { makeApp } from '../../backend/app';
 import { type Config, readConfig } from '../../backend/config';
 import { openReading } from '../../backend/db';
 import { type Ground } from '../../backend/ground';
+import { openLive } from '../../backend/live/live-server';
 import { makeReadingGround } from '../../backend/make-reading-ground';
 import { serverLog } from '../../backend/server-log';
 import { type Writer } from '../../backend/writer/questions';
@@ -46,6 +47,7 @@ export async function startApp(changed: Partial<Config> = {}): Promise<RunningAp
   const db = openReading(dataDir);
   const reading = makeReadingGround({ ...sources, db }, ground, writer);
   server.on('request', makeApp(reading, pageFolder(dataDir), writer));
+  const live = openLive(server, reading, writer);
   return {
     url: `http://127.0.0.1:${port}`,
     dataDir,
@@ -57,6 +59,7 @@ export async function startApp(changed: Partial<Config> = {}): Promise<RunningAp
     rawLog: () => lines.join(''),
     forwardMs: (ms) => void (aheadMs += ms),
     close: async () => {
+      live.close();
       server.closeAllConnections();
       await new Promise((resolve) => server.close(resolve));
       await reading.searcher.close();

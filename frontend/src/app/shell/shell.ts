@@ -6,6 +6,7 @@ import { Palette } from '../commands/palette';
 import { ShortcutList } from '../commands/shortcut-list';
 import { ConnectionStore } from '../connection/connection-store';
 import { OfflineBanner } from '../connection/offline-banner';
+import { LiveStore } from '../live/live-store';
 import { Preferences, type Theme } from '../preferences/preferences';
 import { NetworkStore } from '../networks/network-store';
 import { AskPassword } from '../session/ask-password';
@@ -64,6 +65,7 @@ export class Shell {
   constructor() {
     inject(AskPassword).whenSessionEnds();
     inject(ConnectionStore).watch();
+    inject(LiveStore); // follows the network from here on
     inject(CommandStore).offer(() => this.commands());
   }
 
