@@ -102,6 +102,7 @@ export const POLICIES = {
   'pair:read': at(...ROLES), // an operator pairs events of their sites
   'set-aside:list': at(...ROLES), // an operator has those of their sites
   'set-aside:read': at(...ROLES),
+  'set-aside:decide': at('coordinator', 'operator'),
   'series:list': at(...ROLES),
   'live-span:list': at(...ROLES),
   'completeness:read': at(...ROLES), // an operator has their sites, and how far the network is

@@ -1,7 +1,8 @@
 import * as z from 'zod';
 import { idsText, MOST_IDS, partAt, partQuery, wordText } from './list-query';
 import { idText } from './page';
-import { utc } from './people';
+import { oneOf, record, text } from './leaves';
+import { utc, version } from './people';
 import { route } from './routes';
 
 /** Why a record is set aside: what the batch command says, and what only a stream, an upload or a platform can meet. */
@@ -79,6 +80,35 @@ const content = z.strictObject({
   stands: z.boolean(),
 });
 
+const MOST_FIELD_CHARACTERS = 400;
+const MOST_WHY_CHARACTERS = 2_000;
+const MOST_EXTRA_FIELDS = 100;
+const field = () =>
+  text(`a text of at most ${MOST_FIELD_CHARACTERS} characters`).refine(
+    (given) => given.length <= MOST_FIELD_CHARACTERS,
+    `a text of at most ${MOST_FIELD_CHARACTERS} characters`,
+  );
+const WHY_RIGHT = `why it is decided so: at most ${MOST_WHY_CHARACTERS} characters`;
+const why = () => text(WHY_RIGHT).refine((given) => given.length <= MOST_WHY_CHARACTERS, WHY_RIGHT);
+const reasoned = () => why().refine((given) => given.trim() !== '', `${WHY_RIGHT}, and not empty`);
+
+/** A record as it should have been, as texts. */
+const mendedRecord = record({
+  series: field(),
+  sequence: field(),
+  kind: field(),
+  reading: field(),
+  readingForm: oneOf('iso', 'tai-pair'),
+  sigmaNs: field(),
+  amplitude: field(),
+  extra: z
+    .record(z.string(), field(), { error: `an object of texts, ${MOST_EXTRA_FIELDS} at most` })
+    .refine((given) => Object.keys(given).length <= MOST_EXTRA_FIELDS, `an object of texts, ${MOST_EXTRA_FIELDS} at most`)
+    .optional(),
+});
+
+const setAsideInFull = setAside.extend({ networkId: z.int(), contents: z.array(content) });
+
 /** What could not be accepted: an operator sees that of their own sites, and nobody's that names no site. */
 export const SET_ASIDE_ROUTES = {
   listSetAsides: route('GET', '/networks/:networkId/set-asides', {
@@ -97,9 +127,32 @@ export const SET_ASIDE_ROUTES = {
   readSetAside: route('GET', '/set-asides/:setAsideId', {
     policy: 'set-aside:read',
     params: setAsideParams,
-    answer: setAside.extend({ networkId: z.int(), contents: z.array(content) }),
+    answer: setAsideInFull,
+  }),
+  /** Lets it stand, as it came or mended; of a conflict this content, and the others are dismissed. */
+  acceptSetAside: route('POST', '/set-asides/:setAsideId/accept', {
+    policy: 'set-aside:decide',
+    params: setAsideParams,
+    body: record({ version: version(), why: why(), record: mendedRecord.optional() }),
+    answer: setAsideInFull,
+  }),
+  /** Leaves it set aside for good. */
+  dismissSetAside: route('POST', '/set-asides/:setAsideId/dismiss', {
+    policy: 'set-aside:decide',
+    params: setAsideParams,
+    body: record({ version: version(), why: reasoned() }),
+    answer: setAsideInFull,
+  }),
+  /** Of a conflict no content stands. */
+  dismissConflict: route('POST', '/set-asides/:setAsideId/dismiss-conflict', {
+    policy: 'set-aside:decide',
+    params: setAsideParams,
+    body: record({ version: version(), why: reasoned() }),
+    answer: setAsideInFull,
   }),
 };
 
+export type SetAsideInFull = z.infer<typeof setAsideInFull>;
 export type SetAside = z.infer<typeof setAside>;
 export type SetAsideContent = z.infer<typeof content>;
+export type SetAsideAccepting = z.infer<(typeof SET_ASIDE_ROUTES)['acceptSetAside']['body']>;

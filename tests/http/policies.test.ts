@@ -19,7 +19,9 @@ import { MY_ROUTES, PEOPLE_ROUTES, SESSION_ROUTES, SITE_KEY_ROUTES } from '#shar
 import { judge, POLICIES, policyOf, type PolicyName } from '#shared/contract/policies';
 import { DEPLOYMENT } from '#shared/contract/roles';
 import { route, type Route } from '#shared/contract/routes';
+import { LIVE_REQUESTS } from '#shared/contract/live-socket';
 import { SITE_REQUESTS } from '#shared/contract/site-socket';
+import { SITE_STATE_ROUTES } from '#shared/contract/site-state';
 import { allRoutes } from '../../backend/app';
 import { registerRoutes } from '../../backend/api/register';
 import { serve } from '../../backend/api/serve';
@@ -43,6 +45,7 @@ const DECLARED: readonly Route[] = [
   PAIR_ROUTES,
   SET_ASIDE_ROUTES,
   STREAM_ROUTES,
+  SITE_STATE_ROUTES,
   AUDIT_ROUTES,
   KEPT_MAIL_ROUTES,
   NETWORK_ROUTES,
@@ -106,7 +109,7 @@ describe('22 deny by default', () => {
   });
 
   it('each line of the table is the policy of something', () => {
-    const used = new Set<string>([...DECLARED.map(({ policy }) => policy), ...Object.keys(SITE_REQUESTS)]);
+    const used = new Set<string>([...DECLARED.map(({ policy }) => policy), ...Object.keys(SITE_REQUESTS), ...Object.keys(LIVE_REQUESTS)]);
     expect(Object.keys(POLICIES).filter((name) => !used.has(name))).toEqual([]);
   });
 });
@@ -132,6 +135,13 @@ const ROLES_OF_FIRST: readonly Asker[] = [...SEE_ALPHA, 'otherOperator'];
 const OUTSIDE: readonly Asker[] = ['otherCoordinator', 'nobodySpecial'];
 const NOT_ALPHAS: readonly Asker[] = ['otherOperator', ...OUTSIDE];
 const ofNetwork = (path: string) => ({ hidden: OUTSIDE, path: () => `/networks/${world.networks.first}${path}` });
+/** Of a version that nobody saw. */
+const decision = (what: string) => ({
+  in: ['chief', 'coordinator', 'operator'] as const,
+  hidden: NOT_ALPHAS,
+  path: () => `/set-asides/${stored.setAside}/${what}`,
+  body: () => ({ version: 999, why: 'walk' }),
+});
 const ofAlpha = (path: string) => ({ hidden: NOT_ALPHAS, path: () => `/sites/${world.sites.alpha}${path}` });
 const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonly Asker[]; path?: () => string; body?: () => unknown }>> = {
   'GET /health': { in: ASKERS },
@@ -225,9 +235,13 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
   },
   'GET /networks/:networkId/set-asides': { ...ofNetwork('/set-asides'), in: ROLES_OF_FIRST },
   'GET /set-asides/:setAsideId': { in: SEE_ALPHA, hidden: NOT_ALPHAS, path: () => `/set-asides/${stored.setAside}` },
+  'POST /set-asides/:setAsideId/accept': decision('accept'),
+  'POST /set-asides/:setAsideId/dismiss': decision('dismiss'),
+  'POST /set-asides/:setAsideId/dismiss-conflict': decision('dismiss-conflict'),
   'GET /sites/:siteId/series': { ...ofAlpha('/series'), in: SEE_ALPHA },
   'GET /sites/:siteId/gaps': { ...ofAlpha('/gaps'), in: SEE_ALPHA },
   'GET /sites/:siteId/live-spans': { ...ofAlpha('/live-spans'), in: SEE_ALPHA },
+  'GET /networks/:networkId/site-states': { ...ofNetwork('/site-states'), in: ROLES_OF_FIRST },
   'GET /networks/:networkId/completeness': { ...ofNetwork('/completeness'), in: ROLES_OF_FIRST },
   'GET /networks/:networkId/changes': { ...ofNetwork('/changes?after=0'), in: SEE_ALL },
   'GET /audit': { in: ['chief'] },
