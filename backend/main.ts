@@ -14,6 +14,7 @@ import { frontendFolder } from './paths';
 import { openSitesGate, type SitesGate } from './sites-gate/sites-gate';
 import { writerDesk } from './sites-gate/writer-desk';
 import { serverLog } from './server-log';
+import { answerWhileStarting } from './starting';
 import { VERSION } from './version';
 import { type Writer } from './writer/questions';
 import { startWriterThread } from './writer/writer-thread';
@@ -53,6 +54,7 @@ const server = createServer({
 server.on('error', (fault) => refuse(listenFault(fault)));
 // A connection that was busy when the server was told to end is not kept for another request.
 server.on('request', ({ socket }, res) => res.once('close', () => ending && socket.end()));
+const takeOver = answerWhileStarting(server, log);
 server.listen(config.port, config.host, () => void begin().catch(fail));
 
 async function begin(): Promise<void> {
@@ -63,6 +65,7 @@ async function begin(): Promise<void> {
   writer = started.value.writer;
   const db = openReading(config.dataDir); // only now: the writer brings the tables up to date
   ground = makeReadingGround({ config, db, log, version: VERSION, port, nowMs: Date.now }, started.value.facts, writer);
+  takeOver();
   server.on('request', makeApp(ground, frontendFolder, writer));
   live = openLive(server, ground, writer); // after the application, whose answers it leaves in place
   sitesGate = openSitesGate(server, ground, writerDesk(writer));
