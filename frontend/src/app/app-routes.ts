@@ -20,6 +20,11 @@ const inside: Routes = [
     loadComponent: () => import('./first-steps/first-steps').then((file) => file.FirstSteps),
   }),
   { path: 'desk', title: 'Desk', loadComponent: () => import('./shell/desk-place').then((file) => file.DeskPlace) },
+  ...pageFor('pair:read', {
+    path: 'pair/:eventA/:eventB',
+    title: 'Pair',
+    loadComponent: () => import('./pair/pair-page').then((file) => file.PairPage),
+  }),
   { path: 'account', title: 'Your account', loadComponent: () => import('./account/account').then((file) => file.Account) },
   ...pageFor('network:read', {
     path: 'network',
