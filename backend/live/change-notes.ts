@@ -27,27 +27,49 @@ export type ChangeNote = { readonly number: number; readonly atMs: number } & (
   | { readonly is: 'hint'; readonly hint: ChangeHint }
 );
 
-/** Reads a row of `changes`, whose body is what `noteChange` was given. */
-export function changeNoteOf({ number, atMs, kind, body }: ChangeRow): ChangeNote {
-  const said = JSON.parse(body) as Record<string, never>; // ours, and held to be JSON by the table
-  switch (kind) {
-    case 'records': {
-      const { triggers, count = 0, withdrawn = [] } = said;
-      return said['coincidences'] === undefined
-        ? { number, atMs, is: 'events', count, triggers, withdrawn }
-        : { number, atMs, is: 'coincidences', ...(said as unknown as CoincidenceNote) };
-    }
-    case 'completeness':
-      return { number, atMs, is: 'completeness', sites: said['sites'] ?? {} };
-    case 'set-aside':
-      return { number, atMs, is: 'set-asides', sites: said['sites'] ?? {}, decided: said['decided'] ?? [] };
-    default:
-      return { number, atMs, is: 'hint', hint: hintOf(kind as ChangeHint['kind'], said) };
-  }
+/** What the bodies hold, by their kind: `noteChange` was given them, so that they are ours. */
+interface EventsBody {
+  readonly triggers?: IdRange;
+  readonly count?: number;
+  readonly withdrawn?: readonly number[] | IdRange;
+}
+interface CompletenessBody {
+  readonly sites?: Readonly<Record<string, Instant>>;
+}
+interface SetAsidesBody {
+  readonly sites?: Readonly<Record<string, Readonly<Record<string, number>>>>;
+  readonly decided?: readonly number[];
+}
+interface HintBody {
+  readonly what?: unknown;
+  readonly id?: number;
+  readonly ruleId?: number;
 }
 
-function hintOf(kind: ChangeHint['kind'], { what, id, ruleId }: Readonly<Record<string, never>>): ChangeHint {
-  return { kind, what: typeof what === 'string' ? what : null, id: id ?? ruleId ?? null };
+/** Reads a row of `changes`. */
+export function changeNoteOf({ number, atMs, kind, body }: ChangeRow): ChangeNote {
+  const said: unknown = JSON.parse(body);
+  switch (kind) {
+    case 'records': {
+      const { coincidences, ...rest } = said as EventsBody & Partial<CoincidenceNote>;
+      if (coincidences) return { number, atMs, is: 'coincidences', crowded: 0, ...rest, coincidences };
+      const { triggers, count = 0, withdrawn = [] } = rest;
+      return { number, atMs, is: 'events', count, triggers, withdrawn };
+    }
+    case 'completeness': {
+      const { sites = {} } = said as CompletenessBody;
+      return { number, atMs, is: 'completeness', sites };
+    }
+    case 'set-aside': {
+      const { sites = {}, decided = [] } = said as SetAsidesBody;
+      return { number, atMs, is: 'set-asides', sites, decided };
+    }
+    default: {
+      const { what, id, ruleId } = said as HintBody;
+      const hint = { kind: kind as ChangeHint['kind'], what: typeof what === 'string' ? what : null, id: id ?? ruleId ?? null };
+      return { number, atMs, is: 'hint', hint };
+    }
+  }
 }
 
 /** How many rows are noted. */

@@ -36,11 +36,17 @@ export class LiveHub {
   /** Takes a follower in; what it is told begins behind the number that comes back. */
   follow(link: LiveLink, networkId: number, audience: Audience): number {
     const network = this.networks.get(networkId) ?? this.open(networkId);
-    while (network.channel.step()); // the others first, so that this one begins exactly at the network's last change
+    this.bringUp(networkId);
     const followers = network.followers.get(audience.key) ?? { audience, links: new Set() };
     network.followers.set(audience.key, followers);
     followers.links.add(link);
     return network.channel.last();
+  }
+
+  /** Tells everybody what there is, so that what is answered next and what is told after it do not overlap. */
+  bringUp(networkId: number): void {
+    const channel = this.networks.get(networkId)?.channel;
+    while (channel?.step() === true);
   }
 
   leave(link: LiveLink, networkId: number): void {

@@ -24,10 +24,9 @@ import { areKept, keptChanges, missedChanges } from './network-channel';
 import { cutLink, unsentBytes } from './outgoing';
 import { type SessionLook, type SessionNow } from './session-look';
 
-/** Above this a browser is slow, and is told nothing more until it has read all but this; far above, or slow for long, it is cut. */
-const SLOW_BYTES = 512 * 1024;
+/** Above `slow` bytes unsent a browser is slow, and is told nothing more until they are fewer than this; above `most`, or slow for long, it is cut. */
 const READ_BYTES = 64 * 1024;
-const MOST_BYTES = 2 * 1024 * 1024;
+export const UNSENT_BYTES = { slow: 512 * 1024, most: 1024 * 1024 };
 const MOST_SLOW_MS = 30_000;
 const MOST_FAULTS = 20;
 const MOST_SHOWN_NAME = 60;
@@ -40,6 +39,7 @@ export interface LinkGround extends Pick<Ground, 'db' | 'log' | 'nowMs'> {
   readonly hub: LiveHub;
   readonly look: SessionLook;
   readonly readStates: (networkId: number) => SiteStates;
+  readonly unsentBytes: typeof UNSENT_BYTES;
 }
 
 type Acknowledge = (answer: LiveAnswers[LiveRequestName]) => void;
@@ -80,7 +80,7 @@ export class LiveLink {
   /** A message was told in the rooms of an audience of this link. */
   wasTold(news: NetworkChanges): void {
     if (!this.untold) {
-      if (unsentBytes(this.socket) > SLOW_BYTES) this.becomeSlow();
+      if (unsentBytes(this.socket) > this.ground.unsentBytes.slow) this.becomeSlow();
       return;
     }
     const { networkId, from, to, atMs } = news;
@@ -115,7 +115,7 @@ export class LiveLink {
     const { untold } = this;
     const unsent = unsentBytes(this.socket);
     const slowMs = untold ? this.ground.nowMs() - this.slowSinceMs : 0;
-    if (unsent > MOST_BYTES || (untold && unsent > READ_BYTES && slowMs > MOST_SLOW_MS)) {
+    if (unsent > this.ground.unsentBytes.most || (untold && unsent > READ_BYTES && slowMs > MOST_SLOW_MS)) {
       this.ground.log.info({ event: 'live:cut', personId: this.claimed.personId, unsent }, 'a browser does not read what it is sent');
       this.cut();
     } else if (untold && unsent <= READ_BYTES) {
@@ -179,7 +179,7 @@ export class LiveLink {
       this.ground.log.error({ err: fault, name }, 'a message of a browser could not be answered');
       answer(refusalOf('unknown', 'The server could not do it: try again.', BUSY_MS));
     }
-    if (unsentBytes(this.socket) > MOST_BYTES) this.lookAtRest();
+    if (unsentBytes(this.socket) > this.ground.unsentBytes.most) this.lookAtRest();
   }
 
   private answerTo(name: string, args: readonly unknown[]): LiveAnswers[LiveRequestName] {
@@ -247,6 +247,9 @@ export class LiveLink {
   }
 
   private missed({ networkId, after }: MissedAsked, audience: Audience): LiveAnswers['network:missed'] {
+    if (unsentBytes(this.socket) > this.ground.unsentBytes.slow)
+      return refusalOf('busy', 'What was sent before is not read yet: wait.', BUSY_MS);
+    this.ground.hub.bringUp(networkId);
     const found = missedChanges(this.ground.db, networkId, after, (read) => changesFor(audience, read));
     return found === 'too-old' ? refusalOf('too-old', 'These changes are no longer kept: take everything anew.') : { ok: true, ...found };
   }

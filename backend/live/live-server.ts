@@ -7,7 +7,7 @@ import { type Ground } from '../ground';
 import { arrivalsOf } from '../sites-gate/arrivals';
 import { type Writer } from '../writer/questions';
 import { LiveHub } from './live-hub';
-import { LiveLink, type LinkGround } from './live-link';
+import { LiveLink, UNSENT_BYTES, type LinkGround } from './live-link';
 import { sessionLook, type SessionNow } from './session-look';
 import { siteStatesReader } from './site-states';
 
@@ -38,9 +38,10 @@ export type LiveGround = Pick<Ground, 'db' | 'log' | 'nowMs' | 'origin' | 'produ
  * @param server listens, or will
  * @param ground what it reads
  * @param writer whose news say that a network has changed, or that something no longer holds
+ * @param unsent how much a browser may leave unread; another for a test of that
  * @throws when an event has no policy for people
  */
-export function openLive(server: HttpServer, ground: LiveGround, writer: Pick<Writer, 'on'>): LiveServer {
+export function openLive(server: HttpServer, ground: LiveGround, writer: Pick<Writer, 'on'>, unsent = UNSENT_BYTES): LiveServer {
   for (const name of Object.keys(LIVE_REQUESTS)) refuseUndeclared(name);
   const { nowMs } = ground;
   const io = new Server(server, {
@@ -66,7 +67,7 @@ export function openLive(server: HttpServer, ground: LiveGround, writer: Pick<Wr
   const arrivals = arrivalsOf(ARRIVALS_AT_ONCE, ARRIVALS_PER_S, LEAST_RETRY_MS);
   const readStates = siteStatesReader(ground);
   const hub = new LiveHub({ ...ground, io, readStates });
-  const linkGround: LinkGround = { ...ground, hub, look, readStates };
+  const linkGround: LinkGround = { ...ground, hub, look, readStates, unsentBytes: unsent };
   const links = new Set<LiveLink>();
   const sessions = new WeakMap<Socket, SessionNow>();
   let isEnding = false;

@@ -28,8 +28,8 @@ export interface RunningApp {
   readonly close: () => Promise<void>;
 }
 
-/** Starts the application as `main` does, in this process and thread. */
-export async function startApp(changed: Partial<Config> = {}): Promise<RunningApp> {
+/** Starts the application as `main` does, in this process and thread; `unsentBytes` for browsers that may leave more unread. */
+export async function startApp(changed: Partial<Config> = {}, unsentBytes?: Parameters<typeof openLive>[3]): Promise<RunningApp> {
   const dataDir = newFolder('app');
   const read = readConfig({ DATA_DIR: dataDir, NODE_ENV: 'test' });
   if (!read.ok) throw new Error(read.problem.text);
@@ -47,7 +47,7 @@ export async function startApp(changed: Partial<Config> = {}): Promise<RunningAp
   const db = openReading(dataDir);
   const reading = makeReadingGround({ ...sources, db }, ground, writer);
   server.on('request', makeApp(reading, pageFolder(dataDir), writer));
-  const live = openLive(server, reading, writer);
+  const live = openLive(server, reading, writer, unsentBytes);
   return {
     url: `http://127.0.0.1:${port}`,
     dataDir,
