@@ -19,7 +19,7 @@ const inside: Routes = [
     title: 'First steps',
     loadComponent: () => import('./first-steps/first-steps').then((file) => file.FirstSteps),
   }),
-  { path: 'desk', title: 'Desk', loadComponent: () => import('./shell/desk-place').then((file) => file.DeskPlace) },
+  { path: 'desk', title: 'Desk', loadComponent: () => import('./desk/desk').then((file) => file.Desk) },
   ...pageFor('pair:read', {
     path: 'pair/:eventA/:eventB',
     title: 'Pair',
