@@ -21,6 +21,10 @@ export function newSiteKey(): { readonly key: string; readonly prefix: string; r
   return { key, prefix: key.slice(0, PREFIX_CHARACTERS), hash: secretHash(key) };
 }
 
+/** Whether a use of a key is to be noted: its last one was noted more than a minute ago, or never was. */
+export const isUseDue = (lastUsedAt: string | null, nowMs: number): boolean =>
+  lastUsedAt === null || lastUsedAt < utcText(nowMs - LAST_USED_EXACT_MS);
+
 /**
  * The site whose key an Authorization header holds, and notes that the key was used, exact to a minute.
  *
@@ -40,7 +44,7 @@ export function useSiteKey(
     .get();
   if (!found) return undefined;
   const { lastUsedAt, ...holder } = found;
-  if (lastUsedAt === null || lastUsedAt < utcText(nowMs() - LAST_USED_EXACT_MS)) noteKeyUse(holder.keyId);
+  if (isUseDue(lastUsedAt, nowMs())) noteKeyUse(holder.keyId);
   return holder;
 }
 

@@ -12,6 +12,8 @@ export interface SiteOfKey {
   readonly networkId: number;
   readonly site: string;
   readonly network: string;
+  /** As it was noted last, UTC; null for never. */
+  readonly lastUsedAt: string | null;
 }
 
 /** Looks up a key, with the site and network that it is for; or says in words why it may not stream. */
@@ -27,6 +29,7 @@ export function keyReader(db: Ground['db']): KeyReader {
         networkId: networks.id,
         site: sites.code,
         network: networks.code,
+        lastUsedAt: siteKeys.lastUsedAt,
         revokedAt: siteKeys.revokedAt,
         siteClosedAt: sites.closedAt,
         networkClosedAt: networks.closedAt,
@@ -40,10 +43,10 @@ export function keyReader(db: Ground['db']): KeyReader {
     const found = key.length <= MOST_KEY_CHARACTERS ? find(secretHash(key)) : undefined;
     // A key that never was and one that was revoked look alike.
     if (found?.revokedAt !== null) return 'The key is unknown here, or was revoked: ask a coordinator or the operator of the site for one.';
-    const { keyId, siteId, networkId, site, network, siteClosedAt, networkClosedAt } = found;
+    const { keyId, siteId, networkId, site, network, lastUsedAt, siteClosedAt, networkClosedAt } = found;
     if (siteClosedAt !== null) return `The site ${found.site} is closed: it takes no more records.`;
     if (networkClosedAt !== null) return `The network ${found.network} is closed: it takes no more records.`;
-    return { keyId, siteId, networkId, site, network };
+    return { keyId, siteId, networkId, site, network, lastUsedAt };
   };
 }
 

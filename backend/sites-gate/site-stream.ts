@@ -20,6 +20,7 @@ import {
   type SiteWelcome,
 } from '#shared/contract/site-socket';
 import { type SiteRecord } from '#shared/contract/site-record';
+import { isUseDue } from '../accounts/site-key-use';
 import { type Ground } from '../ground';
 import { utf8 } from '../site-client/utf8';
 import { type CreditAccount, type CreditOffice } from './credit-office';
@@ -35,7 +36,7 @@ const MOST_SHOWN_NAME = 60;
 const RETRY_UNKNOWN_MS = 2_000;
 
 /** What a stream stands on. */
-export interface StreamGround extends Pick<Ground, 'db' | 'log' | 'nowMs'> {
+export interface StreamGround extends Pick<Ground, 'db' | 'log' | 'nowMs' | 'noteKeyUse'> {
   readonly desk: SiteDesk;
   readonly office: CreditOffice;
   readonly readKey: KeyReader;
@@ -231,6 +232,8 @@ export class SiteStream {
     if (this.hasSaidHello) return this.unusable('The hello of this connection was said already.');
     this.hasSaidHello = true;
     clearTimeout(this.helloBy);
+    const { keyId, lastUsedAt } = this.holder;
+    if (isUseDue(lastUsedAt, this.ground.nowMs())) this.ground.noteKeyUse(keyId);
     const { connectionId, series, more, completeTo } = await this.ground.desk.hello(this.sender, software);
     if (this.socket.connected) this.connectionId = connectionId;
     else this.bye(connectionId, 'the link was lost');

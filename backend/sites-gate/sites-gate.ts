@@ -47,7 +47,7 @@ export interface SitesGate {
 }
 
 /** What the gate stands on. */
-export type GateGround = Pick<Ground, 'db' | 'log' | 'nowMs' | 'origin' | 'production'>;
+export type GateGround = Pick<Ground, 'db' | 'log' | 'nowMs' | 'noteKeyUse' | 'origin' | 'production'>;
 
 /**
  * Opens the gate for sites on an HTTP server, whose own answers must be in place already.

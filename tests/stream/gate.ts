@@ -6,9 +6,9 @@ import { networks, siteKeys, sites } from '#schema/schema';
 import { valueOf } from '#shared/outcome';
 import { type Runs } from '#shared/contract/site-socket';
 import { type SiteRecord } from '#shared/contract/site-record';
-import { newSiteKey } from '../../backend/accounts/site-key-use';
+import { keepKeyUse, newSiteKey } from '../../backend/accounts/site-key-use';
 import { closeDb, openDb, type Db } from '../../backend/db';
-import { openSitesGate, type SitesGate } from '../../backend/sites-gate/sites-gate';
+import { type GateGround, openSitesGate, type SitesGate } from '../../backend/sites-gate/sites-gate';
 import { type BatchFates, type SiteDesk } from '../../backend/sites-gate/site-desk';
 import { newFolder } from '../support/folder';
 
@@ -73,10 +73,13 @@ export interface RunningGate {
   readonly port: number;
   readonly db: Db;
   readonly gate: SitesGate;
+  readonly ground: GateGround;
   readonly keys: readonly [string, string];
   readonly keyIds: readonly [number, number];
   readonly siteIds: readonly [number, number];
   readonly log: Record<string, unknown>[];
+  /** The keys of which a use was noted, each time. */
+  readonly keyUses: readonly number[];
   readonly close: () => Promise<void>;
 }
 
@@ -101,6 +104,7 @@ export async function startGateOver(db: Db, desk: SiteDesk, siteIds: readonly [n
     return { key, id };
   });
   const log: Record<string, unknown>[] = [];
+  const keyUses: number[] = [];
   const server = createServer((_req, res) => res.writeHead(404).end());
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
   const { port } = server.address() as AddressInfo;
@@ -108,6 +112,10 @@ export async function startGateOver(db: Db, desk: SiteDesk, siteIds: readonly [n
     db,
     log: pino({ level: 'debug' }, { write: (line: string) => void log.push(JSON.parse(line) as Record<string, unknown>) }),
     nowMs: Date.now,
+    noteKeyUse: (keyId: number) => {
+      keyUses.push(keyId);
+      keepKeyUse({ db, nowMs: Date.now }, keyId);
+    },
     origin: `http://127.0.0.1:${port}`,
     production: false,
   };
@@ -119,10 +127,12 @@ export async function startGateOver(db: Db, desk: SiteDesk, siteIds: readonly [n
     port,
     db,
     gate,
+    ground,
     keys: [first!.key, second!.key],
     keyIds: [first!.id, second!.id],
     siteIds,
     log,
+    keyUses,
     close: async () => {
       if (isClosed) return;
       isClosed = true;

@@ -1,9 +1,12 @@
+import { createServer } from 'node:http';
 import { eq } from 'drizzle-orm';
 import fc from 'fast-check';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { networks, siteKeys, sites } from '#schema/schema';
+import { SITE_REQUESTS } from '#shared/contract/site-socket';
 import { packRecords } from '#shared/contract/record-batch';
 import { SiteClient } from '../../backend/site-client/site-client';
+import { openSitesGate } from '../../backend/sites-gate/sites-gate';
 import { utf8 } from '../../backend/site-client/utf8';
 import { connecting, ended, HELLO, plainLink, recordingDesk, recordOf, startGate, welcomedLink } from './gate';
 import { type RecordingDesk, type RunningGate } from './gate';
@@ -85,6 +88,23 @@ describe('13 a key', () => {
     expect(desk.kept.size).toBe(0);
   });
 
+  it('has its use noted when a stream says hello with it, exact to a minute', async () => {
+    const [first] = gate.keyIds;
+    const unsaid = plainLink(gate.url, gate.keys[0]);
+    await connecting(unsaid);
+    unsaid.disconnect();
+    expect(gate.keyUses).toEqual([]);
+    for (let n = 0; n < 2; n++) (await welcomedLink(gate.url, gate.keys[0])).disconnect();
+    expect(gate.keyUses).toEqual([first]);
+    gate.db
+      .update(siteKeys)
+      .set({ lastUsedAt: new Date(Date.now() - 61_000).toISOString() })
+      .where(eq(siteKeys.id, first))
+      .run();
+    (await welcomedLink(gate.url, gate.keys[0])).disconnect();
+    expect(gate.keyUses).toEqual([first, first]);
+  });
+
   it.each(['site', 'network'] as const)('of a %s that is closed is refused, and says so', async (what) => {
     const closed = { closedAt: '2026-02-01T00:00:00.000Z' };
     if (what === 'site') gate.db.update(sites).set(closed).where(eq(sites.id, gate.siteIds[0])).run();
@@ -93,6 +113,69 @@ describe('13 a key', () => {
       code: 'refused',
       text: expect.stringContaining('is closed') as string,
     });
+  });
+});
+
+describe('22 an event', () => {
+  it('without a policy, or with one that is not for sites, stops the start', () => {
+    const requests: Record<string, unknown> = SITE_REQUESTS;
+    for (const planted of ['stream:planted', 'person:list']) {
+      requests[planted] = SITE_REQUESTS['stream:state'];
+      try {
+        expect(() => openSitesGate(createServer(), gate.ground, desk)).toThrow(`the event ${planted} has no policy for site keys`);
+      } finally {
+        // eslint-disable-next-line @typescript-eslint/no-dynamic-delete -- what was planted
+        delete requests[planted];
+      }
+    }
+    expect(Object.keys(SITE_REQUESTS)).toEqual(['stream:hello', 'stream:batch', 'stream:state']);
+  });
+});
+
+describe('24 each message', () => {
+  const MESSAGES: readonly (readonly [string, () => object])[] = [
+    ['stream:hello', () => HELLO],
+    ['stream:batch', () => ({ number: 1, packed: packed(3) })],
+    ['stream:state', () => ({ completeTo: { taiS: 5, ps: 6 } })],
+  ];
+
+  const REVOKED = { revokedAt: '2026-02-01T00:00:00.000Z' };
+  const CLOSED = { closedAt: '2026-02-01T00:00:00.000Z' };
+  const HARMS: Readonly<Record<string, () => unknown>> = {
+    'its key was revoked': () => gate.db.update(siteKeys).set(REVOKED).where(eq(siteKeys.id, gate.keyIds[0])).run(),
+    'its site was closed': () => gate.db.update(sites).set(CLOSED).where(eq(sites.id, gate.siteIds[0])).run(),
+    'its network was closed': () => gate.db.update(networks).set(CLOSED).run(),
+  };
+
+  it.each(MESSAGES.flatMap(([name, body]) => Object.keys(HARMS).map((harm) => [name, harm, body] as const)))(
+    '%s of a stream that was let in is not done once %s',
+    async (name, harm, body) => {
+      const socket = plainLink(gate.url, gate.keys[0]);
+      await connecting(socket);
+      if (name !== 'stream:hello') await socket.emitWithAck('stream:hello', HELLO);
+      const before = [...desk.said];
+      const refused = new Promise((resolve) => socket.once('stream:refused', resolve));
+      const cut = ended(socket);
+      HARMS[harm]!();
+      const answer = socket.timeout(CUT_WITHIN_MS).emitWithAck(name, body());
+      await expect(answer).rejects.toThrow();
+      expect(await refused).toEqual({ text: expect.stringMatching(/was revoked|is closed/) as string });
+      await cut;
+      expect(desk.kept.size).toBe(0);
+      expect(desk.said.filter((line) => !before.includes(line)).every((line) => line.startsWith('bye'))).toBe(true);
+    },
+  );
+
+  it('is for the site of its own key, whatever it says: two links of two sites never mix', async () => {
+    const [first, second] = [await welcomedLink(gate.url, gate.keys[0]), await welcomedLink(gate.url, gate.keys[1])];
+    const rows = [{ sequence: '1', reading: '2026-03-01T12:00:00.5' }];
+    await first.emitWithAck('stream:batch', { number: 1, rows });
+    await second.emitWithAck('stream:batch', { number: 1, rows });
+    expect([...desk.kept.keys()]).toEqual(gate.siteIds.map((siteId) => `${siteId}::1`));
+    const forged = { number: 2, rows: [{ ...rows[0], sequence: '2', siteId: gate.siteIds[1] }] };
+    expect(await first.emitWithAck('stream:batch', forged)).toMatchObject({ ok: false, code: 'unusable' });
+    expect(desk.kept.size).toBe(2);
+    for (const socket of [first, second]) socket.disconnect();
   });
 });
 
