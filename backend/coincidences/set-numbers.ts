@@ -47,6 +47,11 @@ export interface SetNumbers {
   readonly rowHash: Buffer;
 }
 
+/** What the hash of a coincidence is over: as computed, or as its rows have it. */
+export type HashedSet = Omit<SetNumbers, 'rowHash' | 'events'> & {
+  readonly events: readonly Pick<StoredEvent, 'triggerId' | 'siteId' | 'eventVersion'>[];
+};
+
 const CLASSES: readonly string[] = [...INTERVAL_CLASSES, 'mixed'];
 
 /** The hash that names a set for ever: SHA-256 over the rule's code and the event names sorted by code unit, one a line; its first 12 digits are the name. */
@@ -117,7 +122,7 @@ export function setNumbers(setup: SearchSetup, events: readonly StoredEvent[], n
     amplitude: sumOfAmplitudes(events),
     pairs,
   };
-  return { ...numbers, rowHash: rowHash(setup.active.versionId, numbers) };
+  return { ...numbers, rowHash: coincidenceHash(setup.active.versionId, numbers) };
 }
 
 function classOf([first, ...others]: readonly PairNumbers[]): IntervalClass | 'mixed' {
@@ -128,7 +133,7 @@ function classOf([first, ...others]: readonly PairNumbers[]): IntervalClass | 'm
  * SHA-256 over everything of a set that never changes: its rule's version, hash and numbers, its members, its pairs. Numbers are doubles, lowest
  * byte first, in the order of the columns; NaN stands for NULL, a class for its place among the classes.
  */
-function rowHash(versionId: number, set: Omit<SetNumbers, 'rowHash'>): Buffer {
+export function coincidenceHash(versionId: number, set: HashedSet): Buffer {
   const absent = (value: number | null): number => value ?? NaN;
   const numbers = [versionId, set.events.length, set.first.taiS, set.first.ps, set.spanNs, CLASSES.indexOf(set.class)];
   numbers.push(set.counts.timelike, set.counts.spacelike, set.counts.undecided);

@@ -11,7 +11,8 @@ const cell = (name: string, text: string): string => (text === '' ? '' : `${name
 /** Line ends within a text count alike, as in logs. */
 const unixLines = (text: string): string => (text.includes('\r') ? text.replaceAll('\r\n', '\n') : text);
 
-const sha256 = (content: string | Uint8Array): Buffer => Buffer.from(hash('sha256', content, 'buffer'));
+/** By way of a text of one character a byte, which takes half the time of asking for the bytes. */
+const sha256 = (content: string | Uint8Array): Buffer => Buffer.from(hash('sha256', content, 'binary'), 'binary');
 
 /**
  * SHA-256 over a record's content by column name: the same for the same texts, whatever the order of the columns; what tells the same record
@@ -31,6 +32,9 @@ export function contentHash(record: SiteRecord): Buffer {
   return sha256(unixLines(content));
 }
 
+/** What the hash of an event is over: as computed, or as its row has it. */
+export type HashedEvent = Omit<StoredEvent, 'site' | 'series' | 'sequence' | 'version' | 'segment' | 'sinceEpochRestDays'>;
+
 /** What a row of events holds beside the event's numbers. */
 export interface RowGround {
   readonly networkId: number;
@@ -48,7 +52,7 @@ const SOURCE_NUMBERS = { record: 0, site: 1, resolution: 2 } as const;
  * SHA-256 over all that a row of `events` or `event_versions` holds of an event, as doubles (big-endian; an amplitude that is not given as NaN):
  * finds a flipped bit.
  */
-export function eventRowHash(event: StoredEvent, { networkId, groundingId, changeNumber }: RowGround): Buffer {
+export function eventRowHash(event: HashedEvent, { networkId, groundingId, changeNumber }: RowGround): Buffer {
   const numbers = [
     event.triggerId,
     networkId,

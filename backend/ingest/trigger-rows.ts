@@ -21,6 +21,9 @@ export interface TriggerRow {
   readonly countedIn: string;
 }
 
+/** What a trigger says, as its row has it. */
+export type TriggerTexts = Pick<TriggerRow, 'series' | 'sequence' | 'kind' | 'reading' | 'readingForm' | 'sigma' | 'amplitude'>;
+
 const TRIGGER_QUERY = `SELECT t.id, t.site_id AS siteId, t.series, t.sequence, t.variant, t.kind, t.reading, t.reading_form AS readingForm, t.sigma,
   t.amplitude, t.extra, t.content_hash AS contentHash, e.trigger_id IS NOT NULL AS stands, coalesce(m.series, t.series) AS countedIn
   FROM triggers AS t LEFT JOIN events AS e ON e.trigger_id = t.id LEFT JOIN set_asides AS m ON m.id = t.mended_from_id`;
@@ -59,7 +62,7 @@ function extraOf({ sequence, kind, record }: NewTrigger): string | null {
 const formOf = (form: string): SiteRecord['readingForm'] => (form === 'tai-pair' ? 'tai-pair' : 'iso');
 
 /** The texts of a trigger from which its event is computed. */
-export const textsOf = ({ series, sequence, kind, reading, readingForm, sigma, amplitude }: TriggerRow): MeasuredTexts => ({
+export const textsOf = ({ series, sequence, kind, reading, readingForm, sigma, amplitude }: TriggerTexts): MeasuredTexts => ({
   series,
   sequence,
   kind,
@@ -70,7 +73,7 @@ export const textsOf = ({ series, sequence, kind, reading, readingForm, sigma, a
 });
 
 /** The record that a trigger came as, verbatim. */
-export function recordOf(row: TriggerRow): SiteRecord {
+export function recordOf(row: TriggerTexts & Pick<TriggerRow, 'extra'>): SiteRecord {
   const kept: unknown = row.extra === null ? {} : JSON.parse(row.extra);
   const columns = Object.entries(typeof kept === 'object' && kept !== null ? kept : {}).map(([name, text]): [string, string] => [
     name,
