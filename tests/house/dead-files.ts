@@ -9,6 +9,7 @@ const ENTRIES = [
   /(?:^|\/)[^/]+\.config\.ts$/,
   /\.d\.ts$/,
   /^tests\/support\/(?:build|random)\.ts$/,
+  /^tests\/faults\/power-cut-writer\.ts$/,
   /^tests\/.*\.(?:test|e2e|bench|long)\.ts$/,
   /\.spec\.ts$/,
 ];
