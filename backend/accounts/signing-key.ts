@@ -1,8 +1,9 @@
 import { createSecretKey, randomBytes, type KeyObject } from 'node:crypto';
-import { chmodSync, existsSync, readFileSync, writeFileSync } from 'node:fs';
+import { chmodSync, existsSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { problemOf, valueOf, type Outcome } from '#shared/outcome';
 import { type Config } from '../config';
+import { keepFile } from '../keep-file';
 
 const LEAST_BYTES = 32;
 const NEW_BYTES = 48;
@@ -25,7 +26,7 @@ export function signingKey(config: Pick<Config, 'dataDir' | 'production' | 'sess
         'SESSION_SECRET',
         `SESSION_SECRET is absent, and so is ${file}: one of them must hold a secret of at least ${LEAST_BYTES} bytes in production.`,
       );
-    writeFileSync(file, `${randomBytes(NEW_BYTES).toString('base64')}\n`, { mode: OWNER_ONLY_FILE, flag: 'wx' });
+    keepFile(file, `${randomBytes(NEW_BYTES).toString('base64')}\n`);
   }
   chmodSync(file, OWNER_ONLY_FILE);
   const secret = readFileSync(file, 'utf8').trim();

@@ -1,7 +1,6 @@
-import { chmodSync, existsSync, readFileSync, renameSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
-
-const OWNER_ONLY_FILE = 0o600;
+import { keepFile } from '../keep-file';
 
 /** The last audit row that was written: kept outside the database, a cut tail or a rewritten chain does not fit it. */
 export interface Head {
@@ -25,11 +24,6 @@ export function auditHeadIn(dataDir: string): AuditHead {
       const found = /^(\d{1,15}) ([0-9a-f]{64})\n$/.exec(readFileSync(file, 'utf8'));
       return found?.[1] && found[2] ? { seq: Number(found[1]), hashHex: found[2] } : undefined;
     },
-    keep: ({ seq, hashHex }) => {
-      const next = `${file}.${process.pid}.new`;
-      writeFileSync(next, `${seq} ${hashHex}\n`, { mode: OWNER_ONLY_FILE, flush: true });
-      chmodSync(next, OWNER_ONLY_FILE);
-      renameSync(next, file);
-    },
+    keep: ({ seq, hashHex }) => keepFile(file, `${seq} ${hashHex}\n`),
   };
 }

@@ -38,6 +38,7 @@ type Sources = Pick<Ground, 'db' | 'log' | 'nowMs' | 'auditHead'>;
  */
 export function change<T>(ground: Sources, actor: Actor, work: (tx: Tx, note: (note: Note) => void) => T): T {
   const rows: AuditRow[] = [];
+  beginHead(ground);
   const value = commit(ground.db, (tx) => {
     const result = work(tx, (note) => rows.push(append(tx, actor, note, utcText(ground.nowMs()))));
     if (rows.length === 0) throw new Error('a change was made without its audit entry');
@@ -69,6 +70,12 @@ function append(tx: Tx, actor: Actor, note: Note, at: string): AuditRow {
   return whole;
 }
 
+/** The head of a chain without an entry is kept before the first one, so that a power cut right after that one leaves no chain without a head. */
+function beginHead({ db, auditHead }: Sources): void {
+  if (!auditHead.read() && !db.select({ seq: audit.seq }).from(audit).limit(1).get())
+    auditHead.keep({ seq: 0, hashHex: NO_ROW_BEFORE.toString('hex') });
+}
+
 /** A head that the chain no longer holds is evidence: it is left as it is, and told. */
 function keepHead({ db, log, auditHead }: Sources, rows: readonly AuditRow[]): void {
   const last = rows.at(-1);
@@ -83,5 +90,6 @@ function keepHead({ db, log, auditHead }: Sources, rows: readonly AuditRow[]): v
 
 /** Whether the database's chain holds a head that was kept. */
 export function holds(db: Db, head: { readonly seq: number; readonly hashHex: string }): boolean {
+  if (head.seq === 0) return head.hashHex === NO_ROW_BEFORE.toString('hex');
   return db.select({ hash: audit.hash }).from(audit).where(eq(audit.seq, head.seq)).get()?.hash.toString('hex') === head.hashHex;
 }
