@@ -29,12 +29,12 @@ export const latestEventsQuery = (networkId: number): Query =>
     networkId,
   );
 
-/** How many events each open site had in the minute that an instant lies in, and in the one before. */
+/** How many events of each kind each open site had in a minute, and in the one before. */
 export const ratesQuery = (networkId: number, minuteTaiS: number): Query =>
   part(
-    `SELECT s.id AS siteId, r.from_tai_s AS fromTaiS, sum(r.events) AS events FROM sites s
+    `SELECT s.id AS siteId, r.from_tai_s AS fromTaiS, r.events FROM sites s
      JOIN event_rates r ON r.site_id = s.id AND r.kind IN ('trigger', 'reference', 'test') AND r.width_s = ${MINUTE_S} AND r.from_tai_s IN (?, ?)
-     WHERE s.network_id = ? AND s.closed_at IS NULL GROUP BY s.id, r.from_tai_s`,
+     WHERE s.network_id = ? AND s.closed_at IS NULL`,
     minuteTaiS - MINUTE_S,
     minuteTaiS,
     networkId,

@@ -16,6 +16,8 @@ import {
 } from '../../backend/coincidences/coincidence-list';
 import { eventVersionsQuery } from '../../backend/events/event-in-full';
 import { eventListQuery, eventNamesQuery } from '../../backend/events/event-list';
+import { coincidencesSinceQuery, eventsOfChangeQuery } from '../../backend/live/changes-read';
+import { latestEventsQuery, ratesQuery } from '../../backend/live/site-states';
 import { type Query } from '../../backend/search/query';
 import { setAsideListQuery, withoutClock } from '../../backend/set-asides/set-aside-list';
 import { changesQuery } from '../../backend/streams/change-list';
@@ -52,6 +54,7 @@ const KEY = 'PRIMARY KEY';
 const ofProduct = (serves: string, indexes: string | readonly string[], { sql, values }: Query): HotQuery =>
   query(serves, indexes, sql, ...values);
 
+const RATE_MINUTE_S = Math.floor(FIRST_S / 60) * 60;
 const CURSOR = { taiS: CURSOR_S, ps: 0 };
 const EVENTS_ASKED = { networkId: 1, siteIds: undefined, order: 'up', limit: PAGE } as const;
 const SETS_ASKED = { networkId: 1, siteIds: [], ruleVersionIds: undefined, sort: 'time', order: 'up', limit: PAGE } as const;
@@ -263,6 +266,14 @@ export const HOT_QUERIES: readonly HotQuery[] = [
   ofProduct('what a coincidence grew into', ['growths_into', KEY, 'USE TEMP B-TREE FOR ORDER BY'], grewIntoQuery(17)),
   // What all share.
   ofProduct('changes after a number', KEY, changesQuery(1, 500, PAGE)),
+  ofProduct('the events that a change brought', KEY, eventsOfChangeQuery(1, 1, { from: 1, to: 1_000 })),
+  ofProduct('the coincidences that changes brought', 'coincidences_since', coincidencesSinceQuery(1, 1, 1_000)),
+  ofProduct(
+    "the latest event of each of a network's sites",
+    ['sites_code', KEY, 'CORRELATED SCALAR SUBQUERY 1', 'events_of_site', KEY],
+    latestEventsQuery(1),
+  ),
+  ofProduct("how many events a network's sites had in a minute", ['sites_code', KEY], ratesQuery(1, RATE_MINUTE_S)),
   query('the audit trail back from a row', KEY, `SELECT seq, action FROM audit WHERE seq < ? ORDER BY seq DESC LIMIT ${PAGE}`, 500),
   query(
     'the audit trail of a network',

@@ -16,6 +16,7 @@ import { SET_ASIDE_ROUTES } from '#shared/contract/set-aside-routes';
 import { STREAM_ROUTES } from '#shared/contract/stream-routes';
 import { AUDIT_ROUTES, HEALTH_ROUTES, KEPT_MAIL_ROUTES } from '#shared/contract/record-routes';
 import { MY_ROUTES, PEOPLE_ROUTES, SESSION_ROUTES, SITE_KEY_ROUTES } from '#shared/contract/people-routes';
+import { PREFERENCE_ROUTES } from '#shared/contract/preference-routes';
 import { judge, POLICIES, policyOf, type PolicyName } from '#shared/contract/policies';
 import { DEPLOYMENT } from '#shared/contract/roles';
 import { route, type Route } from '#shared/contract/routes';
@@ -38,6 +39,7 @@ const DECLARED: readonly Route[] = [
   HEALTH_ROUTES,
   SESSION_ROUTES,
   MY_ROUTES,
+  PREFERENCE_ROUTES,
   PEOPLE_ROUTES,
   SITE_KEY_ROUTES,
   EVENT_ROUTES,
@@ -156,6 +158,8 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
   'POST /me/password': { in: ALL_PEOPLE, body: () => ({ current: PASSWORD, password: 'password1234' }) },
   'GET /me/sessions': { in: ALL_PEOPLE },
   'POST /me/sessions/:sessionId/end': { in: [], hidden: ALL_PEOPLE, path: () => '/me/sessions/99999/end' },
+  'GET /me/preferences': { in: ALL_PEOPLE },
+  'PATCH /me/preferences': { in: ALL_PEOPLE },
   'POST /sign-out-everywhere': { in: ALL_PEOPLE },
   'GET /people': { in: COORDINATORS },
   'GET /people/:personId': { in: COORDINATORS, path: () => `/people/${world.people.analyst}` },

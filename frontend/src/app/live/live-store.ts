@@ -143,8 +143,9 @@ export class LiveStore {
         this.again.next();
       },
       isCatchingUp: (catching) => {
-        if (turn === this.turn && (this.phaseNow() === 'live' || this.phaseNow() === 'catching-up'))
-          this.phaseNow.set(catching ? 'catching-up' : 'live');
+        if (turn !== this.turn || (this.phaseNow() !== 'live' && this.phaseNow() !== 'catching-up')) return;
+        this.phaseNow.set(catching ? 'catching-up' : 'live');
+        this.feed();
       },
     });
   }
@@ -169,8 +170,8 @@ export class LiveStore {
         else this.retry = setTimeout(() => void this.follow(turn), answer.retryAfterMs ?? BUSY_MS);
         return;
       }
-      this.takeStates(answer.states);
       this.phaseNow.set('live');
+      this.takeStates(answer.states);
       follower.begin(answer);
       if (after === undefined || !answer.isKept) this.completeNow.set(answer.states.completeTo);
     } catch {
