@@ -80,9 +80,13 @@ import { allColumns, columnsText, movedColumn, shownColumns } from './set-column
     .quiet:disabled {
       opacity: 0.3;
     }
-    @media (max-width: 1180px) {
+    @media (max-width: 1500px) {
       .long {
-        display: none;
+        position: absolute;
+        width: 1px;
+        height: 1px;
+        overflow: hidden;
+        clip-path: inset(50%);
       }
       .btn sw-icon {
         margin: 0;

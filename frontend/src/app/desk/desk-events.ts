@@ -3,7 +3,7 @@ import { type CoincidenceBrief } from '#shared/contract/coincidence';
 import { EVENT_ROUTES } from '#shared/contract/event-routes';
 import { type Frame, FRAME_ROUTES } from '#shared/contract/frame-routes';
 import { PAIR_ROUTES, type PairInFull, type PairsOfSet } from '#shared/contract/pair-routes';
-import { addPicoseconds, type Instant } from '#shared/time/instant';
+import { compareInstants, type Instant } from '#shared/time/instant';
 import { allOf } from '../api/all-of';
 import { ApiClient } from '../api/api-client';
 import { sentenceOf } from '../api/api-problem';
@@ -11,14 +11,15 @@ import { NetworkStore } from '../networks/network-store';
 import { SessionStore } from '../session/session-store';
 import { Loader } from '../ui/loaded';
 import { DeskPlace } from './desk-place';
-import { DESK_SOURCE } from './desk-source';
+import { DESK_SOURCE, type DeskNews, MOST_SHOWN, withRows } from './desk-source';
+import { instantAfter } from '../diagrams/instant-after';
 import { NO_EVENTS, showEvents, type ShownEvents, type ShownSite } from './shown-events';
 
 /** What is shown of time at first: of all sites, and around an event. */
 export const USUAL_SPAN_MS = { sites: 20_000, event: 60, baseline: 60 } as const;
-const PS_PER_MS = 1e9;
 const LEAST_AROUND_MS = 1_000;
 const ASK_PAIRS_AFTER_MS = 120;
+const MOST_KEPT = 1_000; // news while a list is read
 
 /** The events of the desk, what the server says of their pairs, and the frames of the network. */
 @Injectable()
@@ -33,6 +34,10 @@ export class DeskEvents {
   private readonly newest = signal<Instant | undefined>(undefined);
   private readonly answered = signal<PairsOfSet | undefined>(undefined);
   private readonly asking = signal(true);
+  /** What is held of time; both ends belong to it. */
+  private span: { readonly from: Instant; readonly to: Instant | undefined } | undefined;
+  /** What was told while a list was read: put over it, since it may be older. */
+  private readonly meanwhile: DeskNews[] = [];
   private turn = 0;
   private pairsTimer: ReturnType<typeof setTimeout> | undefined;
   private pairsAsked = '';
@@ -109,6 +114,7 @@ export class DeskEvents {
     }
     const turn = ++this.turn;
     this.asking.set(true);
+    this.meanwhile.length = 0;
     try {
       const params = { networkId };
       const [latest] = (await this.api.call(EVENT_ROUTES.listEvents, { params, query: { order: 'down', limit: 1 } })).items;
@@ -119,20 +125,40 @@ export class DeskEvents {
         this.held.set(NO_EVENTS);
         return;
       }
-      const halfPs = Math.round(reachMs * PS_PER_MS);
-      const [from, to] =
-        view === 'sites'
-          ? [addPicoseconds(centre, -halfPs), addPicoseconds(centre, 1)]
-          : [addPicoseconds(centre, -halfPs), addPicoseconds(centre, halfPs)];
+      const from = instantAfter(centre, -reachMs);
+      const isLive = view === 'sites' && until === undefined;
+      const to = instantAfter(centre, view === 'sites' ? 0.001 : reachMs);
       const events = await this.source.events(networkId, from, to);
       if (turn !== this.turn) return;
+      this.span = { from, to: isLive ? undefined : to };
       this.held.set(showEvents(events, sites));
+      for (const news of this.meanwhile) this.hear(news);
       this.told.set('');
     } catch (fault) {
       if (turn === this.turn) this.told.set(sentenceOf(fault));
     } finally {
       if (turn === this.turn) this.asking.set(false);
     }
+  }
+
+  /** Puts news over what is held; reads again what could not be told. */
+  hear(news: DeskNews): void {
+    if (this.asking() && this.meanwhile.length < MOST_KEPT) this.meanwhile.push(news);
+    const { events } = news;
+    if (events === undefined) {
+      if (!this.asking()) void this.load();
+      return;
+    }
+    if (!this.span || (events.items.length === 0 && events.gone.length === 0)) return;
+    const latest = events.items.reduce((last, { at }) => (!last || compareInstants(at, last) > 0 ? at : last), this.newest());
+    this.newest.set(latest);
+    const { to } = this.span;
+    const from = to || !latest ? this.span.from : later(this.span.from, instantAfter(latest, -this.asked().reachMs));
+    this.span = { from, to };
+    const isIn = (at: Instant): boolean => compareInstants(at, from) >= 0 && (!to || compareInstants(at, to) <= 0);
+    const briefs = withRows(this.held().briefs, events).filter(({ at }) => isIn(at));
+    if (briefs.length !== this.held().briefs.length || briefs.some((brief, i) => brief !== this.held().briefs[i]))
+      this.held.set(showEvents(briefs.slice(-MOST_SHOWN), this.sites()));
   }
 
   /** Asks for all pairs of these events; what was answered for more of them serves too. */
@@ -178,6 +204,8 @@ export class DeskEvents {
     return current?.at;
   }
 }
+
+const later = (a: Instant, b: Instant): Instant => (compareInstants(a, b) > 0 ? a : b);
 
 /** A pair as one of its events sees it. */
 export interface PairSeen {

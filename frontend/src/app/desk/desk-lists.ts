@@ -6,9 +6,12 @@ import { NetworkStore } from '../networks/network-store';
 import { SessionStore } from '../session/session-store';
 import { Loader } from '../ui/loaded';
 import { DeskPlace } from './desk-place';
+import { type DeskNews, withRows } from './desk-source';
 import { foldSets } from './fold-sets';
+import { compareInstants } from '#shared/time/instant';
 
 const PAGE = 200;
+const MOST_FOLLOWED = 2_000;
 
 interface Part {
   readonly items: readonly CoincidenceBrief[];
@@ -53,19 +56,39 @@ export class DeskLists {
     });
   }
 
-  /** Something has changed: takes it in at the live edge, else keeps it until it is asked for. */
-  async renew(): Promise<void> {
-    if (!this.maySee() || this.part.state().kind !== 'loaded') return;
-    const part = await this.ask(undefined).catch(() => undefined);
+  /** Takes news in at the live edge, else keeps it until it is asked for; what it could not tell is read again. */
+  async hear({ coincidences, hasRecords }: DeskNews): Promise<void> {
+    if (!this.maySee() || !hasRecords || this.part.state().kind !== 'loaded') return;
+    const base = this.waiting() ?? this.part.value() ?? { items: [], next: null };
+    const { sort, order } = this.filter();
+    const isPlain = sort === 'time' && order === 'down';
+    if (coincidences && isPlain && isEmpty(coincidences)) return;
+    const part = coincidences && isPlain ? this.withNews(base, coincidences) : await this.ask(undefined).catch(() => undefined);
     if (!part) return;
-    const shown = this.part.value()?.items ?? [];
-    if (this.isFollowing() || shown.length === 0) this.take(part);
-    else {
-      // What is shown goes on to say what is so of it: a state, a chance.
-      const now = new Map(part.items.map((item) => [item.id, item]));
-      this.part.update(({ items, next }) => ({ items: items.map((item) => now.get(item.id) ?? item), next }));
-      this.waiting.set(part);
+    if (this.isFollowing() || (this.part.value()?.items ?? []).length === 0) {
+      this.take(part);
+      return;
     }
+    // What is shown goes on to say what is so of it: a state, a chance.
+    const now = new Map(part.items.map((item) => [item.id, item]));
+    this.part.update(({ items, next }) => ({ items: items.map((item) => now.get(item.id) ?? item), next }));
+    this.waiting.set(part);
+  }
+
+  /** Reads everything again. */
+  async renew(): Promise<void> {
+    if (this.maySee()) await this.begin();
+  }
+
+  private withNews({ items, next }: Part, news: NonNullable<DeskNews['coincidences']>): Part {
+    const { class: ofClass, leastFold = 0, state } = this.filter();
+    const isWanted = (one: CoincidenceBrief): boolean =>
+      (ofClass === undefined || one.class === ofClass) && one.fold >= leastFold && (state === undefined || one.state === state);
+    const final = new Set(news.final);
+    const now = withRows(items, news).map((one) => (final.has(one.id) && one.state === 'open' ? { ...one, state: 'final' as const } : one));
+    const sorted = now.filter(isWanted).sort((a, b) => compareInstants(b.first, a.first) || b.id - a.id);
+    // At the live edge the list does not grow without end; whoever wants to go further back than that filters or sorts.
+    return { items: sorted.slice(0, MOST_FOLLOWED), next: sorted.length > MOST_FOLLOWED ? null : next };
   }
 
   /** Shows what has come meanwhile. */
@@ -106,3 +129,5 @@ export class DeskLists {
     return { items, next };
   }
 }
+
+const isEmpty = ({ items, gone, final }: NonNullable<DeskNews['coincidences']>): boolean => items.length + gone.length + final.length === 0;

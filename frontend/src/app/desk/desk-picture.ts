@@ -23,14 +23,14 @@ import { instantOfRow, kindsAgainst } from './shown-events';
 export const MOST_COMPARED = 49;
 const USUAL_SIGMAS = 3;
 const LIMITS = { leastPxPerMs: 0.02, mostPxPerMs: 4e5 };
-const ABOVE = 0.6; // of the box lies above the event
+const ABOVE = 0.72; // of the box lies above the event: of 60 ms what light needs through the Earth
 const EDGE_ROOM = 0.03; // of the span, above the latest event
 const LEFT = { sites: 78, wide: 60, narrow: 48 };
 const TOP_PX = 44;
 const BOTTOM_PX = 46;
 export const GUTTER_PX = 84;
 const LANE_PX = 40;
-const AT_MOST_ACROSS = 0.46; // of the page is the diagram's
+const AT_MOST_ACROSS = 0.45; // of the page is the diagram's
 const AROUND_MS = 43; // light through the Earth and a little more
 
 /** Everything that the diagram and the table beside it draw, computed from what is held, the address and the size. */
@@ -122,7 +122,7 @@ export class DeskPicture {
     const left = isNarrow ? (isSites ? LEFT.sites : LEFT.narrow) : isSites ? LEFT.sites : LEFT.wide;
     const sites = this.data.sites().length;
     if (isNarrow) {
-      const width = Math.max(200, widthPx - left - 12);
+      const width = Math.max(200, widthPx - left - 14);
       const height = this.view() === 'sites' ? width * 1.1 : width * 1.3;
       return { box: { left, top: TOP_PX, width, height }, widthPx, heightPx: height + TOP_PX + BOTTOM_PX };
     }
@@ -247,7 +247,9 @@ export class DeskPicture {
   });
   readonly baselineMs = computed(() => this.alongPlane().xMs[this.otherRow()] ?? 0);
 
-  readonly picture = computed<Picture>(() => {
+  /** A narrow picture has no title up its side: the table says what it would. */
+  readonly picture = computed<Picture>(() => (this.room().isNarrow ? { ...this.drawn(), yTitle: '' } : this.drawn()));
+  private readonly drawn = computed<Picture>(() => {
     const [view, box, { x, y }] = [this.view(), this.box(), this.scales()];
     const [events, timeScale] = [this.data.events(), this.preferences.scale()];
     if (view === 'sites') {

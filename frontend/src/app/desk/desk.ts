@@ -11,10 +11,8 @@ import {
   untracked,
   viewChild,
 } from '@angular/core';
-import { toObservable } from '@angular/core/rxjs-interop';
 import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { Router } from '@angular/router';
-import { of, switchMap } from 'rxjs';
 import { type CoincidenceBrief } from '#shared/contract/coincidence';
 import { type IntervalClass } from '#shared/relativity/verdict';
 import { CommandStore } from '../commands/command-store';
@@ -38,7 +36,7 @@ import { DeskPlace } from './desk-place';
 import { DESK_SOURCE } from './desk-source';
 import { EventTable } from './event-table';
 import { plain, signed } from './figures';
-import { HttpDeskSource } from './http-desk-source';
+import { LiveDeskSource } from './live-desk-source';
 import { saveFile } from './save-file';
 import { SetOrders } from './set-orders';
 import { SetTable } from './set-table';
@@ -78,7 +76,7 @@ const CLASSES = ['spacelike', 'timelike', 'undecided'] as const;
     Skeleton,
     SpeedSlider,
   ],
-  providers: [DeskPlace, DeskEvents, DeskLists, DeskPicture, SetOrders, { provide: DESK_SOURCE, useClass: HttpDeskSource }],
+  providers: [DeskPlace, DeskEvents, DeskLists, DeskPicture, SetOrders, { provide: DESK_SOURCE, useClass: LiveDeskSource }],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './desk.html',
   styleUrl: './desk.scss',
@@ -93,7 +91,6 @@ export class Desk {
   protected readonly data = inject(DeskEvents);
   protected readonly lists = inject(DeskLists);
   protected readonly picture = inject(DeskPicture);
-  private readonly strip = viewChild(SiteStrip);
   private readonly work = viewChild<ElementRef<HTMLElement>>('work');
   private readonly eventTable = viewChild(EventTable);
   private readonly setTable = viewChild(SetTable);
@@ -151,33 +148,24 @@ export class Desk {
       other,
       dt: seen ? `${signed(((seen.isFirst ? 1 : -1) * seen.pair.dtNs) / 1e6, 3)} ms` : '',
       class: seen?.pair.class,
-      turning: turning ? `turns at ${turning.speedC.toFixed(3)} \u00b1 ${turning.sigmaC.toPrecision(2)} c` : '',
+      turning: turning ? `turns at ${turning.speedC.toFixed(3)} c` : '',
     };
   });
 
   constructor() {
     const destroyed = inject(DestroyRef);
     const source = inject(DESK_SOURCE);
-    const networkId = computed(() => this.networks.network()?.id);
-    toObservable(networkId)
-      .pipe(
-        switchMap((id) => (id === undefined ? of(undefined) : source.news(id))),
-        takeUntilDestroyed(),
-      )
-      .subscribe((news) => {
-        if (!news) return;
-        if (news.records && !this.isPaused()) {
-          void this.data.load();
-          void this.lists.renew();
-        }
-        if (news.setup) {
-          void this.networks.sites.load();
-          void this.data.frames.load();
-          this.data.forgetPairs();
-          this.orders.forget();
-        }
-        void this.strip()?.renew();
-      });
+    source.news.pipe(takeUntilDestroyed()).subscribe((news) => {
+      if (news.hasRecords && !this.isPaused()) {
+        this.data.hear(news);
+        void this.lists.hear(news);
+      }
+      if (!news.hasSetup) return;
+      void this.networks.sites.load();
+      void this.data.frames.load();
+      this.data.forgetPairs();
+      this.orders.forget();
+    });
     effect(() => {
       // Another view without an event: it begins at the strongest coincidence that is listed, else at the latest event.
       const { view, event } = this.place.address();
@@ -190,6 +178,7 @@ export class Desk {
       if (!host) return;
       const sizes = new ResizeObserver(() => this.measure(host));
       sizes.observe(host);
+      sizes.observe(document.body); // what stands above may come later
       onCleanup(() => sizes.disconnect());
     });
     afterNextRender(() => {
@@ -259,8 +248,9 @@ export class Desk {
 
   protected pause(): void {
     const origin = this.picture.laneOrigin();
-    this.place.go({ until: this.isPaused() ? undefined : origin });
-    if (!this.isPaused()) this.lists.takeNew();
+    const wasPaused = this.isPaused();
+    this.place.go({ until: wasPaused ? undefined : origin });
+    if (wasPaused) void this.lists.renew();
   }
 
   protected setSpan(ms: number): void {
@@ -335,7 +325,7 @@ export class Desk {
     const strip = isNarrow ? 0 : (host.nextElementSibling?.clientHeight ?? 0);
     const slider = this.isBaseline() ? 84 : 0;
     const heightPx = Math.max(420, window.innerHeight - (top + window.scrollY) - strip - slider - 18);
-    const widthPx = host.clientWidth;
+    const widthPx = host.clientWidth - (isNarrow ? 16 : 34); // less its padding
     const now = untracked(this.picture.room);
     if (now.widthPx !== widthPx || now.heightPx !== heightPx || now.isNarrow !== isNarrow)
       this.picture.room.set({ widthPx, heightPx, isNarrow });

@@ -148,6 +148,15 @@ export class EventTable {
   /** How many pairs of the table have changed their order. */
   protected readonly turnedCount = computed(() => [...this.picture.turned().values()].reduce((sum, rows) => sum + rows.length, 0) / 2);
 
+  /** What has become of the pair along whose baseline the frame moves. */
+  protected readonly turnedPair = computed(() => {
+    const [row, other] = [this.picture.originRow(), this.picture.otherRow()];
+    if (!(this.picture.turned().get(row) ?? []).includes(other)) return '';
+    const aheadMs = this.picture.plane().tMs[other] ?? 0;
+    const [first, second] = aheadMs < 0 ? [this.picture.other(), this.picture.origin()] : [this.picture.origin(), this.picture.other()];
+    return `${first?.site ?? ''} now comes ${Math.abs(aheadMs).toFixed(3)} ms before ${second?.site ?? ''}.`;
+  });
+
   protected readonly abs = Math.abs;
 
   protected scrolled(): void {

@@ -60,7 +60,7 @@ export function aroundPicture({ box, x, y, origin, scale, site, sites }: AroundG
     box,
     lines,
     words: [...siteWords(shown, site, x, box), ...coneWords({ box, x0, y0, site })],
-    xTicks: plainTicks(x, 90, false).filter(({ at }) => at >= box.left - 1),
+    xTicks: plainTicks(x, 64, false).filter(({ at }) => at >= box.left - 1),
     yTicks: time.ticks,
     xTitle: `Light-time from ${site}, light-ms`,
     yTitle: time.title,
@@ -88,7 +88,7 @@ function coneWords({ box, x0, y0, site }: { readonly box: Box; readonly x0: numb
   const words: PictureWord[] = [];
   const up = y0 - box.top;
   const down = bottom - y0;
-  const narrow = box.width < 340;
+  const narrow = box.width < 300;
   const cause = `${site} can be the cause`;
   const caused = narrow ? `can cause ${site}` : `can be the cause of ${site}`;
   const left = Math.max(x0, box.left) + 10;

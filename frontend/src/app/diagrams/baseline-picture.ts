@@ -81,8 +81,9 @@ export function baselinePicture(given: BaselineGiven): Picture {
       words.push({ kind: 'site', text: code, x: x(across(xMs, bottomMs)) + 6, y: bottom - 8 });
   }
   for (const sign of [1, -1]) lines.push({ kind: 'light', path: through([[-FAR_MS, -sign * FAR_MS], [FAR_MS, sign * FAR_MS]]) }); // prettier-ignore
-  const lightPx = 0.24 * Math.min(right - x(0), y(0) - box.top);
-  if (lightPx > 30) words.push({ kind: 'light', text: 'light', x: x(0) + 2 * lightPx - 6, y: y(0) - 2 * lightPx - 6, turnDeg: -45 });
+  const marks = given.labels.map(({ row }) => ({ x: x(given.shown.xMs[row] ?? 0), y: y(given.shown.tMs[row] ?? 0) }));
+  const light = freeOnLight({ x: x(0), y: y(0) }, Math.min(right - x(0), y(0) - box.top), marks);
+  if (light) words.push({ kind: 'light', text: 'light', ...light, turnDeg: -45 });
   if (other?.isSpacelike) {
     const curve = curveThrough(other, y);
     lines.push({ kind: 'curve', path: through(curve) });
@@ -91,7 +92,14 @@ export function baselinePicture(given: BaselineGiven): Picture {
       words.push({ kind: 'spacelike', text: 'same s\u00b2', x: x(label[0]) - 6, y: y(label[1]) + 4, anchor: 'end' });
     if (isMoving) {
       lines.push({ kind: 'curve-path', path: through(trail(other.xMs, other.tMs, Math.asinh(gammaBeta))) });
-      words.push({ kind: 'mark', text: 'geocentric', x: x(other.xMs) + 12, y: y(other.tMs) + 4 });
+      const isLeft = x(other.xMs) > right - 76;
+      words.push({
+        kind: 'mark',
+        text: 'geocentric',
+        x: x(other.xMs) + (isLeft ? -12 : 12),
+        y: y(other.tMs) + 4,
+        anchor: isLeft ? 'end' : 'start',
+      });
     }
   }
   if (isMoving)
@@ -100,8 +108,8 @@ export function baselinePicture(given: BaselineGiven): Picture {
   return {
     box,
     lines,
-    words: [...words, ...labelWords(given)],
-    xTicks: plainTicks(x, 80, isMoving),
+    words: [...words, ...labelWords(given, words)],
+    xTicks: plainTicks(x, 64, isMoving),
     yTicks,
     xTitle: isMoving ? `Place along ${from} to ${to} in this frame, x\u2032, light-ms` : `Distance along ${from} to ${to}, light-ms`,
     yTitle: isMoving ? `Time in this frame after ${originName}, t\u2032, ms` : `Time after ${originName}, ms`,
@@ -127,17 +135,42 @@ function curveThrough({ xMs, tMs }: { readonly xMs: number; readonly tMs: number
   });
 }
 
-function labelWords({ labels, shown, x, y, box }: BaselineGiven): PictureWord[] {
+/** Where on the light line that goes up to the right a short word stands free of marks. */
+function freeOnLight(
+  from: { readonly x: number; readonly y: number },
+  reachPx: number,
+  marks: readonly { readonly x: number; readonly y: number }[],
+): { readonly x: number; readonly y: number } | undefined {
+  for (const part of [0.5, 0.32, 0.68, 0.2, 0.84]) {
+    const at = { x: from.x + part * reachPx - 6, y: from.y - part * reachPx - 6 };
+    const isFree = marks.every((mark) => Math.hypot(mark.x - at.x - 10, mark.y - at.y + 10) > 34);
+    if (part * reachPx > 34 && isFree) return at;
+  }
+  return undefined;
+}
+
+function labelWords({ labels: all, shown, x, y, box }: BaselineGiven, others: readonly PictureWord[]): PictureWord[] {
   const at = (row: number) => ({ x: x(shown.xMs[row] ?? 0), y: y(shown.tMs[row] ?? 0) });
+  const labels = all.filter(({ row }) => {
+    const mark = at(row);
+    return mark.x > box.left && mark.x < box.left + box.width && mark.y > box.top && mark.y < box.top + box.height;
+  });
   const placed = placeBeside(
     labels.map(({ row, code }) => ({ ...at(row), width: widthOfWords(code, 11) })),
-    [...labels.map(({ row }) => at(row)), { x: x(0), y: y(0) }],
+    [...labels.map(({ row }) => at(row)), { x: x(0), y: y(0) }, ...others.flatMap(pointsOf)],
     box,
   );
   return labels.flatMap(({ code, isMain }, i): PictureWord[] => {
     const place = placed[i];
     return place ? [{ kind: isMain ? 'site-other' : 'mark', text: code, ...place }] : [];
   });
+}
+
+/** Points that words cover, so that no label is put on them; words that are turned are covered where they begin. */
+function pointsOf({ x, y, text, anchor = 'start' }: PictureWord): { readonly x: number; readonly y: number }[] {
+  const width = widthOfWords(text, 11);
+  const left = anchor === 'start' ? x : anchor === 'end' ? x - width : x - width / 2;
+  return Array.from({ length: Math.ceil(width / 12) + 1 }, (_, i) => ({ x: left + 12 * i, y: y - 4 }));
 }
 
 const isIn = (value: number, scale: Scale): boolean => {

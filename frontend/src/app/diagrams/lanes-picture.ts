@@ -49,7 +49,7 @@ export function lanesPicture({ box, x, y, origin, scale, codes, plane, joins, li
     words: siteWords(codes.map((code, xMs) => ({ code, xMs })), '', x, box), // prettier-ignore
     xTicks: [],
     yTicks: time.ticks,
-    xTitle: lightPx < 1.5 ? 'Sites side by side: light joins them within the width of a line' : 'Sites side by side',
+    xTitle: lightPx < 1.5 && box.width > 340 ? 'Sites side by side: light joins them within the width of a line' : 'Sites side by side',
     yTitle: time.title,
     slanted: false,
   };

@@ -32,5 +32,8 @@ describe('the ticks of a time axis', () => {
     const { texts: printed, title } = texts(0, 0.02);
     expect(printed).toContain('12:00:05');
     expect(title).toBe('UTC, 2026-03-01');
+    const late = { taiS: origin.taiS, ps: 999_600_000_000 };
+    const { y } = oneScale({ leftMs: 0, topMs: 0, pxPerMs: 0.02 }, BOX);
+    expect(timeTicks(y, late, 'UTC').ticks.map(({ text }) => text)).toContain('12:00:05');
   });
 });

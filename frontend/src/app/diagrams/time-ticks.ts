@@ -1,12 +1,13 @@
 import { tickStep } from 'd3';
 import { type Instant } from '#shared/time/instant';
-import { addPicoseconds } from '#shared/time/instant';
 import { type Scale as TimeScale } from '#shared/time/scales';
 import { instantParts } from '../instants/instant-parts';
+import { instantAfter } from './instant-after';
 import { type Scale } from './one-scale';
 import { type Tick } from './picture';
 
 const MS_PER_S = 1e3;
+const ROUNDING_MS = 1e-3; // a tick at a whole second is not printed as the one before
 const PX_PER_TICK = 70;
 const CLOCK_STEPS_MS = [1, 2, 5, 10, 15, 20, 30, 60, 120, 300, 600, 900, 1800, 3600, 7200, 21_600].map((s) => s * MS_PER_S);
 
@@ -48,7 +49,7 @@ export function timeTicks(y: Scale, origin: Instant, scale: TimeScale): TimeTick
 }
 
 const clockText = (origin: Instant, ms: number, scale: TimeScale): string =>
-  instantParts(addPicoseconds(origin, Math.round(ms) * 1e9 + 1e6), scale, 0).clock;
+  instantParts(instantAfter(origin, ms + ROUNDING_MS), scale, 0).clock;
 
 /** `.350` within the origin's second, `08.010` in another. */
 function secondText(ms: number, originSecond: number, decimals: number): string {
