@@ -85,6 +85,11 @@ export class GroupLoop {
     return this.isAwake ? new Promise((resolve) => this.idle.push(resolve)) : Promise.resolve();
   }
 
+  /** About how many rows wait. */
+  waitingRows(): number {
+    return this.waiting.reduce((total, { rows }) => total + rows, 0);
+  }
+
   private wake(): void {
     if (this.isAwake) return;
     this.isAwake = true;

@@ -71,6 +71,8 @@ export interface Ingest {
   readonly network: (networkId: number) => NetworkInForce;
   /** Resolves when nothing waits to be written. */
   readonly whenIdle: () => Promise<void>;
+  /** About how many rows wait to be written. */
+  readonly waitingRows: () => number;
   /** What decisions on set-asides stand on. */
   readonly parts: IngestParts;
 }
@@ -217,6 +219,7 @@ export function openIngest({ db, log, nowMs, listener, fatal }: IngestSources): 
     reprocess: (networkId, siteIds) => reprocess(sources, networkId, siteIds),
     network: (networkId) => inForce.network(networkId).network,
     whenIdle: () => loop.whenIdle(),
+    waitingRows: () => loop.waitingRows(),
     parts: { db, keeper, notes, inForce, tell },
   };
 }

@@ -1,12 +1,16 @@
 import { CoincidenceSearch } from '../coincidences/coincidence-search';
 import { type Ground } from '../ground';
 import { type Ingest, openIngest } from '../ingest/ingest';
+import { MOST_GROUP_ROWS } from '../ingest/group-loop';
 import { keepParts } from '../ingest/parts-of';
+import { type Stored } from '../ingest/stored';
 import { networks } from '#schema/schema';
 import { ingestDesk } from '../sites-gate/ingest-desk';
+import { gathered } from './gathered';
 import { type Answers } from './questions';
 
 const LOOK_FOR_DUE_MS = 1_000; // readings of the future, whose time has come
+const MOST_GATHERED = 4 * MOST_GROUP_ROWS; // events that are searched at once, while more wait to be stored than a transaction takes
 
 /** The way of records in the writer thread: from what a site sends to coincidences. */
 export interface Stream {
@@ -23,24 +27,53 @@ export interface Stream {
  */
 export function openStream(ground: Ground, fatal: (fault: unknown) => void): Stream {
   const { db, log, nowMs } = ground;
-  const rest = restOf(() => search.step(), fatal);
-  // The two need each other: the search reads by the ingest's tables, the ingest tells the search.
+  const unsearched = gathered();
+  const rest = restOf(() => {
+    if (unsearched.events() > 0 && unsearched.events() < MOST_GATHERED && ingest.waitingRows() >= MOST_GROUP_ROWS) return true;
+    return searchGathered() || search.step();
+  }, fatal);
+  // The two need each other: the search reads by the ingest's tables, the ingest tells the search. Sites have their answers before the search.
   const listener = {
-    onStored: (stored: Parameters<CoincidenceSearch['onStored']>[0]): void => {
-      search.onStored(stored);
+    onStored: (stored: Stored): void => {
+      if (unsearched.canHold(stored)) unsearched.add(stored);
+      else {
+        searchGathered();
+        searchOne(stored);
+      }
       rest.wake();
     },
     onInForce: (network: Parameters<CoincidenceSearch['onInForce']>[0]): void => {
+      searchGathered(); // it was computed by what was in force
       search.onInForce(network);
       rest.wake();
     },
   };
+
+  /** Answers whether there was anything. */
+  function searchGathered(): boolean {
+    const all = unsearched.take();
+    for (const stored of all) searchOne(stored);
+    return all.length > 0;
+  }
+
+  function searchOne(stored: Stored): void {
+    try {
+      search.onStored(stored);
+    } catch (fault) {
+      log.error({ event: 'search:failed', err: fault }, 'the search of coincidences failed and begins anew');
+    }
+  }
+
   const search: CoincidenceSearch = new CoincidenceSearch({ db, nowMs, networkOf: (networkId) => ingest.network(networkId) });
   const ingest: Ingest = openIngest({ db, log, nowMs, listener, fatal });
   keepParts(db, ingest.parts);
   for (const { id } of db.select({ id: networks.id }).from(networks).all()) search.start(id);
   ground.onCommitted(({ changes }) => {
-    for (const { kind, networkId } of changes) if (kind === 'rule') search.rulesChanged(networkId);
+    for (const { kind, networkId } of changes) {
+      if (kind !== 'rule') continue;
+      searchGathered();
+      search.rulesChanged(networkId);
+    }
     if (changes.length > 0) rest.wake();
   });
   rest.wake();
@@ -68,6 +101,7 @@ export function openStream(ground: Ground, fatal: (fault: unknown) => void): Str
       clearInterval(due);
       rest.end();
       await ingest.whenIdle();
+      searchGathered();
     },
   };
 }
