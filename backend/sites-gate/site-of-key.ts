@@ -1,4 +1,4 @@
-import { and, desc, eq, isNull } from 'drizzle-orm';
+import { and, desc, eq, isNull, sql } from 'drizzle-orm';
 import { networks, siteKeys, sites, siteVersions } from '#schema/schema';
 import { secretHash } from '../accounts/secret-token';
 import { type Ground } from '../ground';
@@ -21,26 +21,25 @@ export type KeyReader = (key: string) => SiteOfKey | string;
 
 /** Makes a reader of keys, whose query is prepared once: it is asked at every message. */
 export function keyReader(db: Ground['db']): KeyReader {
-  const find = (hash: Buffer) =>
-    db
-      .select({
-        keyId: siteKeys.id,
-        siteId: sites.id,
-        networkId: networks.id,
-        site: sites.code,
-        network: networks.code,
-        lastUsedAt: siteKeys.lastUsedAt,
-        revokedAt: siteKeys.revokedAt,
-        siteClosedAt: sites.closedAt,
-        networkClosedAt: networks.closedAt,
-      })
-      .from(siteKeys)
-      .innerJoin(sites, eq(sites.id, siteKeys.siteId))
-      .innerJoin(networks, eq(networks.id, sites.networkId))
-      .where(eq(siteKeys.hash, hash))
-      .get();
+  const find = db
+    .select({
+      keyId: siteKeys.id,
+      siteId: sites.id,
+      networkId: networks.id,
+      site: sites.code,
+      network: networks.code,
+      lastUsedAt: siteKeys.lastUsedAt,
+      revokedAt: siteKeys.revokedAt,
+      siteClosedAt: sites.closedAt,
+      networkClosedAt: networks.closedAt,
+    })
+    .from(siteKeys)
+    .innerJoin(sites, eq(sites.id, siteKeys.siteId))
+    .innerJoin(networks, eq(networks.id, sites.networkId))
+    .where(eq(siteKeys.hash, sql.placeholder('hash')))
+    .prepare();
   return (key) => {
-    const found = key.length <= MOST_KEY_CHARACTERS ? find(secretHash(key)) : undefined;
+    const found = key.length <= MOST_KEY_CHARACTERS ? find.get({ hash: secretHash(key) }) : undefined;
     // A key that never was and one that was revoked look alike.
     if (found?.revokedAt !== null) return 'The key is unknown here, or was revoked: ask a coordinator or the operator of the site for one.';
     const { keyId, siteId, networkId, site, network, lastUsedAt, siteClosedAt, networkClosedAt } = found;
