@@ -8,6 +8,7 @@ import {
   effect,
   ElementRef,
   inject,
+  signal,
   untracked,
   viewChild,
 } from '@angular/core';
@@ -95,6 +96,7 @@ export class Desk {
   private readonly eventTable = viewChild(EventTable);
   private readonly setTable = viewChild(SetTable);
 
+  protected readonly pagePx = signal(0);
   protected readonly views = VIEWS;
   protected readonly folds = FOLDS;
   protected readonly gutterPx = GUTTER_PX;
@@ -325,6 +327,9 @@ export class Desk {
     const strip = isNarrow ? 0 : (host.nextElementSibling?.clientHeight ?? 0);
     const slider = this.isBaseline() ? 84 : 0;
     const heightPx = Math.max(420, window.innerHeight - (top + window.scrollY) - strip - slider - 18);
+    // Down to the lower edge of the window, whatever stands above.
+    const page = host.parentElement?.getBoundingClientRect().top ?? 0;
+    this.pagePx.set(isNarrow ? 0 : Math.floor(window.innerHeight - (page + window.scrollY)));
     const widthPx = host.clientWidth - (isNarrow ? 16 : 34); // less its padding
     const now = untracked(this.picture.room);
     if (now.widthPx !== widthPx || now.heightPx !== heightPx || now.isNarrow !== isNarrow)

@@ -11,19 +11,19 @@ export interface SetColumn {
 
 /** The columns that every network has, in their usual order; one for each pinned frame follows. */
 export const SET_COLUMNS: readonly SetColumn[] = [
-  { name: 'time', head: 'First trigger', widthPx: 128, sort: 'time' },
-  { name: 'sites', head: 'Sites', widthPx: 108 },
+  { name: 'time', head: 'First trigger', widthPx: 142, sort: 'time' },
+  { name: 'sites', head: 'Sites', widthPx: 104 },
   { name: 'fold', head: 'Fold', widthPx: 48, sort: 'fold', isRight: true },
-  { name: 'span', head: 'Span', widthPx: 80, sort: 'span', isRight: true },
-  { name: 'interval', head: 'Interval nearest light', widthPx: 214, sort: 'margin' },
-  { name: 'turning', head: 'Turns at, c', widthPx: 66, sort: 'turning', isRight: true },
-  { name: 'state', head: 'State', widthPx: 48 },
+  { name: 'span', head: 'Span', widthPx: 78, sort: 'span', isRight: true },
+  { name: 'interval', head: 'Interval nearest light', widthPx: 208, sort: 'margin' },
+  { name: 'turning', head: 'Turns, c', widthPx: 58, sort: 'turning', isRight: true },
+  { name: 'state', head: 'State', widthPx: 46 },
   { name: 'amplitude', head: 'Amplitude', widthPx: 76, sort: 'amplitude', isRight: true },
   { name: 'rule', head: 'Rule', widthPx: 84 },
   { name: 'name', head: 'Name', widthPx: 110 },
 ];
 const AT_FIRST = ['time', 'sites', 'span', 'interval', 'turning', 'state'];
-export const FRAME_WIDTH_PX = 54;
+export const FRAME_WIDTH_PX = 48;
 export const LEAST_WIDTH_PX = 40;
 export const MOST_WIDTH_PX = 480;
 

@@ -18,7 +18,7 @@ import { margin, timeText } from './figures';
 import { columnsText, type ShownColumn, shownColumns, widthIn } from './set-columns';
 import { SetOrders } from './set-orders';
 
-const ROW_PX = 42;
+const ROW_PX = { wide: 42, narrow: 60 };
 const NEAR_TOP_PX = 8;
 const MORE_BEFORE_END = 30;
 const WIDER_PX = 16;
@@ -66,11 +66,12 @@ export class SetTable {
   readonly chosen = output<CoincidenceBrief>();
   readonly opens = output<CoincidenceBrief>();
 
-  protected readonly rowPx = ROW_PX;
+  protected readonly isNarrow = computed(() => this.picture.room().isNarrow);
+  protected readonly rowPx = computed(() => (this.isNarrow() ? ROW_PX.narrow : ROW_PX.wide));
   protected readonly headPx = HEAD_PX;
   protected readonly columns = computed(() => shownColumns(this.place.address().columns, this.data.pinned().map(({ code }) => code))); // prettier-ignore
-  protected readonly template = computed(() => `${this.columns().map(({ widthPx }) => `${widthPx}px`).join(' ')} minmax(28px, 1fr)`); // prettier-ignore
-  protected readonly widthPx = computed(() => this.columns().reduce((sum, { widthPx }) => sum + widthPx, 28));
+  protected readonly template = computed(() => this.isNarrow() ? '40px minmax(0, 1fr) auto 34px' : `${this.columns().map(({ widthPx }) => `${widthPx}px`).join(' ')} minmax(28px, 1fr)`); // prettier-ignore
+  protected readonly widthPx = computed(() => (this.isNarrow() ? 0 : this.columns().reduce((sum, { widthPx }) => sum + widthPx, 28)));
   protected readonly frameSpeeds = computed(() => new Map(this.data.pinned().map(({ code, resolved }) => [code, resolved?.speedC ?? 0])));
   protected readonly rows = computed<readonly Row[]>(() =>
     this.lists.rows().flatMap(({ first, others }): Row[] => {
@@ -87,7 +88,7 @@ export class SetTable {
     return this.rows()
       .map(({ set, isInner }, i) => ({
         row: isInner ? -1 : (rowOf.get(set.members[0]?.eventId ?? 0) ?? -1),
-        y: HEAD_PX + ROW_PX * (i + 0.5) - scrolled,
+        y: HEAD_PX + this.rowPx() * (i + 0.5) - scrolled,
       }))
       .filter(({ row, y }) => row >= 0 && y > HEAD_PX && y < height);
   });
@@ -113,8 +114,8 @@ export class SetTable {
     if (!viewport) return;
     const px = viewport.measureScrollOffset();
     this.scrolledPx.set(px);
-    const start = Math.max(0, Math.floor(px / ROW_PX) - 2);
-    const end = start + Math.ceil(viewport.getViewportSize() / ROW_PX) + 4;
+    const start = Math.max(0, Math.floor(px / this.rowPx()) - 2);
+    const end = start + Math.ceil(viewport.getViewportSize() / this.rowPx()) + 4;
     this.range.set({ start, end });
     this.lists.isFollowing.set(px < NEAR_TOP_PX);
     if (end > this.rows().length - MORE_BEFORE_END) void this.lists.more();
@@ -204,9 +205,9 @@ export class SetTable {
     const viewport = this.viewport();
     const index = this.rows().findIndex(({ set }) => set.id === id);
     if (!viewport || index < 0) return;
-    const [top, size] = [viewport.measureScrollOffset(), viewport.getViewportSize()];
-    if (index * ROW_PX < top) viewport.scrollToOffset(index * ROW_PX);
-    else if ((index + 1) * ROW_PX > top + size) viewport.scrollToOffset((index + 1) * ROW_PX - size);
+    const [top, size, px] = [viewport.measureScrollOffset(), viewport.getViewportSize(), this.rowPx()];
+    if (index * px < top) viewport.scrollToOffset(index * px);
+    else if ((index + 1) * px > top + size) viewport.scrollToOffset((index + 1) * px - size);
   }
 
   protected pick(set: CoincidenceBrief): void {

@@ -39,7 +39,7 @@ const LEAST_APART_PX = 24;
       <rect class="solid" [attr.x]="d.left" y="26" [attr.width]="d.turn - d.left" height="16" />
       <rect class="open" [attr.x]="d.turn" y="26" [attr.width]="d.right - d.turn" height="16" [attr.fill]="'url(#' + id + ')'" />
       @if (turningC() !== null) {
-        <rect class="box" [class.undecided]="!turns()" [attr.x]="d.boxLeft" y="22" [attr.width]="d.boxRight - d.boxLeft" height="24" />
+        <rect class="bound" [class.undecided]="!turns()" [attr.x]="d.boxLeft" y="22" [attr.width]="d.boxRight - d.boxLeft" height="24" />
         <path class="turn" [attr.d]="'M' + d.turn + ' 22v24'" />
         <text class="figure turning" [attr.x]="d.turnText" y="17" text-anchor="middle">{{ turningText() }}</text>
       }
@@ -84,12 +84,12 @@ const LEAST_APART_PX = 24;
       stroke: var(--ink);
       stroke-width: 1.6;
     }
-    .box {
+    .bound {
       fill: var(--sheet);
       stroke: var(--spacelike);
       stroke-width: 1.4;
     }
-    .box.undecided {
+    .bound.undecided {
       stroke: var(--undecided);
       stroke-dasharray: 3 2;
     }
@@ -97,7 +97,7 @@ const LEAST_APART_PX = 24;
       stroke: var(--spacelike);
       stroke-width: 2;
     }
-    .box.undecided + .turn {
+    .bound.undecided + .turn {
       stroke: var(--undecided);
     }
     text {

@@ -1,7 +1,7 @@
 import { scaleLinear } from 'd3';
 import { type IntervalClass } from '#shared/relativity/verdict';
 import { type Box, type Scale } from './one-scale';
-import { pathThrough, type Picture, type PictureLine, type PictureWord, round, type Tick } from './picture';
+import { pathThrough, type Picture, type PictureLine, type PictureWord, round, type Tick, widthOfWords } from './picture';
 import { plainTicks } from './time-ticks';
 
 /** A frame of the network as it moves along the baseline. */
@@ -146,8 +146,12 @@ function siteWords({ box, x, y, names, xMs, tMs, errorText, class: kind }: PairP
       turnDeg: -45,
       anchor: 'middle',
     });
-  const isLeft = x(xMs) + 90 > right;
-  words.push({ kind: 'mark', text: errorText, x: x(xMs) + (isLeft ? -14 : 14), y: y(tMs) + 22, anchor: isLeft ? 'end' : 'start' });
+  const isTight = x(xMs) + 14 + widthOfWords(errorText, 11) > right;
+  words.push(
+    isTight
+      ? { kind: 'mark', text: errorText, x: right - 6, y: y(tMs) + 28, anchor: 'end' }
+      : { kind: 'mark', text: errorText, x: x(xMs) + 12, y: y(tMs) + 18 },
+  );
   return [...words, ...sameWords({ box, x, y, xMs, tMs, kind })];
 }
 
@@ -171,7 +175,7 @@ function sameWords({
   const text = 'same s\u00b2';
   const style = kind === 'spacelike' ? 'spacelike' : kind === 'timelike' ? 'cone' : 'note';
   if (square > 0) {
-    const at = box.top + box.height * 0.86;
+    const at = box.top + box.height - 12;
     const across = x(Math.hypot(Math.sqrt(square), y.invert(at)));
     return across - 60 > box.left ? [{ kind: style, text, x: across - 8, y: at, anchor: 'end' }] : [];
   }
@@ -200,13 +204,24 @@ function edgeWords({ box, x, y, frames, turningC }: PairPictureGiven): PictureWo
     x: right + 8,
     y: at + 4,
   }));
-  const rest = kept
-    .filter((one) => !leavesRight(one))
-    .map(({ text, alongC }): PictureWord => {
-      // It leaves at the top or the bottom: its words stand along it, well before it does.
-      const endMs = (alongC > 0 ? topMs : bottomMs) / alongC;
-      return { kind: 'instant', text, x: x(0.66 * endMs), y: y(0.66 * endMs * alongC) - 6, turnDeg: (-Math.atan(alongC) * 180) / Math.PI, anchor: 'middle' }; // prettier-ignore
+  const rest = [topMs, bottomMs].flatMap((endMs) => {
+    const leaving = kept.filter((one) => !leavesRight(one) && one.alongC * endMs > 0);
+    return leaving.map(({ text, isTurning, alongC }, i): PictureWord => {
+      // It leaves at the top or the bottom: its words stand along it, the flattest line's above it and the steepest one's below.
+      const isBelow = (i === leaving.length - 1 && i > 0) === endMs < 0;
+      const share = i > 0 && i < leaving.length - 1 ? 0.36 : 0.6;
+      const atX = (share * endMs) / alongC;
+      const aside = isBelow ? 14 : -6;
+      return {
+        kind: isTurning ? 'spacelike' : 'instant',
+        text,
+        x: x(atX),
+        y: y(share * endMs) + aside,
+        turnDeg: (-Math.atan(alongC) * 180) / Math.PI,
+        anchor: 'middle',
+      };
     });
+  });
   return [...words, ...rest];
 }
 

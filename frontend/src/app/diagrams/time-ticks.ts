@@ -8,7 +8,7 @@ import { type Tick } from './picture';
 
 const MS_PER_S = 1e3;
 const ROUNDING_MS = 1e-3; // a tick at a whole second is not printed as the one before
-const PX_PER_TICK = 70;
+const PX_PER_TICK = 90;
 const CLOCK_STEPS_MS = [1, 2, 5, 10, 15, 20, 30, 60, 120, 300, 600, 900, 1800, 3600, 7200, 21_600].map((s) => s * MS_PER_S);
 
 /** Ticks of a time axis, and what its title says of the part of the time that they leave out. */
