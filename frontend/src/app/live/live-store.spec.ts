@@ -39,7 +39,9 @@ class FakeServer {
   readonly open = (listener: SocketListener) => {
     this.listener = listener;
     return Promise.resolve({
-      link: () => void this.links++,
+      link: () => {
+        this.links++;
+      },
       ask: (name: LiveRequestName, asked: object): Promise<never> => Promise.resolve(this.answer(name, asked) as never),
       close: () => void (this.isClosed = true),
     });
