@@ -64,8 +64,8 @@ export class StreamedServer {
     preload = [],
   }: {
     siteCount?: number;
-    prepare?: (db: Db, networkId: number) => void;
-    preload?: readonly ('planted-writer.mjs' | 'measured.mjs')[];
+    prepare?: (db: Db) => Promise<void> | void;
+    preload?: readonly ('planted-writer.mjs' | 'measured.mjs' | 'held.mjs')[];
   } = {}): Promise<StreamedServer> {
     const folder = newFolder('faults');
     const dataDir = join(folder, 'data');
@@ -89,7 +89,7 @@ export class StreamedServer {
       const values = { siteId: id, label: 'test', prefix, hash, createdAt: AT };
       return { code, id, key, keyId: db.insert(siteKeys).values(values).returning({ id: siteKeys.id }).get().id };
     });
-    prepare(db, networkId);
+    await prepare(db);
     closeDb(db);
     const proxy = await startChaosProxy(0);
     const urls = preload.map((name) => pathToFileURL(join(root, 'tests/faults', name)).href);
@@ -142,6 +142,12 @@ export class StreamedServer {
   /** What it uses, as `measured.mjs` wrote it last. */
   measured(): Measured {
     return JSON.parse(readFileSync(join(this.folder, 'measured.json'), 'utf8')) as Measured;
+  }
+
+  /** The most that its threads held together since they started, bytes, as `held.mjs` wrote it; the two need not have held it at once. */
+  mostHeldBytes(): number {
+    const of = (thread: string): number => Number(readFileSync(join(this.folder, `held-${thread}`), 'utf8'));
+    return of('http') + of('writer');
   }
 
   /** What its database holds, by a connection that only reads. */
