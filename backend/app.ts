@@ -4,6 +4,7 @@ import express, { type Express } from 'express';
 import { type Logger } from 'pino';
 import { pinoHttp } from 'pino-http';
 import { myRoutes } from './accounts/my-routes';
+import { preferenceRoutes } from './accounts/preference-routes';
 import { peopleRoutes } from './accounts/people-routes';
 import { sessionRoutes } from './accounts/session-routes';
 import { siteKeyRoutes } from './accounts/site-key-routes';
@@ -38,6 +39,7 @@ export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>)
   ...healthRoutes(db),
   ...sessionRoutes(),
   ...myRoutes(),
+  ...preferenceRoutes(),
   ...peopleRoutes(),
   ...siteKeyRoutes(),
   ...networkRoutes(),

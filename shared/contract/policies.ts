@@ -32,6 +32,8 @@ export const POLICIES = {
   'my-password:change': signedIn,
   'my-sessions:read': signedIn,
   'my-sessions:end': signedIn,
+  'my-preferences:read': signedIn,
+  'my-preferences:change': signedIn,
 
   'person:list': anywhere('coordinator'),
   'person:read': anywhere('coordinator'),
@@ -113,6 +115,7 @@ export const POLICIES = {
   'network:leave': signedIn,
 
   'audit:read': at('coordinator'),
+  'audit:verify': at('coordinator'), // of the deployment
   'kept-mail:read': at('coordinator'), // of the deployment: a kept mail may hold anyone's link
 } as const satisfies Readonly<Record<string, Policy>>;
 
