@@ -6,15 +6,18 @@ import { randomFrom, type Random } from './random';
 import { seenOf, type Seen } from './seen';
 import { type World } from './world';
 
-/** How the sites write: decimals of a second, and the range of the errors that stand in each record, where they do. */
+/**
+ * How the sites write: decimals of a second, and the range of the errors that stand in each record, where they do. At some the flicker rises
+ * so slowly that its beginning is known to a part of a millisecond only: a pair with them may lie too near to light to be told.
+ */
 const STYLES: Readonly<Record<string, { readonly decimals: number; readonly sigmaNs?: readonly [number, number] }>> = {
   TRK: { decimals: 12 },
   TRL: { decimals: 7 },
   SVB: { decimals: 10 },
   SVH: { decimals: 10 },
-  OMB: { decimals: 9 },
-  ILC: { decimals: 9, sigmaNs: [20, 60] },
-  GIL: { decimals: 9 },
+  OMB: { decimals: 9, sigmaNs: [60_000, 350_000] },
+  ILC: { decimals: 9, sigmaNs: [20_000, 90_000] },
+  GIL: { decimals: 9, sigmaNs: [120_000, 700_000] },
   KTS: { decimals: 11 },
 };
 const MOST_DECIMALS = 12;
