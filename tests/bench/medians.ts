@@ -29,3 +29,9 @@ export function ratioText(a: readonly number[], b: readonly number[]): string {
   const ratios = a.map((time, at) => time / (b[at] ?? NaN));
   return `${median(ratios).toFixed(2)} (${Math.min(...ratios).toFixed(2)} to ${Math.max(...ratios).toFixed(2)})`;
 }
+
+/** The figure that so many of a hundred are below. */
+export function percentile(figures: readonly number[], per100: number): number {
+  const sorted = figures.toSorted((a, b) => a - b);
+  return sorted[Math.min(sorted.length - 1, Math.floor((per100 / 100) * sorted.length))] ?? NaN;
+}
