@@ -17,5 +17,6 @@ export const queryOf = (query: Given): Record<string, string> =>
 function textOf(value: unknown): string {
   if (typeof value === 'string') return value;
   if (typeof value === 'number' || typeof value === 'boolean') return String(value);
+  if (Array.isArray(value)) return value.map(textOf).join(',');
   throw new Error(`${JSON.stringify(value)} cannot stand in an address`);
 }
