@@ -5,7 +5,6 @@ import { newSecret } from './accounts/secret-token';
 import { signingKey } from './accounts/signing-key';
 import { keepKeyUse } from './accounts/site-key-use';
 import { auditHeadIn } from './audit/audit-head';
-import { holds } from './audit/change';
 import { type Config } from './config';
 import { type Db } from './db';
 import { ensureDeployment } from './deployment';
@@ -47,9 +46,6 @@ export async function makeGround({ config, db, log, version, port, nowMs }: Sour
   const key = signingKey(config);
   if (!key.ok) return problemOf(key.problem.code, key.problem.where, key.problem.text);
   const auditHead = auditHeadIn(config.dataDir);
-  const head = auditHead.read();
-  if (head && !holds(db, head))
-    log.error({ event: 'audit:broken', seq: head.seq }, 'the audit trail does not hold the entry that was its last');
   const demoMail = config.smtpUrl === undefined ? await startDemoMailServer(db, log, nowMs) : undefined;
   const origin = originOf(config, port);
   const from = config.mailFrom ?? `Skewline <skewline@${new URL(origin).hostname}>`;

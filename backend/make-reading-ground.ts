@@ -1,3 +1,4 @@
+import { auditHeadIn } from './audit/audit-head';
 import { type Ground } from './ground';
 import { originOf, type Sources } from './make-ground';
 import { makeSearcher } from './search/searcher';
@@ -29,7 +30,7 @@ export function makeReadingGround({ config, db, log, version, port, nowMs }: Sou
     },
     searcher: makeSearcher(db.$client.name),
     passwords: { hash: writersAlone, matches: writersAlone },
-    auditHead: { read: writersAlone, keep: writersAlone },
+    auditHead: { ...auditHeadIn(config.dataDir), keep: writersAlone },
     onCommitted: writersAlone,
     post: writersAlone,
   };

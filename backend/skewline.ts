@@ -125,6 +125,19 @@ Exit status: 0 every record is answered (those set aside are counted on stderr),
       const { addUser } = await import('./command/user-add');
       addUser(person, process.env, (line) => void process.stdout.write(`${line}\n`));
     });
+  skewline
+    .command('audit')
+    .summary('the audit trail of a deployment')
+    .command('verify')
+    .summary('check that it is what was written')
+    .description(
+      'Checks the whole audit trail in DATA_DIR against its hashes and the file audit-head: an entry that was altered, taken out, put in or moved, and a cut end, are named. It only reads, and the server may run meanwhile. Exit status: 0 sound, 1 not, 2 no database to read.',
+    )
+    .action(async () => {
+      process.umask(0o077); // SQLite may make files beside the database
+      const { verifyTrail } = await import('./command/audit-verify');
+      verifyTrail(process.env, (line) => void process.stdout.write(`${line}\n`));
+    });
   return skewline;
 }
 

@@ -89,7 +89,7 @@ function keepHead({ db, log, auditHead }: Sources, rows: readonly AuditRow[]): v
 }
 
 /** Whether the database's chain holds a head that was kept. */
-export function holds(db: Db, head: { readonly seq: number; readonly hashHex: string }): boolean {
+function holds(db: Db, head: { readonly seq: number; readonly hashHex: string }): boolean {
   if (head.seq === 0) return head.hashHex === NO_ROW_BEFORE.toString('hex');
   return db.select({ hash: audit.hash }).from(audit).where(eq(audit.seq, head.seq)).get()?.hash.toString('hex') === head.hashHex;
 }

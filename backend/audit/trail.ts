@@ -5,8 +5,10 @@ import { DEPLOYMENT } from '#shared/contract/roles';
 import { audit, people } from '#schema/schema';
 import { pageFrom } from '../api/page';
 import { serve, type Served } from '../api/serve';
+import { type Ground } from '../ground';
+import { checkTrail } from './check-trail';
 
-/** `GET /api/audit`: the trail, newest first. */
+/** `GET /api/audit`: the trail, newest first; and whether it is what was written. */
 export const auditRoutes = (): Served[] => [
   serve(AUDIT_ROUTES.readAudit, {
     placeOf: ({ query: { networkId } }) => (networkId === undefined ? DEPLOYMENT : { kind: 'network', networkId }),
@@ -44,4 +46,23 @@ export const auditRoutes = (): Served[] => [
       return pageFrom(found, limit, ({ seq }) => seq);
     },
   }),
+  serve(AUDIT_ROUTES.verifyAudit, { placeOf: () => DEPLOYMENT, handle: (_asked, ground) => verdictOf(ground) }),
 ];
+
+/** Checks on their way, by their connection: who asks meanwhile hears of the one that runs. */
+const underWay = new WeakMap<Ground['db'], ReturnType<typeof verify>>();
+
+function verdictOf(ground: Ground): ReturnType<typeof verify> {
+  const running = underWay.get(ground.db);
+  if (running) return running;
+  const begun = verify(ground).finally(() => underWay.delete(ground.db));
+  underWay.set(ground.db, begun);
+  return begun;
+}
+
+async function verify(ground: Ground) {
+  const verdict = await checkTrail(ground).verdict;
+  if (!verdict) throw new Error('a check of the audit trail was stopped');
+  const { sound, fault } = verdict;
+  return { entries: sound, ok: !fault, ...(fault && { firstBroken: { seq: fault.seq, what: fault.text } }) };
+}

@@ -4,7 +4,8 @@ import { type Db } from '../db';
 import { type AuditHead } from './audit-head';
 import { NO_ROW_BEFORE, rowHash } from './chain';
 
-const ROWS_AT_ONCE = 1_000;
+/** Few enough that whoever waits for the thread does not notice: some 5 ms. */
+const ROWS_AT_ONCE = 500;
 
 /** How many entries are sound, and the first that is not. */
 export interface AuditVerdict {
@@ -16,23 +17,37 @@ export interface AuditVerdict {
  * Checks the whole audit trail: numbers without a gap, each entry under its own hash and chained to the one before it, and the head that
  * is kept outside the database among them. An edited, deleted, inserted or moved entry and a cut tail are all found.
  */
-export function verifyAudit(db: Db, auditHead: AuditHead): AuditVerdict {
-  const head = auditHead.read();
+export function verifyAudit(db: Pick<Db, 'select'>, auditHead: Pick<AuditHead, 'read'>): AuditVerdict {
+  const next = auditSteps(db, auditHead);
+  for (;;) {
+    const verdict = next();
+    if (verdict) return verdict;
+  }
+}
+
+/**
+ * The same in steps of some hundred entries, between which others have their turn; what is appended meanwhile is checked too.
+ *
+ * @returns does the next step, and gives the verdict with the last
+ */
+export function auditSteps(db: Pick<Db, 'select'>, auditHead: Pick<AuditHead, 'read'>): () => AuditVerdict | undefined {
+  const known = auditHead.read(); // before the entries, which are committed before their head is kept
   let before: { readonly seq: number; readonly hash: Buffer } = { seq: 0, hash: NO_ROW_BEFORE };
   const faultAt = (seq: number, text: string): AuditVerdict => ({ sound: before.seq, fault: { seq, text } });
-  for (;;) {
+  return () => {
     const rows = db.select().from(audit).where(gt(audit.seq, before.seq)).orderBy(asc(audit.seq)).limit(ROWS_AT_ONCE).all();
     for (const row of rows) {
       if (row.seq !== before.seq + 1) return faultAt(before.seq + 1, 'is missing');
       if (!row.previousHash.equals(before.hash)) return faultAt(row.seq, 'does not follow the entry before it');
       if (!row.hash.equals(rowHash(row))) return faultAt(row.seq, 'is not what was written');
-      if (row.seq === head?.seq && row.hash.toString('hex') !== head.hashHex)
+      if (row.seq === known?.seq && row.hash.toString('hex') !== known.hashHex)
         return faultAt(row.seq, 'is not the one that the kept head names');
       before = row;
     }
-    if (rows.length < ROWS_AT_ONCE) break;
-  }
-  if (!head && before.seq > 0) return faultAt(before.seq, 'has no kept head: the file audit-head is absent or is none');
-  if (head && head.seq > before.seq) return faultAt(before.seq + 1, `is missing: the trail once went to ${head.seq}`);
-  return { sound: before.seq };
+    if (rows.length === ROWS_AT_ONCE) return undefined;
+    const head = known ?? auditHead.read(); // kept at the latest with the first entry, which may have come meanwhile
+    if (!head && before.seq > 0) return faultAt(before.seq, 'has no kept head: the file audit-head is absent or is none');
+    if (head && head.seq > before.seq) return faultAt(before.seq + 1, `is missing: the trail once went to ${head.seq}`);
+    return { sound: before.seq };
+  };
 }

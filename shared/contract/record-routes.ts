@@ -44,6 +44,15 @@ export const AUDIT_ROUTES = {
     }),
     answer: pageOf(auditEntry),
   }),
+  /** Checks the whole trail anew. `entries` are sound up to the first that is altered, missing, inserted, moved or cut off. */
+  verifyAudit: route('GET', '/audit/verify', {
+    policy: 'audit:verify',
+    answer: z.strictObject({
+      entries: z.int(),
+      ok: z.boolean(),
+      firstBroken: z.strictObject({ seq: z.int(), what: z.string() }).optional(),
+    }),
+  }),
 };
 
 /** A mail that the demo's own mail server kept. */

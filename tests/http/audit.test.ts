@@ -1,14 +1,19 @@
 import { readFileSync, statSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import { auditHeadIn } from '../../backend/audit/audit-head';
 import { change } from '../../backend/audit/change';
-import { verifyAudit } from '../../backend/audit/verify';
+import { checkTrailAtStart } from '../../backend/audit/check-trail';
+import { auditSteps, verifyAudit } from '../../backend/audit/verify';
+import { verifyTrail } from '../../backend/command/audit-verify';
+import { UsageProblem } from '../../backend/command/usage-problem';
+import { serverLog } from '../../backend/server-log';
 import { startApp, type RunningApp } from '../support/app';
 import { allRows } from '../support/rows';
 import { makeWorld, type World } from '../support/world';
 
 const ENTRIES = 8;
+const SERVER = { kind: 'server', id: null, requestId: null } as const;
 
 let app: RunningApp;
 let world: World;
@@ -66,6 +71,63 @@ describe('40 the audit chain', () => {
   ])('shows %s', (_what, sql, seq) => {
     tamper(sql);
     expect(verdict().fault?.seq).toBe(seq);
+  });
+
+  it('is what the API tells its deployment of, sound or not', async () => {
+    const chief = world.as('chief');
+    expect((await chief.get('/audit/verify')).body).toEqual({ entries: ENTRIES, ok: true });
+    tamper(`UPDATE audit SET details = '{"at":9}' WHERE seq = 3`);
+    const told = (await Promise.all([chief.get('/audit/verify'), chief.get('/audit/verify')])).map(({ body }) => body);
+    const broken = { entries: 2, ok: false, firstBroken: { seq: 3, what: 'is not what was written' } };
+    expect(told).toEqual([broken, broken]);
+  });
+
+  it('is checked in steps, between which it may grow, and past the first step too', () => {
+    change(app.ground, SERVER, (_tx, note) => {
+      for (let at = 0; at < 1_200; at += 1) note({ action: 'test:done', subjectKind: 'test', subjectId: at });
+    });
+    const step = auditSteps(app.ground.db, auditHeadIn(app.dataDir));
+    expect(step()).toBeUndefined();
+    change(app.ground, SERVER, (_tx, note) => note({ action: 'test:done', subjectKind: 'test', subjectId: 1 }));
+    expect([step(), step()]).toEqual([undefined, { sound: ENTRIES + 1_201 }]);
+    tamper('DELETE FROM audit WHERE seq = 1100');
+    expect(verdict()).toEqual({ sound: 1_099, fault: { seq: 1_100, text: 'is missing' } });
+  });
+
+  it.each<[string, string, RegExp]>([
+    ['an edit', `UPDATE audit SET details = '{"at":9}' WHERE seq = 3`, /entry 3 is not what was written/],
+    ['a deletion', 'DELETE FROM audit WHERE seq = 4', /entry 4 is missing/],
+    [
+      'an insertion',
+      `INSERT INTO audit SELECT 9, at, actor_kind, actor_id, 'test:forged', network_id, subject_kind, subject_id, details, request_id, previous_hash, hash FROM audit WHERE seq = 8`,
+      /entry 9 does not follow the entry before it/,
+    ],
+    [
+      'another order',
+      'UPDATE audit SET seq = 100 WHERE seq = 3; UPDATE audit SET seq = 3 WHERE seq = 4; UPDATE audit SET seq = 4 WHERE seq = 100',
+      /entry 3 does not follow the entry before it/,
+    ],
+    ['a cut tail', 'DELETE FROM audit WHERE seq > 6', /entry 7 is missing: the trail once went to 8/],
+  ])('is what the server looks at when it starts, and the command beside it: both name %s', async (_what, sql, text) => {
+    const env = { DATA_DIR: app.dataDir };
+    const printed: string[] = [];
+    verifyTrail(env, (line) => printed.push(line));
+    expect(printed).toEqual([`the audit trail is as it was written: ${ENTRIES} entries`]);
+    tamper(sql);
+    expect(() => verifyTrail(env, () => undefined)).toThrow(text);
+    const lines: unknown[] = [];
+    const log = serverLog('error', { write: (line: string) => void lines.push(JSON.parse(line)) });
+    checkTrailAtStart({ ...app.ground, log });
+    await vi.waitFor(() => expect(lines).toHaveLength(1));
+    expect(lines).toEqual([expect.objectContaining({ event: 'audit:broken', msg: expect.stringMatching(text) as string })]);
+  });
+
+  it('is checked at the start without being asked', async () => {
+    await vi.waitFor(() => expect(app.log.filter(({ event }) => event === 'audit:checked')).toHaveLength(1));
+  });
+
+  it('cannot be checked where there is no database: the command says so', () => {
+    expect(() => verifyTrail({ DATA_DIR: join(app.dataDir, 'nothing') }, () => undefined)).toThrow(UsageProblem);
   });
 
   it('shows a chain that was forged whole, by the head outside the database', () => {

@@ -249,6 +249,7 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
   'GET /networks/:networkId/completeness': { ...ofNetwork('/completeness'), in: ROLES_OF_FIRST },
   'GET /networks/:networkId/changes': { ...ofNetwork('/changes?after=0'), in: SEE_ALL },
   'GET /audit': { in: ['chief'] },
+  'GET /audit/verify': { in: ['chief'] },
   'GET /kept-mails': { in: ['chief'] },
 };
 
