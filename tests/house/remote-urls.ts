@@ -1,7 +1,7 @@
 import { type Tree } from './tree';
 
 /** Hosts whose addresses stand in scripts as names (of XML namespaces, of JSON Schema, in the leap-second list) or in the words of an error, and are never asked. */
-const NAMES_ONLY = new Set(['www.w3.org', 'json-schema.org', 'angular.dev', 'g.co', 'github.com', 'hpiers.obspm.fr']);
+const NAMES_ONLY = new Set(['www.w3.org', 'json-schema.org', 'angular.dev', 'g.co', 'github.com', 'hpiers.obspm.fr', 'socket.io']);
 
 /** Faults of the built front end: an address of another machine that a page, a style or a script would fetch. */
 export function remoteUrls(built: Tree): string[] {
