@@ -16,6 +16,7 @@ import { signIn } from '../support/sign-in';
 
 const AT = '2026-01-01T00:00:00.000Z';
 const LOOK_MS = 250;
+const START_MS = 180_000; // a million events are looked through for damage
 /** All sites together, 1/s: how dense triggers lie in time. */
 export const RATE_HZ = 2_000;
 export const SITES = 8;
@@ -122,12 +123,15 @@ export async function startMeasuredServer(
   closeDb(db);
   const delayFile = join(folder, 'loop-delay.json');
   const loader = pathToFileURL(join(root, 'tests/bench/loop-delay.mjs')).href;
-  const server = await startServer({
-    DATA_DIR: dataDir,
-    LOG_LEVEL: 'error',
-    LOOP_DELAY: delayFile,
-    NODE_OPTIONS: `--import ${loader} ${process.env['SERVER_OPTIONS'] ?? ''}`,
-  });
+  const server = await startServer(
+    {
+      DATA_DIR: dataDir,
+      LOG_LEVEL: 'error',
+      LOOP_DELAY: delayFile,
+      NODE_OPTIONS: `--import ${loader} ${process.env['SERVER_OPTIONS'] ?? ''}`,
+    },
+    START_MS,
+  );
   const url = server.url.replace(/\/$/, '');
   const client = new Client(url);
   for (const [name, value] of cookies) client.cookies.set(name, value);

@@ -53,13 +53,14 @@ export function runServer(env: Readonly<Record<string, string>>): { process: Chi
   return { process: child, ended, said: () => stdout };
 }
 
-/** Starts the built server on a free port and waits for its URL. */
-export async function startServer(env: Readonly<Record<string, string>>): Promise<RunningServer> {
+/** Starts the built server on a free port and waits for its URL: `mostMs` at most, since a large database is looked through first. */
+export async function startServer(env: Readonly<Record<string, string>>, mostMs = START_MS): Promise<RunningServer> {
   const { process: child, ended, said } = runServer({ PORT: '0', ...env });
   const url = await new Promise<string>((resolve, reject) => {
     const timer = setTimeout(() => {
-      reject(new Error(`the server named no URL in ${START_MS} ms`));
-    }, START_MS);
+      child.kill('SIGKILL');
+      reject(new Error(`the server named no URL in ${mostMs} ms`));
+    }, mostMs);
     const look = (): void => {
       const found = /http:\/\/\S+\//.exec(said());
       if (!found) return;
