@@ -2,6 +2,8 @@ import { afterRenderEffect, ChangeDetectionStrategy, Component, computed, Elemen
 import { toObservable, toSignal } from '@angular/core/rxjs-interop';
 import { type AbstractControl } from '@angular/forms';
 import { switchMap } from 'rxjs';
+import { Term } from '../terms/term';
+import { type TermName } from '../terms/terms';
 import { Icon } from './icon';
 
 let lastId = 0;
@@ -9,10 +11,15 @@ let lastId = 0;
 /** A control with its label, a hint, and the sentence of what would be right. The control's own element is put inside. */
 @Component({
   selector: 'sw-field',
-  imports: [Icon],
+  imports: [Icon, Term],
   changeDetection: ChangeDetectionStrategy.OnPush,
   template: `
-    <label [attr.for]="id">{{ label() }}</label>
+    <div class="name">
+      <label [attr.for]="id">{{ label() }}</label>
+      @if (term(); as word) {
+        <sw-term [of]="word" />
+      }
+    </div>
     <ng-content />
     @if (fault(); as text) {
       <p class="fault" [id]="id + '-note'"><sw-icon name="error" />{{ text }}</p>
@@ -26,6 +33,8 @@ export class Field {
   readonly label = input.required<string>();
   readonly of = input.required<AbstractControl>();
   readonly hint = input('');
+  /** The word of the label whose definition a `?` opens. */
+  readonly term = input<TermName | undefined>();
   protected readonly id = `field-${++lastId}`;
 
   private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
