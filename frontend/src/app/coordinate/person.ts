@@ -12,13 +12,14 @@ import { Loader } from '../ui/loaded';
 import { Sending } from '../ui/sending';
 import { Fault, Skeleton } from '../ui/states';
 import { ToastStore } from '../ui/toasts';
+import { ChangeEnd } from './change-end';
 import { RoleChoice, roleForm, roleOf } from './role-choice';
 import { RoleWords } from './role-words';
 
 /** One person: their roles, their invitation, and whether they may come in at all. */
 @Component({
   selector: 'sw-person',
-  imports: [Fault, InstantMark, ReactiveFormsModule, RoleChoice, RoleWords, RouterLink, Skeleton],
+  imports: [ChangeEnd, Fault, InstantMark, ReactiveFormsModule, RoleChoice, RoleWords, RouterLink, Skeleton],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './person.html',
   styleUrl: './person.scss',
@@ -37,6 +38,8 @@ export class PersonPage {
   protected readonly role = roleForm(0);
   protected readonly sending = new Sending(this.role);
   protected readonly giving = signal(false);
+  /** The role whose end is being changed. */
+  protected readonly ending = signal<number | undefined>(undefined);
 
   constructor() {
     effect(() => {
@@ -56,6 +59,12 @@ export class PersonPage {
       this.giving.set(false);
       this.toasts.say(`${person.name} is ${held.role} now.`);
     });
+  }
+
+  protected ended(person: Person, changed: RoleHeld): void {
+    this.ending.set(undefined);
+    this.person.update((now) => ({ ...now, roles: now.roles.map((one) => (one.id === changed.id ? changed : one)) }));
+    this.toasts.say(`${person.name}: when the role ${changed.role} ends is said.`);
   }
 
   protected takeRole(person: Person, { id, role, version, networkId, siteId, expiresAt }: RoleHeld): Promise<void> {

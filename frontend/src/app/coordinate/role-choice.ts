@@ -3,7 +3,9 @@ import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { type RoleGiven } from '#shared/contract/people';
 import { NetworkStore } from '../networks/network-store';
 import { SessionStore } from '../session/session-store';
+import { textControl } from '../ui/controls';
 import { Field } from '../ui/field';
+import { endOf, roleEnd } from './role-end';
 
 /** What can be chosen: a role, and for a coordinator whether of everything. */
 export const ROLE_CHOICES = [
@@ -22,23 +24,24 @@ export const roleForm = (networkId: number) =>
     role: new FormControl<Choice>('analyst', { nonNullable: true }),
     networkId: new FormControl(networkId, { nonNullable: true }),
     siteId: new FormControl(0, { nonNullable: true }),
+    expiresAt: textControl(roleEnd()),
   });
 
 export type RoleForm = ReturnType<typeof roleForm>;
 
-/** The role as it crosses the wire: until it is taken. */
+/** The role as it crosses the wire. */
 export function roleOf(form: RoleForm): RoleGiven {
-  const { role, networkId, siteId } = form.getRawValue();
+  const { role, networkId, siteId, expiresAt } = form.getRawValue();
   const of = ROLE_CHOICES.find(({ value }) => value === role)?.of ?? 'network';
   return {
     role: role === 'network-coordinator' ? 'coordinator' : role,
     networkId: of === 'deployment' || networkId === 0 ? null : networkId,
     siteId: of === 'site' && siteId !== 0 ? siteId : null,
-    expiresAt: null,
+    expiresAt: endOf(expiresAt),
   };
 }
 
-/** Which role, in which network, and for an operator at which site. */
+/** Which role, in which network, for an operator at which site, and until when. */
 @Component({
   selector: 'sw-role-choice',
   imports: [Field, ReactiveFormsModule],
@@ -74,6 +77,9 @@ export function roleOf(form: RoleForm): RoleGiven {
           </select>
         </sw-field>
       }
+      <sw-field label="Held until, UTC" [of]="form().controls.expiresAt" hint="empty: until it is taken away"
+        ><input class="box figure" type="datetime-local" formControlName="expiresAt"
+      /></sw-field>
     </ng-container>
   `,
   styles: `

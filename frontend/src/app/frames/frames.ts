@@ -5,22 +5,23 @@ import { ApiClient } from '../api/api-client';
 import { sentenceOf } from '../api/api-problem';
 import { NetworkStore } from '../networks/network-store';
 import { SessionStore } from '../session/session-store';
+import { Term } from '../terms/term';
 import { ConfirmTyped } from '../ui/confirm-typed';
 import { FrameGlyph } from '../ui/frame-glyph';
 import { Icon } from '../ui/icon';
 import { Loader } from '../ui/loaded';
 import { Fault, Skeleton } from '../ui/states';
 import { ToastStore } from '../ui/toasts';
-import { MakeFrame } from './make-frame';
+import { FrameForm } from './frame-form';
 
 /** The frames of the network as they move in the geocentric one, and which are pinned for the tables of orders. */
 @Component({
   selector: 'sw-frames',
-  imports: [Fault, FrameGlyph, Icon, MakeFrame, Skeleton],
+  imports: [Fault, FrameForm, FrameGlyph, Icon, Skeleton, Term],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './frames.html',
   styles: `
-    sw-make-frame {
+    sw-frame-form {
       display: block;
       max-width: 560px;
       margin-bottom: 24px;
@@ -37,7 +38,8 @@ export class Frames {
   private readonly toasts = inject(ToastStore);
   protected readonly session = inject(SessionStore);
   protected readonly networks = inject(NetworkStore);
-  protected readonly making = signal(false);
+  /** The form that is open, and the frame that it changes. */
+  protected readonly form = signal<{ readonly frame: Frame | undefined } | undefined>(undefined);
   protected readonly frames = new Loader<readonly Frame[]>(() => {
     const networkId = this.networks.network()?.id ?? 0;
     return networkId === 0
@@ -52,10 +54,11 @@ export class Frames {
     });
   }
 
-  protected made(frame: Frame): void {
-    this.making.set(false);
-    this.frames.update((all) => [...all, frame]);
-    this.toasts.say(`Frame ${frame.code} composed.`);
+  protected async stated(frame: Frame): Promise<void> {
+    const isNew = this.form()?.frame === undefined;
+    this.form.set(undefined);
+    this.toasts.say(isNew ? `Frame ${frame.code} composed.` : `Frame ${frame.code} changed.`);
+    await this.frames.load(); // what others move like in it is another
   }
 
   /** Pins a frame behind those that are, or takes its pin out. */

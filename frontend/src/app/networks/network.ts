@@ -3,9 +3,11 @@ import { type Run, RUN_ROUTES } from '#shared/contract/network-routes';
 import { allOf } from '../api/all-of';
 import { ApiClient } from '../api/api-client';
 import { sentenceOf } from '../api/api-problem';
+import { References } from '../clocks/references';
 import { InstantMark } from '../instants/instant';
 import { deviceInstant } from '../instants/server-instant';
 import { SessionStore } from '../session/session-store';
+import { Term } from '../terms/term';
 import { Icon } from '../ui/icon';
 import { Loader } from '../ui/loaded';
 import { Empty, Fault, Skeleton } from '../ui/states';
@@ -17,7 +19,7 @@ import { NetworkStore } from './network-store';
 /** The network that all pages are about, and its data-taking runs. */
 @Component({
   selector: 'sw-network',
-  imports: [Empty, Fault, Icon, InstantMark, MakeNetwork, MakeRun, Skeleton],
+  imports: [Empty, Fault, Icon, InstantMark, MakeNetwork, MakeRun, References, Skeleton, Term],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './network.html',
   styleUrl: './network.scss',

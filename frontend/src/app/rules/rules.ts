@@ -1,27 +1,30 @@
 import { ChangeDetectionStrategy, Component, effect, inject, signal, untracked } from '@angular/core';
 import { type Rule, RULE_ROUTES } from '#shared/contract/rule-routes';
+import { type Warning } from '#shared/contract/setup-leaves';
 import { allOf } from '../api/all-of';
 import { ApiClient } from '../api/api-client';
 import { sentenceOf } from '../api/api-problem';
 import { NetworkStore } from '../networks/network-store';
 import { SessionStore } from '../session/session-store';
+import { Term } from '../terms/term';
 import { Icon } from '../ui/icon';
 import { Loader } from '../ui/loaded';
 import { Empty, Fault, Skeleton } from '../ui/states';
 import { ToastStore } from '../ui/toasts';
-import { MakeRule } from './make-rule';
+import { Told } from '../ui/told';
+import { RuleForm, type RuleTold } from './rule-form';
 import { windowWords } from './window-words';
 
 /** The coincidence rules of the network, and which of them find. */
 @Component({
   selector: 'sw-rules',
-  imports: [Empty, Fault, Icon, MakeRule, Skeleton],
+  imports: [Empty, Fault, Icon, RuleForm, Skeleton, Term, Told],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './rules.html',
   styles: `
-    sw-make-rule {
+    sw-rule-form {
       display: block;
-      max-width: 560px;
+      max-width: 820px;
       margin-bottom: 24px;
     }
   `,
@@ -31,7 +34,10 @@ export class Rules {
   private readonly toasts = inject(ToastStore);
   protected readonly session = inject(SessionStore);
   protected readonly networks = inject(NetworkStore);
-  protected readonly making = signal(false);
+  /** The form that is open, and the rule that it changes. */
+  protected readonly form = signal<{ readonly rule: Rule | undefined } | undefined>(undefined);
+  /** What is doubtful about the rule that was just stated. */
+  protected readonly warnings = signal<readonly Warning[]>([]);
   protected readonly words = windowWords;
   protected readonly rules = new Loader<readonly Rule[]>(() => {
     const networkId = this.networks.network()?.id ?? 0;
@@ -45,10 +51,17 @@ export class Rules {
     });
   }
 
-  protected made(rule: Rule): void {
-    this.making.set(false);
-    this.rules.update((all) => [...all, rule]);
-    this.toasts.say(`Rule ${rule.code} made. It finds once it is active.`);
+  protected siteWords({ now: { siteIds } }: Rule): string {
+    if (siteIds.length === 0) return 'all';
+    return siteIds.map((id) => this.networks.sites.value()?.find((site) => site.id === id)?.code ?? String(id)).join(', ');
+  }
+
+  protected stated({ rule, warnings }: RuleTold): void {
+    const isNew = this.form()?.rule === undefined;
+    this.form.set(undefined);
+    this.warnings.set(warnings);
+    this.rules.update((all) => (isNew ? [...all, rule] : all.map((one) => (one.id === rule.id ? rule : one))));
+    this.toasts.say(isNew ? `Rule ${rule.code} made. It finds once it is active.` : `Rule ${rule.code} changed.`);
   }
 
   /** Turns a rule on or off; for a while that can be taken back. */
