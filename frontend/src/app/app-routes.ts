@@ -37,6 +37,11 @@ const inside: Routes = [
     title: 'Site',
     loadComponent: () => import('./sites/site').then((file) => file.SitePage),
   }),
+  ...pageFor('set-aside:list', {
+    path: 'set-asides',
+    title: 'Set-asides',
+    loadComponent: () => import('./set-asides/set-asides').then((file) => file.SetAsides),
+  }),
   ...pageFor('frame:list', { path: 'frames', title: 'Frames', loadComponent: () => import('./frames/frames').then((file) => file.Frames) }),
   ...pageFor('rule:list', { path: 'rules', title: 'Rules', loadComponent: () => import('./rules/rules').then((file) => file.Rules) }),
   ...pageFor('time-tables:read', {

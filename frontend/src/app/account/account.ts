@@ -1,4 +1,5 @@
 import { ChangeDetectionStrategy, Component, inject } from '@angular/core';
+import { Router } from '@angular/router';
 import { SCALES } from '#shared/time/scales';
 import { Preferences } from '../preferences/preferences';
 import { SessionStore } from '../session/session-store';
@@ -8,7 +9,7 @@ import { MyPassword } from './my-password';
 import { MySessions } from './my-sessions';
 import { RoleWords } from '../coordinate/role-words';
 
-/** What everyone sees and changes of their own: name, password, sessions, and how this browser shows things. */
+/** What everyone sees and changes of their own: name, password, sessions, and how things are shown to them. */
 @Component({
   selector: 'sw-account',
   imports: [MyName, MyPassword, MySessions, RoleWords, Segmented],
@@ -18,6 +19,7 @@ import { RoleWords } from '../coordinate/role-words';
 })
 export class Account {
   protected readonly session = inject(SessionStore);
+  private readonly router = inject(Router);
   protected readonly preferences = inject(Preferences);
   protected readonly themes = [
     { value: 'system', word: 'System' },
@@ -29,4 +31,10 @@ export class Account {
     { value: 'on', word: 'On' },
     { value: 'off', word: 'Off' },
   ] as const;
+
+  /** Ends this session alone. Of a server that is not reached it is forgotten here all the same. */
+  protected async signOut(): Promise<void> {
+    await this.session.signOut().catch(() => undefined);
+    await this.router.navigateByUrl('/sign-in');
+  }
 }

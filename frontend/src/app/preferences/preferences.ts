@@ -1,17 +1,15 @@
 import { effect, Injectable, signal, type WritableSignal } from '@angular/core';
+import { SWITCH, type Theme, THEMES } from '#shared/contract/preference-routes';
 import { SCALES, type Scale } from '#shared/time/scales';
 
-export const THEMES = ['system', 'light', 'dark'] as const;
-export type Theme = (typeof THEMES)[number];
-
-/** What someone chose for this browser; kept in it, since it tells nothing about anyone. `static/theme.js` reads the theme before Angular does. */
+/** How this browser shows things; kept in it, since it tells nothing about anyone. `static/theme.js` reads the theme before Angular does. */
 @Injectable({ providedIn: 'root' })
 export class Preferences {
   readonly theme = kept<Theme>('skewline-theme', THEMES, 'system');
   /** The scale in which instants are printed. */
   readonly scale = kept<Scale>('skewline-scale', SCALES, 'UTC');
   /** Whether single keys act. */
-  readonly shortcuts = kept('skewline-shortcuts', ['on', 'off'] as const, 'on');
+  readonly shortcuts = kept('skewline-shortcuts', SWITCH, 'on');
 
   constructor() {
     effect(() => {

@@ -11,12 +11,10 @@ import { InstantMark } from '../instants/instant';
     <i [class.full]="live()" aria-hidden="true"></i>
     <span>{{ word() }}</span>
     @if (connection.stream(); as stream) {
-      <span class="age">
-        {{ stream.behindS.toFixed(1) }} s behind
-        @if (stream.completeUpTo; as upTo) {
-          , complete up to <sw-instant [of]="upTo" />
-        }
-      </span>
+      <span class="age">{{ stream.behindS.toFixed(1) }} s behind</span>
+      @if (stream.completeUpTo; as upTo) {
+        <span class="age">complete up to <sw-instant [of]="upTo" /></span>
+      }
     }
   `,
   styles: `

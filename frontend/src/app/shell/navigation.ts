@@ -23,6 +23,7 @@ export const PLACES: readonly Place[] = [
   { path: '/rules', name: 'Rules', icon: 'rule', key: 'g r', policy: 'rule:list', group: 'work' },
   { path: '/frames', name: 'Frames', icon: 'timeline', key: 'g f', policy: 'frame:list', group: 'work' },
   { path: '/sites', name: 'Sites', icon: 'cell-tower', key: 'g s', policy: 'site:list', group: 'work' },
+  { path: '/set-asides', name: 'Set-asides', icon: 'fact-check', key: 'g e', policy: 'set-aside:decide', group: 'work' },
   { path: '/network', name: 'Network', icon: 'hub', key: 'g n', policy: 'network:read', group: 'run' },
   { path: '/people', name: 'People', icon: 'group', key: 'g p', policy: 'person:list', group: 'run' },
   { path: '/tables', name: 'Time, Earth', icon: 'schedule', key: 'g t', policy: 'leap-second-table:upload', group: 'run' },

@@ -1,5 +1,6 @@
 import { ChangeDetectionStrategy, Component, computed, inject } from '@angular/core';
 import { Router, RouterLink, RouterLinkActive, RouterOutlet } from '@angular/router';
+import { type Theme } from '#shared/contract/preference-routes';
 import { type Command, CommandStore } from '../commands/command-store';
 import { Keys } from '../commands/keys';
 import { Palette } from '../commands/palette';
@@ -7,7 +8,8 @@ import { ShortcutList } from '../commands/shortcut-list';
 import { ConnectionStore } from '../connection/connection-store';
 import { OfflineBanner } from '../connection/offline-banner';
 import { LiveStore } from '../live/live-store';
-import { Preferences, type Theme } from '../preferences/preferences';
+import { MyPreferences } from '../preferences/my-preferences';
+import { Preferences } from '../preferences/preferences';
 import { NetworkStore } from '../networks/network-store';
 import { AskPassword } from '../session/ask-password';
 import { SessionStore } from '../session/session-store';
@@ -17,7 +19,7 @@ import { Icon } from '../ui/icon';
 import { OpenDialog } from '../ui/open-dialog';
 import { Wordmark } from '../ui/wordmark';
 import { ConnectionMark } from './connection-mark';
-import { FIRST_STEPS, PLACES } from './navigation';
+import { FIRST_STEPS, type Place, PLACES } from './navigation';
 import { NetworkChooser } from './network-chooser';
 
 const IN_BOTTOM_BAR = 4;
@@ -58,7 +60,10 @@ export class Shell {
   );
   protected readonly places = computed(() => [
     ...(this.isEmpty() ? [FIRST_STEPS] : []),
-    ...PLACES.filter(({ policy }) => policy === undefined || this.session.may(policy)),
+    ...inOrder(
+      PLACES.filter(({ policy }) => policy === undefined || this.session.may(policy)),
+      this.session.may('coincidence:list'),
+    ),
   ]);
   protected readonly inBar = computed(() => this.places().slice(0, IN_BOTTOM_BAR));
 
@@ -66,6 +71,7 @@ export class Shell {
     inject(AskPassword).whenSessionEnds();
     inject(ConnectionStore).watch();
     inject(LiveStore); // follows the network from here on
+    inject(MyPreferences); // follow the person from here on
     inject(CommandStore).offer(() => this.commands());
   }
 
@@ -127,4 +133,10 @@ export class Shell {
       { title: 'Sign out', section: 'Everywhere', icon: 'logout', run: () => this.signOut() },
     ];
   }
+}
+
+/** Who sees no coincidences runs sites: these come first, and with them what was set aside of theirs. */
+function inOrder(places: readonly Place[], seesCoincidences: boolean): readonly Place[] {
+  const isFirst = ({ path }: Place) => !seesCoincidences && ['/sites', '/set-asides'].includes(path);
+  return [...places.filter(isFirst), ...places.filter((place) => !isFirst(place))];
 }
