@@ -54,7 +54,7 @@ export class DeskEvents {
     () =>
       (this.networks.sites.value() ?? [])
         .filter(({ closedAt }) => closedAt === null)
-        .map(({ id, code, name, details }) => ({ id, code, name, positionSigmaM: details?.now?.positionSigmaM ?? 0 })),
+        .map(({ id, code, name, details }) => ({ id, code, name, positionSigmaM: details.now?.positionSigmaM ?? 0 })),
     { equal: (a, b) => JSON.stringify(a) === JSON.stringify(b) },
   );
   readonly frames = new Loader<readonly Frame[]>(() => {

@@ -31,7 +31,10 @@ export class DeskLists {
   private readonly waiting = signal<Part | undefined>(undefined);
   private isAdding = false;
   /** Whether the reader is at the live edge. */
-  readonly isFollowing = signal(true);
+  readonly isAtEdge = signal(true);
+  /** Whether the pointer or the keyboard is on the rows, which then stay where they are. */
+  private readonly isHeld = signal(false);
+  private readonly isFollowing = computed(() => this.isAtEdge() && !this.isHeld());
   readonly maySee = computed(() => this.session.may('coincidence:list'));
   readonly part = new Loader<Part>(() => this.ask(undefined));
   readonly rows = computed(() => foldSets(this.part.value()?.items ?? []));
@@ -95,7 +98,13 @@ export class DeskLists {
   takeNew(): void {
     const part = this.waiting();
     if (part) this.take(part);
-    this.isFollowing.set(true);
+    this.isAtEdge.set(true);
+  }
+
+  /** Holds the rows while someone points at them; lets them go on after. */
+  hold(isHeld: boolean): void {
+    this.isHeld.set(isHeld);
+    if (!isHeld && this.isAtEdge()) this.takeNew();
   }
 
   async more(): Promise<void> {
@@ -113,7 +122,7 @@ export class DeskLists {
 
   private async begin(): Promise<void> {
     this.waiting.set(undefined);
-    this.isFollowing.set(true);
+    this.isAtEdge.set(true);
     await this.part.load();
   }
 

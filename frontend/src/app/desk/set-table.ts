@@ -117,7 +117,7 @@ export class SetTable {
     const start = Math.max(0, Math.floor(px / this.rowPx()) - 2);
     const end = start + Math.ceil(viewport.getViewportSize() / this.rowPx()) + 4;
     this.range.set({ start, end });
-    this.lists.isFollowing.set(px < NEAR_TOP_PX);
+    this.lists.isAtEdge.set(px < NEAR_TOP_PX);
     if (end > this.rows().length - MORE_BEFORE_END) void this.lists.more();
   }
 

@@ -18,6 +18,7 @@ const S_PER_MINUTE = 60;
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './site-strip.html',
   styleUrl: './site-strip.scss',
+  host: { role: 'region', 'aria-label': 'How the sites stream', tabindex: '0' }, // wider than a narrow window, it scrolls by the arrows
 })
 export class SiteStrip {
   private readonly live = inject(LiveStore);
