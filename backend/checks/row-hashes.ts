@@ -1,4 +1,4 @@
-import { MOST_RECORD_BYTES, type INTERVAL_CLASSES } from '#schema/words';
+import { MOST_RECORD_BYTES, READING_FORMS, type INTERVAL_CLASSES } from '#schema/words';
 import { type Kind } from '#shared/reconcile/record';
 import { coincidenceHash, type HashedSet, type PairNumbers } from '../coincidences/set-numbers';
 import { type Db } from '../db';
@@ -76,6 +76,7 @@ function judge<Row, T extends readonly number[]>(
 }
 
 const DIFFERS = 'is not what was written';
+const FORMS: readonly string[] = READING_FORMS;
 
 type WrittenTrigger = TriggerTexts & Pick<TriggerRow, 'id' | 'extra' | 'contentHash'>;
 
@@ -86,7 +87,8 @@ function triggers({ $client: client }: Db): Rows<readonly [number]> {
   );
   const textOf = (row: WrittenTrigger): string | undefined => {
     try {
-      return contentHash(recordOf(row)).equals(row.contentHash) ? undefined : DIFFERS;
+      // A form that is none is read as the usual one, and so hashed as it.
+      return FORMS.includes(row.readingForm) && contentHash(recordOf(row)).equals(row.contentHash) ? undefined : DIFFERS;
     } catch {
       return 'holds further columns that cannot be read';
     }

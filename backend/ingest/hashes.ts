@@ -72,6 +72,6 @@ export function eventRowHash(event: HashedEvent, { networkId, groundingId, chang
     event.eventVersion,
     changeNumber,
   ];
-  for (let at = 0; at < NUMBERS_OF_ROW; at++) row.setFloat64(8 * at, numbers[at] ?? 0);
+  for (let at = 0; at < NUMBERS_OF_ROW; at++) row.setFloat64(8 * at, numbers[at] ?? NaN); // a damaged row may have a word that is none
   return sha256(rowBytes);
 }
