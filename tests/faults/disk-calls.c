@@ -6,7 +6,7 @@
  * and as many bytes as its length says: what was written, a path within the folder, or two paths with a 0 between.
  *
  * DISK_FAULT names a file that is shared with the test: the calls of the given kinds are counted there, and from the given one on as many as it
- * says fail with the given error. Of a write that finds the disk full, half is written first.
+ * says fail with the given error. Of a write that finds the disk full, half is written first. Such a failure is an entry of the record too.
  *
  * The folder is DISK_FOLDER, as its path is written by the process. SQLite's index of the log (-shm) is memory, not disk, and left out.
  */
@@ -27,7 +27,7 @@
 #include <sys/uio.h>
 #include <unistd.h>
 
-enum { MADE = 1, WRITTEN = 2, CUT = 3, SYNCED = 4, FOLDER_SYNCED = 5, REMOVED = 6, RENAMED = 7 };
+enum { MADE = 1, WRITTEN = 2, CUT = 3, SYNCED = 4, FOLDER_SYNCED = 5, REMOVED = 6, RENAMED = 7, FAILED = 8 };
 enum { MOST_FILES = 1024, MOST_PATH = 1024 };
 
 struct entry {
@@ -210,8 +210,10 @@ static ssize_t write_at(int fd, const void *bytes, size_t length, int64_t offset
     length /= 2;
     error = 0;
   }
-  if (error) errno = error;
-  else {
+  if (error) {
+    note(FAILED, file, WRITTEN, NULL, 0);
+    errno = error;
+  } else {
     struct stat status;
     int append = offset < 0 && (fcntl(fd, F_GETFL) & O_APPEND);
     int64_t at = offset >= 0 ? offset : append && fstat(fd, &status) == 0 ? status.st_size : lseek(fd, 0, SEEK_CUR);
@@ -255,7 +257,8 @@ static int cut(int fd, off_t length) {
   int error = error_of(CUT);
   int result = error ? -1 : real_ftruncate(fd, length);
   int kept = error ? error : errno;
-  if (result == 0) note(CUT, file, (uint64_t)length, NULL, 0);
+  if (error) note(FAILED, file, CUT, NULL, 0);
+  else if (result == 0) note(CUT, file, (uint64_t)length, NULL, 0);
   pthread_mutex_unlock(&lock);
   errno = kept;
   return result;
@@ -272,7 +275,8 @@ static int sync_file(int fd, int (*real)(int)) {
   int error = error_of(SYNCED);
   int result = error ? -1 : real(fd);
   int kept = error ? error : errno;
-  if (result == 0) note(of_folder ? FOLDER_SYNCED : SYNCED, file, 0, NULL, 0);
+  if (error) note(FAILED, file, SYNCED, NULL, 0);
+  else if (result == 0) note(of_folder ? FOLDER_SYNCED : SYNCED, file, 0, NULL, 0);
   pthread_mutex_unlock(&lock);
   errno = kept;
   return result;

@@ -70,7 +70,7 @@ export class DiskFaults {
     this.put([kinds, after, failing, CODES[code], 0, 0]);
   }
 
-  /** The disk is as it should be again. */
+  /** The disk is as it should be again; what was counted stays. */
   mend(): void {
     this.put([0, 0, 0, 0]);
   }

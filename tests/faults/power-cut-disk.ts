@@ -58,6 +58,11 @@ class DiskFile {
     for (const change of this.waiting) this.synced.take(change);
     this.waiting = [];
   }
+
+  /** A failed sync has dropped what waited: the system takes it for written, and no later sync brings it back. */
+  loseWaiting(): void {
+    this.waiting = [];
+  }
 }
 
 /** A folder on a disk that does what it is told, and knows what of it would outlast a power cut. */
@@ -66,6 +71,20 @@ export class Disk {
   private readonly names = new Map<string, DiskFile>();
   private syncedNames = new Map<string, DiskFile>();
   private waiting: Naming[] = [];
+
+  /** A file that was there, and on the disk, before. */
+  begin(name: string, content: Buffer): void {
+    const file = new DiskFile();
+    file.take({ offset: 0, bytes: content });
+    file.sync();
+    this.names.set(name, file);
+    this.syncedNames.set(name, file);
+  }
+
+  /** Whether a file of the record holds anything that is not synced. */
+  isWaiting(file: number): boolean {
+    return this.fileOf(file).waiting.length > 0;
+  }
 
   take(call: DiskCall): void {
     switch (call.is) {
@@ -84,6 +103,9 @@ export class Disk {
         return;
       case 'synced':
         this.fileOf(call.file).sync();
+        return;
+      case 'failed':
+        if (call.call === 'synced' && call.file !== 0) this.fileOf(call.file).loseWaiting();
         return;
       case 'folder-synced':
         this.syncedNames = new Map(this.names);

@@ -8,6 +8,8 @@ export type DiskCall =
   | { readonly is: 'synced'; readonly file: number }
   | { readonly is: 'folder-synced' }
   | { readonly is: 'removed'; readonly name: string }
+  /** A call that was made to fail; the file is 0 for the folder. */
+  | { readonly is: 'failed'; readonly file: number; readonly call: 'written' | 'cut' | 'synced' }
   | { readonly is: 'renamed'; readonly name: string; readonly to: string };
 
 const HEAD_BYTES = 24;
@@ -44,6 +46,8 @@ function callOf(kind: number, file: number, offset: number, bytes: Buffer): Disk
       const [name = '', to = ''] = bytes.toString().split('\0');
       return { is: 'renamed', name, to };
     }
+    case 8:
+      return { is: 'failed', file, call: offset === 2 ? 'written' : offset === 3 ? 'cut' : 'synced' };
     default:
       throw new Error(`the record has a call of the unknown kind ${kind}`);
   }
