@@ -152,7 +152,10 @@ export class NetworkSearch {
     return missed;
   }
 
-  /** Makes the searches of the rules in force; answers those whose versions had begun or done their search of the log. */
+  /**
+   * Makes the searches of the rules in force; answers those whose versions had searched the log or a part of it. Where none of it was, the search
+   * still comes to all that is stored, in steps: a start does not wait for that.
+   */
   private makeRules(): readonly RuleSearch[] {
     const { db, networkId } = this.ground;
     const known: RuleSearch[] = [];
@@ -162,7 +165,7 @@ export class NetworkSearch {
       const kept = this.rules.find((rule) => rule.setup.active.versionId === active.versionId);
       const rule = kept ?? new RuleSearch(setup, this.sourcesFor(active.rule.code), this.complete);
       const search = this.jobs.of(networkId, active.versionId);
-      if (search) known.push(rule);
+      if (search === 'done' || search?.searchedFrom) known.push(rule);
       if (search !== 'done') searches.push(search ?? this.begin(active));
       return rule;
     });

@@ -2,8 +2,9 @@ import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { type SiteRecord } from '#shared/contract/site-record';
-import { LIVE_CROWD_LIMIT } from '../../backend/coincidences/active-rule';
+import { activeRules, LIVE_CROWD_LIMIT } from '../../backend/coincidences/active-rule';
 import { CoincidenceSearch } from '../../backend/coincidences/coincidence-search';
+import { LogSearches } from '../../backend/coincidences/log-search';
 import { reconcileFiles } from '../../backend/command/reconcile-command';
 import { type Db } from '../../backend/db';
 import { root } from '../../scripts/lib.mjs';
@@ -34,12 +35,12 @@ async function batchTables(): Promise<{ coincidences: readonly Row[]; pairs: rea
 }
 
 /** Ingest and search over a database of its own, as the writer thread has them. */
-function atWork(): { at: IngestAtWork; search: CoincidenceSearch } {
+function atWork({ isTold = true } = {}): { at: IngestAtWork; search: CoincidenceSearch } {
   const file = JSON.parse(readFileSync(join(FOLDER, 'network.json'), 'utf8')) as RuleFile;
   const later: { search?: CoincidenceSearch } = {};
   const at = newIngest(file, {
     onStored: (stored) => {
-      later.search!.onStored(stored);
+      if (isTold) later.search!.onStored(stored);
     },
     onInForce: (network) => {
       later.search!.onInForce(network);
@@ -59,7 +60,7 @@ function atWork(): { at: IngestAtWork; search: CoincidenceSearch } {
   });
   const search = new CoincidenceSearch({ db: at.db, nowMs: () => 0, networkOf: (id) => at.ingest.network(id) });
   later.search = search;
-  search.start(at.network.networkId);
+  if (isTold) search.start(at.network.networkId);
   return { at, search };
 }
 
@@ -129,6 +130,20 @@ describe('the coincidences of the records of an example', () => {
         ]),
       );
     }
+    at.close();
+  });
+
+  it('are found by steps, and not before a start ends, when the process ended before it had searched any of them', async () => {
+    const { at } = atWork({ isTold: false });
+    for (const [site, one] of records().filter(([site]) => at.network.siteIds.has(site))) await at.send(site, one);
+    // As after a kill between the beginning of the search of the log and the note of what has been searched.
+    for (const active of activeRules(at.db, at.network.networkId)) new LogSearches(at.db, () => 0).begin(at.network.networkId, active, 0);
+    const search = new CoincidenceSearch({ db: at.db, nowMs: () => 0, networkOf: (id) => at.ingest.network(id) });
+    search.start(at.network.networkId);
+    expect(setsIn(at.db)).toEqual([]);
+    while (search.step());
+    const { coincidences } = await batchTables();
+    expect(setsIn(at.db).map(({ name }) => name)).toEqual(coincidences.map((row) => row['set']).toSorted());
     at.close();
   });
 });
