@@ -1,6 +1,6 @@
 // Preloaded into a server (NODE_OPTIONS=--import), writes how much memory each of its two threads holds at most: heap and what hangs on it
 // outside (buffers), each time after a collection, so that garbage does not count. To the files held-http and held-writer in the folder PLANTED.
-import { writeFileSync } from 'node:fs';
+import { renameSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import process from 'node:process';
 import { setInterval } from 'node:timers';
@@ -19,6 +19,8 @@ if (thread) {
     collect();
     const { heapUsed, external } = process.memoryUsage(); // external counts array buffers too
     most = Math.max(most, heapUsed + external);
-    writeFileSync(join(process.env.PLANTED, `held-${thread}`), String(most));
+    const file = join(process.env.PLANTED, `held-${thread}`);
+    writeFileSync(`${file}.new`, String(most));
+    renameSync(`${file}.new`, file); // whoever reads it finds it whole
   }, LOOK_MS).unref();
 }

@@ -1,6 +1,6 @@
 // Preloaded into a server (NODE_OPTIONS=--import), writes how much memory the process has (RSS, which counts both threads), the most so far,
 // and how late the event loop of its HTTP thread is, to the file MEASURED.
-import { writeFileSync } from 'node:fs';
+import { renameSync, writeFileSync } from 'node:fs';
 import { monitorEventLoopDelay } from 'node:perf_hooks';
 import process from 'node:process';
 import { setInterval } from 'node:timers';
@@ -17,6 +17,8 @@ if (isMainThread) {
     const rssBytes = process.memoryUsage.rss();
     mostRssBytes = Math.max(mostRssBytes, rssBytes);
     const lateP99Ms = lag.percentile(99) / 1e6 - RESOLUTION_MS;
-    writeFileSync(process.env.MEASURED, JSON.stringify({ rssBytes, mostRssBytes, lateP99Ms }));
+    const { MEASURED } = process.env;
+    writeFileSync(`${MEASURED}.new`, JSON.stringify({ rssBytes, mostRssBytes, lateP99Ms }));
+    renameSync(`${MEASURED}.new`, MEASURED); // whoever reads it finds it whole
   }, LOOK_MS).unref();
 }
