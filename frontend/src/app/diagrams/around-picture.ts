@@ -2,7 +2,7 @@ import { type Instant } from '#shared/time/instant';
 import { type Scale as TimeScale } from '#shared/time/scales';
 import { linesOfLabels } from './labels';
 import { type Box, type Scale } from './one-scale';
-import { pathThrough, type Picture, type PictureLine, type PictureWord, round, widthOfWords } from './picture';
+import { lightConeAt, type Picture, type PictureLine, type PictureWord, round, widthOfWords } from './picture';
 import { plainTicks, timeTicks } from './time-ticks';
 
 /** A site in a picture: where it stands across, in the unit of the axis. */
@@ -25,7 +25,6 @@ export interface AroundGiven {
 
 const LABEL_PX = 11.5;
 const LABEL_LINE_PX = 14;
-const FAR_MS = 1e6; // beyond any box
 const LEAST_WORDS_PX = 70; // a cone that is lower has no words
 
 /** The picture around an event: its light cone, exact against every mark, and the worldlines of the sites at their light-time from it. */
@@ -35,13 +34,8 @@ export function aroundPicture({ box, x, y, origin, scale, site, sites }: AroundG
   const [x0, y0] = [x(0), y(0)];
   const time = timeTicks(y, origin, scale);
   const lines: PictureLine[] = [];
-  const cone = (sign: 1 | -1): string =>
-    `${pathThrough([
-      [x0, y0],
-      [x(FAR_MS), y(sign * FAR_MS)],
-      [x0, y(sign * FAR_MS)],
-    ])}Z`;
-  lines.push({ kind: 'cone', path: cone(1) }, { kind: 'cone', path: cone(-1) });
+  const cone = lightConeAt(x0, y0, box);
+  for (const path of cone.rightCones) lines.push({ kind: 'cone', path });
   const fine = (time.ticks[0]?.at ?? 0) - (time.ticks[1]?.at ?? 0);
   for (const { at } of time.ticks) {
     lines.push({ kind: 'grid', path: `M${box.left} ${round(at)}H${right}` });
@@ -50,12 +44,7 @@ export function aroundPicture({ box, x, y, origin, scale, site, sites }: AroundG
   const shown = sites.filter(({ xMs }) => x(xMs) >= box.left - 1 && x(xMs) <= right + 1);
   for (const { code, xMs } of shown)
     lines.push({ kind: code === site ? 'worldline' : 'worldline-other', path: `M${round(x(xMs))} ${box.top - 4}V${bottom}` });
-  const light = (sign: 1 | -1): string =>
-    pathThrough([
-      [x0, y0],
-      [x(FAR_MS), y(sign * FAR_MS)],
-    ]);
-  lines.push({ kind: 'light', path: light(1) }, { kind: 'light', path: light(-1) });
+  for (const path of cone.rightRays) lines.push({ kind: 'light', path });
   return {
     box,
     lines,

@@ -1,7 +1,7 @@
 import { type Speed } from '#shared/relativity/speed';
 import { placeBeside } from './labels';
 import { type Box, type Scale } from './one-scale';
-import { pathThrough, type Picture, type PictureLine, type PictureWord, round, widthOfWords } from './picture';
+import { lightConeAt, pathThrough, type Picture, type PictureLine, type PictureWord, round, widthOfWords } from './picture';
 import { type Plane } from './plane';
 import { plainTicks } from './time-ticks';
 
@@ -26,7 +26,6 @@ export interface BaselineGiven {
   readonly shown: Plane;
 }
 
-const FAR_MS = 1e5;
 const TRAIL_STEPS = 16;
 
 /**
@@ -41,10 +40,8 @@ export function baselinePicture(given: BaselineGiven): Picture {
   const bottom = box.top + box.height;
   const isMoving = gammaBeta !== 0;
   const through = (points: readonly (readonly [xMs: number, tMs: number])[]): string => pathThrough(points.map(([a, b]) => [x(a), y(b)]));
-  const lines: PictureLine[] = [
-    { kind: 'cone', path: `${through([[0, 0], [FAR_MS, FAR_MS], [-FAR_MS, FAR_MS]])}Z` }, // prettier-ignore
-    { kind: 'cone', path: `${through([[0, 0], [FAR_MS, -FAR_MS], [-FAR_MS, -FAR_MS]])}Z` }, // prettier-ignore
-  ];
+  const cone = lightConeAt(x(0), y(0), box);
+  const lines: PictureLine[] = cone.cones.map((path) => ({ kind: 'cone', path }));
   const yTicks = plainTicks(y, 76, isMoving);
   for (const { at, text } of yTicks) lines.push({ kind: text === '0' ? 'zero' : 'grid', path: `M${box.left} ${round(at)}H${right}` });
   const words: PictureWord[] = [];
@@ -80,7 +77,7 @@ export function baselinePicture(given: BaselineGiven): Picture {
     else if (x(across(xMs, bottomMs)) >= box.left && x(across(xMs, bottomMs)) <= right)
       words.push({ kind: 'site', text: code, x: x(across(xMs, bottomMs)) + 6, y: bottom - 8 });
   }
-  for (const sign of [1, -1]) lines.push({ kind: 'light', path: through([[-FAR_MS, -sign * FAR_MS], [FAR_MS, sign * FAR_MS]]) }); // prettier-ignore
+  for (const path of cone.lines) lines.push({ kind: 'light', path });
   const marks = given.labels.map(({ row }) => ({ x: x(given.shown.xMs[row] ?? 0), y: y(given.shown.tMs[row] ?? 0) }));
   const light = freeOnLight({ x: x(0), y: y(0) }, Math.min(right - x(0), y(0) - box.top), marks);
   if (light) words.push({ kind: 'light', text: 'light', ...light, turnDeg: -45 });

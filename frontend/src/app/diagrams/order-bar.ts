@@ -116,6 +116,9 @@ const LEAST_APART_PX = 24;
       font-size: 12px;
       font-weight: 620;
     }
+    .bound.undecided ~ .turning {
+      fill: var(--undecided);
+    }
     .scale {
       stroke: var(--ink-3);
     }

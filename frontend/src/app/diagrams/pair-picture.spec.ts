@@ -10,7 +10,8 @@ function given(wanted: Partial<PairPictureGiven> & { readonly xMs: number; reado
     ...pairScales(BOX, wanted.xMs, wanted.tMs, errorMs),
     unit: { name: 'ms', ms: 1 },
     class: 'spacelike',
-    names: ['AAA', 'BBB'],
+    names: ['AAA:1', 'BBB:2'],
+    sites: ['AAA', 'BBB'],
     errorMs,
     errorText: '\u00b1 1 ms',
     turningC: undefined,
@@ -41,7 +42,7 @@ describe('the picture of a pair', () => {
         expect(py).toBeGreaterThan(BOX.top);
         expect(py).toBeLessThan(BOX.top + BOX.height);
       }
-      expect((x(1) - x(0)) / (y(0) - y(1))).toBeCloseTo(1, 9);
+      expect((x(1) - x(0)) / (y(0) - y(1))).toBeCloseTo(1, 7); // at an hour in the box a ms is some 1e-4 px of 470
     });
 
   it('leads the turning line through both events', () => {

@@ -17,8 +17,9 @@ export interface PairPictureGiven {
   /** In which both axes are printed, and how many ms it has. */
   readonly unit: { readonly name: string; readonly ms: number };
   readonly class: IntervalClass;
-  /** What the earlier event and the later one are called. */
+  /** What the earlier event and the later one are called, and their sites. */
   readonly names: readonly [string, string];
+  readonly sites: readonly [string, string];
   /** From the earlier event to the later, light-ms and ms, in the geocentric frame. */
   readonly xMs: number;
   readonly tMs: number;
@@ -81,7 +82,9 @@ export function pairPicture(given: PairPictureGiven): Picture {
     ...[1, -1].map((sign): PictureLine => ({ kind: 'light', path: pathThrough([[x(0) - CONE_PX, y(0) + sign * CONE_PX], [x(0) + CONE_PX, y(0) - sign * CONE_PX]]) })), // prettier-ignore
     ...[0, xMs].map((at): PictureLine => ({ kind: 'worldline-other', path: `M${round(x(at))} ${box.top}V${bottom}` })),
     ...given.frames.map(({ alongC }): PictureLine => ({ kind: alongC === 0 ? 'zero' : 'instant', path: through(simultaneous(alongC, x)) })),
-    ...(turningC === undefined ? [] : [{ kind: 'turning', path: through(simultaneous(turningC, x)) } satisfies PictureLine]),
+    ...(turningC === undefined
+      ? []
+      : [{ kind: given.class === 'undecided' ? kind : 'turning', path: through(simultaneous(turningC, x)) } satisfies PictureLine]),
     { kind: given.class === 'spacelike' ? 'interval' : kind, path: through([[0, 0], [xMs, tMs]]) }, // prettier-ignore
   ];
   const errorPx = Math.abs(y(0) - y(errorMs));
@@ -125,14 +128,17 @@ function curveOf({ xMs, tMs, x, y }: PairPictureGiven): [number, number][] {
   });
 }
 
-function siteWords({ box, x, y, names, xMs, tMs, errorText, class: kind }: PairPictureGiven): PictureWord[] {
+function siteWords({ box, x, y, names, sites, xMs, tMs, errorText, class: kind }: PairPictureGiven): PictureWord[] {
   const [right, bottom] = [box.left + box.width, box.top + box.height];
+  const isRoomy = x(xMs) + 12 + widthOfWords(sites[1], 12) < right;
   const isOneLine = x(xMs) - x(0) < ONE_LINE_PX;
   const words: PictureWord[] = isOneLine
-    ? [{ kind: 'site', text: names[0] === names[1] ? names[0] : names.join(', '), x: x(0) - 8, y: box.top + 18, anchor: 'end' }]
+    ? [{ kind: 'site', text: sites[0] === sites[1] ? sites[0] : sites.join(', '), x: x(0) - 8, y: box.top + 18, anchor: 'end' }]
     : [
-        { kind: 'site', text: names[0], x: x(0) - 8, y: box.top + 18, anchor: 'end' },
-        { kind: 'site', text: names[1], x: x(xMs) - 8, y: bottom - 9, anchor: 'end' },
+        { kind: 'site', text: sites[0], x: x(0) - 8, y: box.top + 18, anchor: 'end' },
+        isRoomy
+          ? { kind: 'site', text: sites[1], x: x(xMs) + 8, y: bottom - 9 }
+          : { kind: 'site', text: sites[1], x: x(xMs) - 8, y: bottom - 9, anchor: 'end' },
       ];
   if (y(0) - box.top > 80 && right - x(0) > 150)
     words.push({ kind: 'cone', text: `${names[0]} can be the cause`, x: x(0) + 10, y: box.top + 42 });
@@ -175,7 +181,7 @@ function sameWords({
   const text = 'same s\u00b2';
   const style = kind === 'spacelike' ? 'spacelike' : kind === 'timelike' ? 'cone' : 'note';
   if (square > 0) {
-    const at = box.top + box.height - 12;
+    const at = y(0) + 0.4 * (box.top + box.height - y(0));
     const across = x(Math.hypot(Math.sqrt(square), y.invert(at)));
     return across - 60 > box.left ? [{ kind: style, text, x: across - 8, y: at, anchor: 'end' }] : [];
   }
@@ -185,7 +191,7 @@ function sameWords({
 }
 
 /** The frames' speeds where their lines leave the box; of lines that leave it at one place the slowest frame's alone. */
-function edgeWords({ box, x, y, frames, turningC }: PairPictureGiven): PictureWord[] {
+function edgeWords({ box, x, y, frames, turningC, class: kind }: PairPictureGiven): PictureWord[] {
   const right = box.left + box.width;
   const [, rightMs = 0] = x.domain();
   const [topMs = 0, bottomMs = 0] = y.domain();
@@ -199,7 +205,7 @@ function edgeWords({ box, x, y, frames, turningC }: PairPictureGiven): PictureWo
   const leavesRight = ({ alongC }: { readonly alongC: number }): boolean => alongC * rightMs <= topMs && alongC * rightMs >= bottomMs;
   const edge = spread(kept.filter(leavesRight).map((one) => ({ ...one, at: atOf(one.alongC) })));
   const words = edge.map(({ text, isTurning, at }): PictureWord => ({
-    kind: isTurning ? 'edge-turning' : 'edge',
+    kind: !isTurning ? 'edge' : kind === 'undecided' ? 'note' : 'edge-turning',
     text,
     x: right + 8,
     y: at + 4,
@@ -213,7 +219,7 @@ function edgeWords({ box, x, y, frames, turningC }: PairPictureGiven): PictureWo
       const atX = (share * endMs) / alongC;
       const aside = isBelow ? 14 : -6;
       return {
-        kind: isTurning ? 'spacelike' : 'instant',
+        kind: !isTurning ? 'instant' : kind === 'undecided' ? 'note' : 'spacelike',
         text,
         x: x(atX),
         y: y(share * endMs) + aside,

@@ -80,5 +80,22 @@ export const pathThrough = (points: readonly (readonly [number, number])[]): str
 const FAR_PX = 20_000;
 export const round = (px: number): number => Math.round(Math.min(FAR_PX, Math.max(-FAR_PX, px)) * 100) / 100;
 
+/**
+ * The light cone of a point of the screen, over all of a box: never cut at some distance, since a cut end would turn the line.
+ *
+ * @returns the cone above and the one below, their parts to the right alone, and the light that goes up and down to the right, and through both
+ */
+export function lightConeAt(x: number, y: number, { left, top, width, height }: Box) {
+  const reach = Math.max(Math.abs(x - left), Math.abs(left + width - x), Math.abs(y - top), Math.abs(top + height - y)) + 1;
+  const from = `M${x} ${y}`;
+  const to = (across: 1 | -1, up: 1 | -1): string => `${x + across * reach} ${y - up * reach}`;
+  return {
+    cones: ([1, -1] as const).map((up) => `${from}L${to(1, up)}L${to(-1, up)}Z`),
+    rightCones: ([1, -1] as const).map((up) => `${from}L${to(1, up)}H${x}Z`),
+    rightRays: ([1, -1] as const).map((up) => `${from}L${to(1, up)}`),
+    lines: ([1, -1] as const).map((up) => `M${to(-1, up === 1 ? -1 : 1)}L${to(1, up)}`),
+  };
+}
+
 /** Width of words, nearly, px: for placing labels. */
 export const widthOfWords = (text: string, sizePx: number): number => text.length * sizePx * 0.62;
