@@ -1,7 +1,6 @@
 import { eq } from 'drizzle-orm';
 import { CLOCK_ROUTES } from '#shared/contract/clock-routes';
 import { USUAL_ITEMS } from '#shared/contract/page';
-import { rolesAt } from '#shared/contract/roles';
 import { type TimeGiven } from '#shared/contract/setup-leaves';
 import { clocks } from '#schema/schema';
 import { actorOf } from '../accounts/actor';
@@ -24,15 +23,12 @@ export const clockRoutes = (): Served[] => [
     handle: (asked, { db }) => {
       const { networkId } = asked.params;
       const { cursor = 0, limit = USUAL_ITEMS } = asked.query;
-      const { held } = personOf(asked);
-      const isSeen = (siteIds: readonly number[]): boolean =>
-        [0, ...siteIds].some((siteId) => rolesAt(held, { kind: 'site', networkId, siteId }).length > 0);
-      return pageFrom(clocksAfter(db, networkId, cursor, limit + 1, isSeen), limit, ({ id }) => id);
+      return pageFrom(clocksAfter(db, networkId, cursor, limit + 1, personOf(asked)), limit, ({ id }) => id);
     },
   }),
   serve(CLOCK_ROUTES.readClock, {
     placeOf: ({ params: { clockId }, caller }, { db }) => placeOfClock(db, clockId, caller),
-    handle: ({ params: { clockId } }, { db }) => clockOfId(db, clockId),
+    handle: (asked, { db }) => clockOfId(db, asked.params.clockId, personOf(asked).held),
   }),
   serve(CLOCK_ROUTES.listSegments, {
     placeOf: ({ params: { clockId }, caller }, { db }) => placeOfClock(db, clockId, caller),
@@ -52,7 +48,7 @@ export const clockRoutes = (): Served[] => [
         const id = makeClock(making, { networkId, code, name });
         for (const [at, values] of stated.entries()) addSegment(making, id, values, `segments[${at}].`);
         const effects = stated.length > 0 ? [] : ['The clock has no record yet: readings by it are set aside.'];
-        return { ...clockOfId(tx, id), warnings: times.warnings, effects };
+        return { ...clockOfId(tx, id, personOf(asked).held), warnings: times.warnings, effects };
       });
     },
   }),
@@ -71,7 +67,7 @@ export const clockRoutes = (): Served[] => [
           .run();
         note({ action: 'clock:changed', subjectKind: 'clock', subjectId: clockId, networkId });
         noteSetup(tx, networkId, { what: 'clock', id: clockId }, ground.nowMs());
-        return clockOfId(tx, clockId);
+        return clockOfId(tx, clockId, personOf(asked).held);
       }),
   }),
   serve(CLOCK_ROUTES.addSegment, {
@@ -106,7 +102,7 @@ function changeRecord(asked: RecordAsked, ground: Ground, times: TimeReader, wor
   return change(ground, actor, (tx, note) => {
     if (clockRow(tx, clockId).version !== asked.body.version) throw stale();
     const effects = work({ tx, note, actor, nowMs: ground.nowMs() }, clockId);
-    return { ...clockOfId(tx, clockId), warnings: times.warnings, effects };
+    return { ...clockOfId(tx, clockId, personOf(asked).held), warnings: times.warnings, effects };
   });
 }
 

@@ -1,9 +1,11 @@
 import { and, asc, count, desc, eq, gt, inArray, isNull, lt } from 'drizzle-orm';
 import { type Clock, type ClockSegmentShown } from '#shared/contract/clock-routes';
+import { type HeldRole } from '#shared/contract/roles';
 import { clocks, clockSegments } from '#schema/schema';
+import { ownSites } from '../accounts/sites-seen';
 import { absent } from '../api/refusal';
 import { type Db } from '../db';
-import { sitesByClock } from './place-of-clock';
+import { seesClock, sitesByClock, type Looker } from './place-of-clock';
 
 type Rows = Pick<Db, 'select' | 'selectDistinct'>;
 type ClockRow = typeof clocks.$inferSelect;
@@ -37,17 +39,18 @@ export const statementsOf = (db: Rows, clockId: number, beforeId: number | undef
     .all()
     .map(segmentOf);
 
-/** A clock with its record in force. */
-export function clockOfId(db: Rows, clockId: number): Clock {
+/** A clock with its record in force, as someone sees it: an operator is not told which sites of others keep time by it. */
+export function clockOfId(db: Rows, clockId: number, held: readonly HeldRole[]): Clock {
   const record = recordInForce(db, clockId);
+  const row = clockRow(db, clockId);
   return {
-    ...briefOf(clockRow(db, clockId), sitesByClock(db, clockId), record.length),
+    ...briefOf(row, shownTo(ownSites(held, row.networkId), sitesByClock(db, clockId)), record.length),
     record: record.map((segment, at) => ({ ...segment, until: record[at + 1]?.from ?? null })),
   };
 }
 
-/** The clocks of a network from behind an id on, of which `isSeen` says whether they may be seen, by the sites that keep time by them. */
-export function clocksAfter(db: Rows, networkId: number, afterId: number, most: number, isSeen: (siteIds: readonly number[]) => boolean) {
+/** The clocks of a network that someone sees, from behind an id on. */
+export function clocksAfter(db: Rows, networkId: number, afterId: number, most: number, looker: Looker) {
   const rows = db
     .select()
     .from(clocks)
@@ -55,7 +58,7 @@ export function clocksAfter(db: Rows, networkId: number, afterId: number, most: 
     .orderBy(asc(clocks.id))
     .all()
     .map((row) => ({ row, siteIds: sitesByClock(db, row.id) }))
-    .filter(({ siteIds }) => isSeen(siteIds))
+    .filter(({ row, siteIds }) => seesClock(looker, row, siteIds))
     .slice(0, most);
   const ids = rows.map(({ row }) => row.id);
   const counts = db
@@ -64,8 +67,14 @@ export function clocksAfter(db: Rows, networkId: number, afterId: number, most: 
     .where(and(inArray(clockSegments.clockId, ids), isNull(clockSegments.supersededAt)))
     .groupBy(clockSegments.clockId)
     .all();
-  return rows.map(({ row, siteIds }) => briefOf(row, siteIds, counts.find(({ clockId }) => clockId === row.id)?.segments ?? 0));
+  const own = ownSites(looker.held, networkId);
+  return rows.map(({ row, siteIds }) =>
+    briefOf(row, shownTo(own, siteIds), counts.find(({ clockId }) => clockId === row.id)?.segments ?? 0),
+  );
 }
+
+const shownTo = (own: readonly number[] | undefined, siteIds: readonly number[]): number[] =>
+  siteIds.filter((siteId) => own?.includes(siteId) ?? true);
 
 const briefOf = ({ createdBy: _by, ...row }: ClockRow, siteIds: number[], segmentCount: number) => ({ ...row, siteIds, segmentCount });
 

@@ -74,10 +74,10 @@ export const siteRoutes = (): Served[] => [
       const state = { ...values, from: times.readOrNull(from, 'from') };
       return change(ground, actor, (tx, note) => {
         const { networkId } = unchanged(tx, siteId, version);
-        if (state.clockId !== null && !mayKeepTimeBy(tx, personOf(asked).held, networkId, state.clockId))
+        if (state.clockId !== null && !mayKeepTimeBy(tx, personOf(asked), networkId, state.clockId))
           throw unusable({
             where: 'clockId',
-            text: `is ${state.clockId}; it must be a clock that one of your sites keeps time by, or that no site does: a coordinator shares others`,
+            text: `is ${state.clockId}; it must be a clock that one of your sites keeps time by, or one that you made and no site keeps time by: a coordinator shares others`,
           });
         const warnings = addSiteState({ tx, note, actor, nowMs: ground.nowMs() }, siteId, state, replaces);
         return { ...siteOfId(tx, siteId, presentOf(tx, ground)), warnings: [...times.warnings, ...warnings] };

@@ -1,10 +1,11 @@
 import { and, asc, desc, eq, gt, inArray, isNull } from 'drizzle-orm';
-import { rolesAt, type HeldRole } from '#shared/contract/roles';
+import { type HeldRole } from '#shared/contract/roles';
 import { type Site, type SitePosition, type SiteStream, type SiteVersion } from '#shared/contract/site-routes';
 import { itrsToGeodetic } from '#shared/earth/ellipsoid';
 import { compareInstants, type Instant } from '#shared/time/instant';
 import { clocks, siteStreams, sites, siteVersions } from '#schema/schema';
 import { EVER_TAI_S } from '#schema/forms';
+import { ownSites } from '../accounts/sites-seen';
 import { absent } from '../api/refusal';
 import { type Db } from '../db';
 import { utcText } from '../ground';
@@ -45,12 +46,13 @@ export const statesInForce = (db: Rows, siteId: number): SiteVersion[] =>
     .all()
     .map(versionOf);
 
-/** The sites of a network as someone sees them, from behind an id on: an operator has no details of others'. */
+/** The sites of a network that someone sees, from behind an id on: an operator their own. */
 export function sitesAfter(db: Rows, networkId: number, afterId: number, most: number, held: readonly HeldRole[], present: Instant) {
+  const own = ownSites(held, networkId);
   const rows = db
     .select()
     .from(sites)
-    .where(and(eq(sites.networkId, networkId), gt(sites.id, afterId)))
+    .where(and(eq(sites.networkId, networkId), gt(sites.id, afterId), own && inArray(sites.id, [...own])))
     .orderBy(asc(sites.id))
     .limit(most)
     .all();
@@ -69,7 +71,6 @@ export function sitesAfter(db: Rows, networkId: number, afterId: number, most: n
         own.map((row) => versionOf(row.version)),
         present,
       ) ?? null;
-    const seen = rolesAt(held, { kind: 'site', networkId, siteId: id }).length > 0;
     const clockCode = own.find((row) => row.version.id === now?.id)?.clockCode ?? null;
     const stream = streamOf(streams.find(({ siteId }) => siteId === id));
     return {
@@ -79,7 +80,7 @@ export function sitesAfter(db: Rows, networkId: number, afterId: number, most: n
       name,
       closedAt,
       position: now?.position ?? null,
-      details: seen ? { now, clockCode, stream, version } : null,
+      details: { now, clockCode, stream, version },
     };
   });
 }

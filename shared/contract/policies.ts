@@ -62,13 +62,13 @@ export const POLICIES = {
   'run:list': at(...ROLES),
   'run:make': at('coordinator'),
   'run:change': at('coordinator'),
-  'site:list': at(...ROLES), // of other operators' sites an operator sees where they are
+  'site:list': at(...ROLES), // an operator has their own
   'site:read': at(...ROLES),
   'site:make': at('coordinator'),
   'site:change': at('coordinator', 'operator'),
   'site:add-version': at('coordinator', 'operator'),
   'site:close': at('coordinator'),
-  'clock:list': at(...ROLES), // an operator has the clocks of their sites
+  'clock:list': at(...ROLES), // an operator has the clocks of their sites, and those that they made for one
   'clock:read': at(...ROLES),
   'clock:read-history': at(...ROLES),
   'clock:make': at('coordinator', 'operator'),

@@ -90,7 +90,7 @@ export const siteStream = z.strictObject({
   completeUpTo: instant().nullable(),
 });
 
-/** What everyone in the network sees of a site. */
+/** A site as lists have it. */
 const siteBrief = z.strictObject({
   id: z.int(),
   networkId: z.int(),
@@ -99,10 +99,7 @@ const siteBrief = z.strictObject({
   closedAt: utc().nullable(),
   /** Where it stands now; null for a platform. */
   position: sitePosition.nullable(),
-  /** Null for an operator of other sites. */
-  details: z
-    .strictObject({ now: siteVersion.nullable(), clockCode: z.string().nullable(), stream: siteStream, version: z.int() })
-    .nullable(),
+  details: z.strictObject({ now: siteVersion.nullable(), clockCode: z.string().nullable(), stream: siteStream, version: z.int() }),
 });
 
 /** A site with every state that it ever had, latest stated first. */
@@ -127,7 +124,7 @@ const limits = {
   setAsidesPerHour: wholeNumber(1, MOST_SET_ASIDES).nullable().optional(),
 };
 
-/** An operator has the details of their own sites alone, and for them every other looks as if it were not where more than the list is asked. */
+/** An operator sees their own sites alone: every other looks as if it were not. */
 export const SITE_ROUTES = {
   listSites: route('GET', '/networks/:networkId/sites', {
     policy: 'site:list',
