@@ -27,7 +27,7 @@ export const peopleRoutes = (): Served[] => [
   }),
   serve(PEOPLE_ROUTES.readPerson, { handle: ({ params: { personId } }, { db, nowMs }) => personOfId(db, personId, nowMs()) }),
   serve(PEOPLE_ROUTES.invite, {
-    placeOf: ({ body: { role } }) => placeOfRole(role.networkId),
+    placeIn: ({ body: { role } }) => placeOfRole(role.networkId),
     handle: (asked, ground) => {
       const { db, nowMs, origin, post } = ground;
       const actor = actorOf(asked);
@@ -55,7 +55,7 @@ export const peopleRoutes = (): Served[] => [
   serve(PEOPLE_ROUTES.disablePerson, { placeOf: () => DEPLOYMENT, handle: (asked, ground) => setDisabled(asked, ground, true) }),
   serve(PEOPLE_ROUTES.enablePerson, { placeOf: () => DEPLOYMENT, handle: (asked, ground) => setDisabled(asked, ground, false) }),
   serve(PEOPLE_ROUTES.giveRole, {
-    placeOf: ({ body: { networkId } }) => placeOfRole(networkId),
+    placeIn: ({ body: { networkId } }) => placeOfRole(networkId),
     handle: (asked, ground) =>
       change(ground, actorOf(asked), (tx, note) => {
         const { id: personId } = rowOf(tx, asked.params.personId);

@@ -19,10 +19,18 @@ export interface Asked<Params, Query, Body> {
   readonly exchange: Exchange;
 }
 
+/** What is known of a request by its path and who sent it. */
+export type Addressed<Params> = Pick<Asked<Params, unknown, unknown>, 'params' | 'caller'>;
+
 /** What answers a route. */
 interface Service<Params, Query, Body, Answer> {
-  /** Where what is asked for lies; absent when there is no such thing. Wanted by policies of a place, and by no other. */
-  readonly placeOf?: (asked: Asked<Params, Query, Body>, ground: Ground) => Place | undefined;
+  /**
+   * Where what is asked for lies, by the path alone; absent when there is no such thing. Policies of a place want this or `placeIn`, and no
+   * other has either.
+   */
+  readonly placeOf?: (asked: Addressed<Params>, ground: Ground) => Place | undefined;
+  /** The same where only the query or the body tells: those must then be read, and are, from whoever may do this somewhere. */
+  readonly placeIn?: (asked: Asked<Params, Query, Body>, ground: Ground) => Place | undefined;
   readonly handle: (asked: Asked<Params, Query, Body>, ground: Ground) => Answer | Promise<Answer>;
 }
 
@@ -30,46 +38,48 @@ interface Service<Params, Query, Body, Answer> {
 export interface Served {
   readonly route: Route;
   readonly hasPlace: boolean;
-  /** The first steps, which need no body: who it is, whether they could do this at all, and whether it comes from a page of ours. */
-  readonly admit: (exchange: Exchange, ground: Ground) => Caller;
+  /** The first steps, which need no body: who it is, whether it comes from a page of ours, and whether they may do this there. */
+  readonly admit: (exchange: Exchange, ground: Ground) => void;
   /** The whole of them. */
   readonly answer: (exchange: Exchange, ground: Ground) => Promise<unknown>;
 }
 
 /**
  * Joins a route and what answers it. The order of a request: who it is (401), whether they could do this at all (403), whether it comes from
- * a page of ours and is JSON (403, 415), its size and form (413, 400), its fields (400), whether they may do it there (404, 403), and only
- * then the handler, whose answer must be what the route declares.
+ * a page of ours and is JSON (403, 415), whether they may do it there (404, 403), its size and form (413, 400), its fields (400), and only
+ * then the handler, whose answer must be what the route declares. Where only the fields say which place it is, the place comes after them.
  *
  * @param route as the contract declares it
  * @param service its handler, and where its things lie
  */
 export function serve<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A extends z.ZodType>(
   route: Route<P, Q, B, A>,
-  { placeOf, handle }: Service<z.output<P>, z.output<Q>, z.output<B>, z.input<A>>,
+  { placeOf, placeIn, handle }: Service<z.output<P>, z.output<Q>, z.output<B>, z.input<A>>,
 ): Served {
-  const admit = (exchange: Exchange, ground: Ground): Caller => {
+  const enter = (exchange: Exchange, ground: Ground): Addressed<z.output<P>> => {
     const policy = policyFor(route);
     const caller = policy.who === 'anyone' ? NOBODY : callerOf(exchange, ground); // health must answer while the database does not
-    refuseStrangers(policy, caller);
+    refuseStrangers(policy, caller, placeIn !== undefined);
     if (route.method !== 'GET') refuseForeign(exchange, ground.origin, ground.production);
-    return caller;
-  };
-  const answer = async (exchange: Exchange, ground: Ground): Promise<unknown> => {
-    const policy = policyFor(route);
-    const caller = admit(exchange, ground);
-    const given = route.method === 'GET' ? {} : await readBody(exchange, route.mostBodyBytes);
     const params = route.params.safeParse(exchange.params);
     if (!params.success) throw absent();
-    const asked = { params: params.data, query: checked(route.query, exchange.query), body: checked(route.body, given), caller, exchange };
-    if (policy.who === 'roles' && policy.in === 'place') {
-      const place = placeOf?.(asked, ground);
-      if (!place) throw absent();
-      refuseBy(judge(policy, caller, place));
-    }
+    const addressed = { params: params.data, caller };
+    if (placeOf) refuseElsewhere(policy, caller, placeOf(addressed, ground));
+    return addressed;
+  };
+  const answer = async (exchange: Exchange, ground: Ground): Promise<unknown> => {
+    const addressed = enter(exchange, ground);
+    const given = route.method === 'GET' ? {} : await readBody(exchange, route.mostBodyBytes);
+    const asked = { ...addressed, query: checked(route.query, exchange.query), body: checked(route.body, given), exchange };
+    if (placeIn) refuseElsewhere(policyFor(route), asked.caller, placeIn(asked, ground));
     return route.answer.parse(await handle(asked, ground));
   };
-  return { route, hasPlace: placeOf !== undefined, admit, answer };
+  return {
+    route,
+    hasPlace: placeOf !== undefined || placeIn !== undefined,
+    admit: (exchange, ground) => void enter(exchange, ground),
+    answer,
+  };
 }
 
 function policyFor({ policy: name }: Route): Policy {
@@ -84,9 +94,18 @@ export function personOf({ caller }: { readonly caller: Caller }): PersonCalling
   return caller;
 }
 
-/** Whom a policy of a place lets in somewhere is known before the place is. */
-function refuseStrangers(policy: Policy, caller: Caller): void {
-  refuseBy(judge(policy.who === 'roles' && policy.in === 'place' ? { who: 'signed-in' } : policy, caller));
+/**
+ * Whoever could do this nowhere is refused before the place is known: where only the fields say it, before anything of them is read; where
+ * the path does, the place itself says in the next step whether it is to look absent.
+ */
+function refuseStrangers(policy: Policy, caller: Caller, placeInFields: boolean): void {
+  if (policy.who !== 'roles' || policy.in !== 'place') refuseBy(judge(policy, caller));
+  else refuseBy(judge(placeInFields ? { ...policy, in: 'anywhere' } : { who: 'signed-in' }, caller));
+}
+
+function refuseElsewhere(policy: Policy, caller: Caller, place: Place | undefined): void {
+  if (!place) throw absent();
+  refuseBy(judge(policy, caller, place));
 }
 
 function refuseBy(verdict: ReturnType<typeof judge>): void {

@@ -6,12 +6,13 @@ import { audit, people } from '#schema/schema';
 import { pageFrom } from '../api/page';
 import { serve, type Served } from '../api/serve';
 import { type Ground } from '../ground';
+import { placeOfNetwork } from '../networks/network-rows';
 import { checkTrail } from './check-trail';
 
 /** `GET /api/audit`: the trail, newest first; and whether it is what was written. */
 export const auditRoutes = (): Served[] => [
   serve(AUDIT_ROUTES.readAudit, {
-    placeOf: ({ query: { networkId } }) => (networkId === undefined ? DEPLOYMENT : { kind: 'network', networkId }),
+    placeIn: ({ query: { networkId } }, { db }) => (networkId === undefined ? DEPLOYMENT : placeOfNetwork(db, networkId)),
     handle: ({ query: { cursor, limit = USUAL_ITEMS, networkId, action, actorId, subjectKind, subjectId } }, { db }) => {
       const found = db
         .select({

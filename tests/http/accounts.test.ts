@@ -250,7 +250,7 @@ describe('a role', () => {
     expect((await give({ role: 'reviewer', networkId: 99999 }, world.as('coordinator'))).status).toBe(404);
     expect((await give({ role: 'reviewer', networkId: 99999 })).status).toBe(404);
     expect((await give({ role: 'coordinator' }, world.as('coordinator'))).status).toBe(403);
-    expect((await give({ role: 'reviewer', networkId: second }, world.as('analyst'))).status).toBe(404);
+    expect((await give({ role: 'reviewer', networkId: second }, world.as('analyst'))).status).toBe(403);
   });
 
   it.each<[string, object]>([

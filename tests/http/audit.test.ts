@@ -238,6 +238,7 @@ describe('the audit trail', () => {
     expect((await world.as('coordinator').get('/audit')).status).toBe(403);
     expect((await world.as('otherCoordinator').get(`/audit?networkId=${world.networks.first}`)).status).toBe(404);
     expect((await world.as('analyst').get(`/audit?networkId=${world.networks.first}`)).status).toBe(403);
+    for (const path of ['/audit?networkId=77', '/audit?networkId=77&limit=1']) expect((await chief.get(path)).status).toBe(404);
     for (const query of ['action=DROP', 'sort=hash', 'networkId=x', 'limit=500'])
       expect((await chief.get(`/audit?${query}`)).status, query).toBe(400);
   });

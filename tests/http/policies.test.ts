@@ -165,7 +165,7 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
   'GET /people/:personId': { in: COORDINATORS, path: () => `/people/${world.people.analyst}` },
   'POST /people': {
     in: ['chief', 'coordinator'],
-    hidden: ['otherCoordinator', 'nobodySpecial'],
+    hidden: ['otherCoordinator'],
     body: () => ({
       email: world.emailOf('analyst'),
       name: 'x',
@@ -181,7 +181,7 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
   'POST /people/:personId/enable': { in: ['chief'], path: () => `/people/${world.people.analyst}/enable`, body: () => ({ version: 999 }) },
   'POST /people/:personId/roles': {
     in: ['chief', 'coordinator'],
-    hidden: ['otherCoordinator', 'nobodySpecial'],
+    hidden: ['otherCoordinator'],
     path: () => `/people/${world.people.analyst}/roles`,
     body: () => ({ role: 'analyst', networkId: world.networks.first, siteId: null, expiresAt: null }),
   },

@@ -4,7 +4,7 @@ import { problem } from '#shared/contract/problem';
 import { startApp, type RunningApp } from '../support/app';
 import { Client, type Answer } from '../support/client';
 import { allRows } from '../support/rows';
-import { makeWorld, PASSWORD, type World } from '../support/world';
+import { makeWorld, PASSWORD, type Persona, type World } from '../support/world';
 
 const ORIGIN = 'https://skewline.example';
 
@@ -61,6 +61,33 @@ describe('14 a request that would change something', () => {
     const sent = { origin: ORIGIN, 'sec-fetch-site': 'same-origin' };
     expect((await patchMe({ headers: sent })).status).toBe(200);
     expect((await patchMe({ headers: { 'content-type': 'application/json; charset=UTF-8' } })).status).toBe(409);
+  });
+});
+
+describe('24 who may not act at a place', () => {
+  it('is told so before their body is read or a field of it is looked at', async () => {
+    const { alpha } = world.sites;
+    const bodies = ['{', '{"label":1}', '{"label":"x","more":1}', 'x'.repeat(200_000)];
+    const statuses = (who: Persona, path: string) =>
+      Promise.all(bodies.map(async (raw) => (await world.as(who).post(path, undefined, { raw })).status));
+    expect(await statuses('coordinator', `/sites/${alpha}/keys`)).toEqual([400, 400, 400, 413]);
+    expect(await statuses('analyst', `/sites/${alpha}/keys`)).toEqual([403, 403, 403, 403]);
+    expect(await statuses('otherOperator', `/sites/${alpha}/keys`)).toEqual([404, 404, 404, 404]);
+    expect(await statuses('operator', '/leap-second-tables')).toEqual([403, 403, 403, 403]);
+    for (const query of ['?limit=x', '?x=1']) {
+      expect((await world.as('otherOperator').get(`/sites/${alpha}/keys${query}`)).status).toBe(404);
+      expect((await world.as('analyst').get(`/sites/${alpha}/keys${query}`)).status).toBe(403);
+    }
+  });
+
+  it('and could not anywhere is told so where only the body says the place', async () => {
+    const statuses = (who: Persona, raw: string) =>
+      Promise.all(
+        ['/people', `/people/${world.people.analyst}/roles`].map(async (path) => (await world.as(who).post(path, {}, { raw })).status),
+      );
+    for (const who of ['nobodySpecial', 'analyst', 'operator'] as const)
+      expect(await statuses(who, 'x'.repeat(200_000)), who).toEqual([403, 403]);
+    expect(await statuses('coordinator', '{}')).toEqual([400, 400]);
   });
 });
 
