@@ -31,7 +31,7 @@ const WORDS: Readonly<Record<PairInFull['terms'][number]['name'], string>> = {
   'delay-b': 'Cable delay, {b}',
   'clock-a': 'Clock record, {a}',
   'clock-b': 'Clock record, {b}',
-  rate: 'Rate of the clock of both',
+  rate: 'Rate of their clock',
   'reference-a': 'Reference, {a}',
   'reference-b': 'Reference, {b}',
   distance: 'Site positions',

@@ -17,6 +17,8 @@ export interface FrameRow {
   readonly order: 'a' | 'b' | 'tie';
 }
 
+const nameOf = (frame: Frame | undefined): string | undefined => (frame?.name === '' ? undefined : frame?.name);
+
 export const GEOCENTRIC = 'geocentric';
 
 /** The order of a pair frame by frame: the geocentric one first, then those that are pinned, then the others. */
@@ -27,7 +29,7 @@ export function frameRows({ frames }: PairsOfSet, seen: PairSeen, known: readonl
     const order = seen.pair.orders[at];
     return {
       code,
-      name: code === GEOCENTRIC ? 'Geocentric' : frame?.name || code,
+      name: code === GEOCENTRIC ? 'Geocentric' : (nameOf(frame) ?? code),
       note: code === GEOCENTRIC ? 'non-rotating' : paceText(speedC),
       alongC: seen.toward ? dot(gammaBeta, seen.toward) / gamma : 0,
       dtNs: order?.dtNs ?? 0,

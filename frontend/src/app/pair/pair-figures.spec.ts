@@ -21,7 +21,7 @@ describe('figures of a pair', () => {
   it('give the interval in squares with its error to the digits that the error leaves', () => {
     // 14.207^2 - 36.354^2 = -1119.7745 by hand.
     const m2 = (14.207 ** 2 - 36.354 ** 2) * LIGHT_MS_M ** 2;
-    expect(intervalText(m2, 15 * LIGHT_MS_M ** 2)).toBe('\u22121119.8 \u00b1 15.0 light-ms\u00b2');
+    expect(intervalText(m2, 15 * LIGHT_MS_M ** 2)).toBe('\u22121120 \u00b1 15 light-ms\u00b2');
   });
 
   it('carry both lengths into the error of the interval', () => {

@@ -45,10 +45,7 @@ export function intervalText(intervalM2: number, sigmaM2: number): string {
   const inUnits = (m2: number): number => m2 / ((C_M_S * unit.ns) / 1e9) ** 2;
   const value = inUnits(intervalM2);
   const sigma = inUnits(sigmaM2);
-  const decimals = Math.min(
-    6,
-    Math.max(1, 5 - Math.ceil(Math.log10(Math.abs(value) || 1)), sigma > 0 ? Math.ceil(1 - Math.log10(sigma)) : 1),
-  );
+  const decimals = sigma > 0 ? Math.min(6, Math.max(0, 1 - Math.floor(Math.log10(sigma)))) : 6;
   return `${plain(value, decimals)} \u00b1 ${plain(sigma, decimals)} light-${unit.name}\u00b2`;
 }
 

@@ -166,7 +166,7 @@ export class PairPage {
     if (!seen || widthPx < 120) return undefined;
     const isNarrow = widthPx < NARROW_PX;
     const edges = isNarrow ? NARROW_MARGINS : MARGINS;
-    const heightPx = Math.round(isNarrow ? widthPx * 0.8 : Math.min(530, widthPx * 0.92));
+    const heightPx = Math.round(isNarrow ? widthPx * 0.86 : Math.min(580, widthPx * 1.04));
     const box = {
       left: edges.left,
       top: edges.top,
@@ -186,6 +186,7 @@ export class PairPage {
       unit: { name, ms: ns / NS_PER_MS },
       class: seen.pair.class,
       names: this.names(),
+      sites: [seen.a.site, seen.b.site],
       xMs,
       tMs,
       errorMs,
@@ -264,12 +265,15 @@ export class PairPage {
   }
 
   protected siteName(code: string): string {
-    return this.networks.sites.value()?.find((site) => site.code === code)?.name || code;
+    const name = this.networks.sites.value()?.find((site) => site.code === code)?.name ?? '';
+    return name === '' ? code : name;
   }
 
   protected turnsAt(): string {
     const turning = this.seen()?.turning;
-    return turning ? `${turning.speedC.toFixed(3)} \u00b1 ${errorDigits(turning.sigmaC)}` : '';
+    if (!turning) return '';
+    const decimals = decimalsOf(turning.sigmaC);
+    return `${turning.speedC.toFixed(decimals)} \u00b1 ${turning.sigmaC.toFixed(decimals)}`;
   }
 
   /** A time in the table's unit. */
@@ -341,9 +345,5 @@ const idIn = (text: string | undefined): number | undefined =>
 const sigmasIn = (text: string | undefined): number | undefined =>
   text !== undefined && /^\d{1,3}(\.\d{1,6})?$/.test(text) && Number(text) <= 100 ? Number(text) : undefined;
 
-/** An error with two digits that count. */
-const errorDigits = (sigma: number): string => {
-  if (sigma === 0) return '0';
-  const decimals = Math.min(9, Math.max(3, 1 - Math.floor(Math.log10(sigma))));
-  return sigma.toFixed(decimals);
-};
+/** So many decimals that an error has two digits that count. */
+const decimalsOf = (sigma: number): number => (sigma === 0 ? 3 : Math.min(9, Math.max(3, 1 - Math.floor(Math.log10(sigma)))));
