@@ -70,10 +70,9 @@ export class SetAsides {
   }
 
   /** Shows another part of the list: what is empty falls out of the address. */
-  protected choose(part: Readonly<Record<string, string | null>>): Promise<boolean> {
-    const queryParams = Object.fromEntries(
-      Object.entries({ open: null, ...part }).map(([name, value]) => [name, value === '' ? null : value]),
-    );
+  protected choose(part: Readonly<Record<string, string>>): Promise<boolean> {
+    const chosen = Object.entries({ open: '', ...part }).map(([name, value]) => [name, value === '' ? null : value] as const);
+    const queryParams: Record<string, string | null> = Object.fromEntries(chosen);
     return this.router.navigate([], { queryParams, queryParamsHandling: 'merge' });
   }
 
