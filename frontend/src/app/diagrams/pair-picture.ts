@@ -37,6 +37,7 @@ const LABEL_PX = 15;
 /** Worldlines nearer than this are one line on the screen. */
 const ONE_LINE_PX = 12;
 const CAP_PX = 5;
+const NARROW_PX = 340;
 
 /**
  * The scales on which a pair fills a box: one factor for both axes, so that light stands at 45 degrees, with the earlier event at 0.
@@ -93,14 +94,15 @@ export function pairPicture(given: PairPictureGiven): Picture {
     const at = round(x(xMs));
     lines.push({ kind, path: `M${at} ${high}V${low}M${at - CAP_PX} ${high}h${2 * CAP_PX}M${at - CAP_PX} ${low}h${2 * CAP_PX}` });
   }
+  const isNarrow = box.width < NARROW_PX; // where figures and a title beside them have no room
   return {
     box,
     lines,
     words: [...siteWords(given), ...edgeWords(given)],
     xTicks,
     yTicks,
-    xTitle: `Distance along the baseline, light-${unit.name}`,
-    yTitle: `Time after ${given.names[0]}, ${unit.name}`,
+    xTitle: `Distance along the baseline, light-${unit.name}${isNarrow ? `; time up, ${unit.name}` : ''}`,
+    yTitle: isNarrow ? '' : `Time after ${given.names[0]}, ${unit.name}`,
     slanted: false,
   };
 }
