@@ -21,6 +21,7 @@ const MOST_GROWTH_BYTES = 100e6;
 const MOST_RSS_BYTES = 512e6;
 
 const CROWD = LONG ? 300 : 150;
+const APART_NS = 1e7;
 /** The gate lets 100 in at once and 50 a second after them. */
 const MOST_BACK_MS = 40_000;
 
@@ -72,7 +73,7 @@ describe('a server that is killed', () => {
     server = await StreamedServer.start({ siteCount: CROWD });
     const history = new History();
     const { sites, directUrl } = server;
-    const clients = sites.map(({ code, key }) => {
+    const clients = sites.map(({ code, key }, at) => {
       const client = new SiteClient({
         url: directUrl,
         key,
@@ -82,7 +83,7 @@ describe('a server that is killed', () => {
       });
       return {
         send: async (sequence: number): Promise<void> => {
-          const record = plainRecord(sequence, sequence * 1e6);
+          const record = plainRecord(sequence, (sequence * sites.length + at) * APART_NS); // no two are near each other
           history.attempt(code, record);
           await client.push(record);
         },
