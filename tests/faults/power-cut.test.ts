@@ -18,7 +18,7 @@ const BATCHES = 60;
 /** How many of the points lie before the first acknowledgement, while the tables are made. */
 const EARLY_SHARE = 0.15;
 const SEED = Number(process.env['SEED'] ?? 20260301);
-const TEST_MS = 600_000;
+const TEST_MS = LONG ? 1_800_000 : 300_000;
 
 /** Points of a record: some while the database is made, the others from the first acknowledgement on, and the very end. */
 function pointsOf({ calls, acknowledged }: Recorded, count: number, roll: () => number): readonly number[] {
