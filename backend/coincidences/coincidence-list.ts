@@ -73,7 +73,6 @@ export const COINCIDENCE_SORTINGS: Readonly<Record<CoincidenceSort, Sorting>> = 
   span: byColumn('span_ns', 'coincidences_by_span', (row) => row.spanNs, false),
   turning: byColumn('least_turning_speed_c', 'coincidences_by_turning', (row) => row.leastTurningSpeedC, true),
   amplitude: byColumn('amplitude', 'coincidences_by_amplitude', (row) => row.amplitude, true),
-  chance: byColumn('expected_by_chance', 'coincidences_by_chance', (row) => row.expectedByChance, true),
 };
 
 /** What a row must be; which filters an index has answered by itself is told by their names. */

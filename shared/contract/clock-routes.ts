@@ -4,7 +4,7 @@ import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
 import { utc, version } from './people';
 import { route } from './routes';
-import { between, idOf, nameOrEmpty, setupNote, timeGiven, withWarnings } from './setup-leaves';
+import { edit, between, idOf, nameOrEmpty, setupNote, timeGiven, withWarnings } from './setup-leaves';
 
 const MOST_OFFSET_NS = 1e15; // 11 days
 const MOST_RATE_NS_PER_DAY = 8.64e12; // a tenth
@@ -95,7 +95,7 @@ export const CLOCK_ROUTES = {
   listClocks: route('GET', '/networks/:networkId/clocks', {
     policy: 'clock:list',
     params: networkParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(clockBrief),
   }),
   readClock: route('GET', '/clocks/:clockId', { policy: 'clock:read', params: clockParams, answer: clock }),
@@ -103,7 +103,7 @@ export const CLOCK_ROUTES = {
   listSegments: route('GET', '/clocks/:clockId/segments', {
     policy: 'clock:read-history',
     params: clockParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(clockSegment),
   }),
   makeClock: route('POST', '/networks/:networkId/clocks', {
@@ -175,7 +175,7 @@ export const REFERENCE_ROUTES = {
   listReferences: route('GET', '/networks/:networkId/references', {
     policy: 'time-reference:list',
     params: networkParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(timeReference),
   }),
   makeReference: route('POST', '/networks/:networkId/references', {
@@ -189,7 +189,7 @@ export const REFERENCE_ROUTES = {
   changeReference: route('PATCH', '/references/:referenceId', {
     policy: 'time-reference:change',
     params: z.strictObject({ referenceId: idText }),
-    body: record({ name: nameOrEmpty().optional(), sigmaNs: sigmaNs().optional(), note: setupNote().optional(), version: version() }),
+    body: edit({ name: nameOrEmpty().optional(), sigmaNs: sigmaNs().optional(), note: setupNote().optional() }),
     answer: timeReference,
   }),
 };

@@ -1,7 +1,7 @@
 import * as z from 'zod';
 import { KINDS, SIGMA_SOURCES } from '../reconcile/record';
 import { coincidenceBrief } from './coincidence';
-import { instant } from './leaves';
+import { instant, record } from './leaves';
 import { idsText, isUsableSpan, MOST_IDS, partAt, partOf, partQuery, SPAN_FAULT, spanQuery, wordText } from './list-query';
 import { idText } from './page';
 import { utc } from './people';
@@ -142,9 +142,10 @@ export const EVENT_ROUTES = {
   listEvents: route('GET', '/networks/:networkId/events', {
     policy: 'event:list',
     params: networkParams,
-    query: z
-      .strictObject({ ...partQuery, ...spanQuery, siteIds: idsText(MOST_IDS).optional(), kind: wordText(...KINDS) })
-      .refine(isUsableSpan, SPAN_FAULT),
+    query: record({ ...partQuery, ...spanQuery, siteIds: idsText(MOST_IDS).optional(), kind: wordText(...KINDS) }).refine(
+      isUsableSpan,
+      SPAN_FAULT,
+    ),
     answer: partAt(eventBrief),
   }),
   readEvent: route('GET', '/events/:eventId', { policy: 'event:read', params: eventParams, answer: eventInFull }),
@@ -152,7 +153,7 @@ export const EVENT_ROUTES = {
   listCoincidencesOfEvent: route('GET', '/events/:eventId/coincidences', {
     policy: 'coincidence:list',
     params: eventParams,
-    query: z.strictObject(partQuery),
+    query: record(partQuery),
     answer: partOf(coincidenceBrief),
   }),
 };

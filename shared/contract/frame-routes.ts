@@ -5,7 +5,7 @@ import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
 import { utc, version } from './people';
 import { route } from './routes';
-import { idOf, nameOrEmpty, wholeNumber } from './setup-leaves';
+import { edit, idOf, nameOrEmpty, wholeNumber } from './setup-leaves';
 
 const MOST_PINNED = 20;
 const frameParams = z.strictObject({ frameId: idText });
@@ -142,7 +142,7 @@ export const FRAME_ROUTES = {
   listFrames: route('GET', '/networks/:networkId/frames', {
     policy: 'frame:list',
     params: networkParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(frame),
   }),
   readFrame: route('GET', '/frames/:frameId', { policy: 'frame:read', params: frameParams, answer: frameWithHistory }),
@@ -164,13 +164,12 @@ export const FRAME_ROUTES = {
   changeFrame: route('PATCH', '/frames/:frameId', {
     policy: 'frame:change',
     params: frameParams,
-    body: record({
+    body: edit({
       name: nameOrEmpty().optional(),
       pinned: pinned().optional(),
       parentId: parentId().optional(),
       at: at().optional(),
       motion: frameMotion.optional(),
-      version: version(),
     }),
     answer: frameWithHistory,
   }),

@@ -3,7 +3,7 @@ import { code, instant, numberThat, record } from './leaves';
 import { idText, pageOf, pageQuery } from './page';
 import { utc, version } from './people';
 import { route } from './routes';
-import { flag, nameOrEmpty, setupName, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
+import { edit, flag, nameOrEmpty, setupName, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
 
 const MOST_SIGNATURES = 20;
 const MOST_STALE_SIGMAS = 1_000;
@@ -52,17 +52,16 @@ export const networkGiven = record({
 });
 
 /** What is absent stays as it is. */
-export const networkEdit = record({
+export const networkEdit = edit({
   name: setupName().optional(),
   neededSignatures: neededSignatures().optional(),
   needsSecondFactor: needsSecondFactor().optional(),
   staleAboveSigmas: staleAboveSigmas().optional(),
-  version: version(),
 });
 
 /** Listed are those in which the asker has a role, and that are not closed. Code and origin are for good. */
 export const NETWORK_ROUTES = {
-  listNetworks: route('GET', '/networks', { policy: 'network:list', query: z.strictObject(pageQuery), answer: pageOf(network) }),
+  listNetworks: route('GET', '/networks', { policy: 'network:list', query: record(pageQuery), answer: pageOf(network) }),
   readNetwork: route('GET', '/networks/:networkId', { policy: 'network:read', params: networkParams, answer: network }),
   makeNetwork: route('POST', '/networks', {
     policy: 'network:make',
@@ -89,7 +88,7 @@ export const RUN_ROUTES = {
   listRuns: route('GET', '/networks/:networkId/runs', {
     policy: 'run:list',
     params: networkParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(run),
   }),
   makeRun: route('POST', '/networks/:networkId/runs', {
@@ -102,11 +101,10 @@ export const RUN_ROUTES = {
   changeRun: route('PATCH', '/runs/:runId', {
     policy: 'run:change',
     params: z.strictObject({ runId: idText }),
-    body: record({
+    body: edit({
       name: nameOrEmpty().optional(),
       from: timeGiven().optional(),
       to: timeGiven().nullable().optional(),
-      version: version(),
     }),
     answer: run.extend(withWarnings),
   }),

@@ -10,16 +10,19 @@ export const idText = z
   .regex(/^[1-9]\d{0,14}$/, 'a whole number, at least 1')
   .transform(Number);
 
+const CURSOR_RIGHT = 'the "next" of the page before';
+const LIMIT_RIGHT = `a whole number from 1 to ${MOST_ITEMS}`;
+
 /** The fields of a query that asks for a page: `cursor` is the `next` of the page before, absent for the first. */
 export const pageQuery = {
   cursor: z
-    .string()
-    .regex(/^[1-9]\d{0,14}$/, 'the "next" of the page before')
+    .string({ error: CURSOR_RIGHT })
+    .regex(/^[1-9]\d{0,14}$/, CURSOR_RIGHT)
     .transform(Number)
     .optional(),
   limit: z
-    .string()
-    .refine((text) => /^[1-9]\d{0,2}$/.test(text) && Number(text) <= MOST_ITEMS, `a whole number from 1 to ${MOST_ITEMS}`)
+    .string({ error: LIMIT_RIGHT })
+    .refine((text) => /^[1-9]\d{0,2}$/.test(text) && Number(text) <= MOST_ITEMS, LIMIT_RIGHT)
     .transform(Number)
     .optional(),
 };

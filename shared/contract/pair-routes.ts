@@ -1,7 +1,7 @@
 import * as z from 'zod';
 import { INTERVAL_CLASSES } from './coincidence';
 import { errorTerm } from './event-routes';
-import { instant } from './leaves';
+import { instant, record } from './leaves';
 import { idsText } from './list-query';
 import { idText } from './page';
 import { route } from './routes';
@@ -71,7 +71,7 @@ export const PAIR_ROUTES = {
   readPairs: route('GET', '/networks/:networkId/pairs', {
     policy: 'pair:read',
     params: z.strictObject({ networkId: idText }),
-    query: z.strictObject({
+    query: record({
       events: idsText(MOST_EVENTS_PAIRED),
       /** Absent for all frames of the network. */
       frames: z

@@ -55,7 +55,7 @@ export const MY_ROUTES = {
     body: record({ current: givenPassword(), password: newPassword() }),
     mostBodyBytes: MOST_SECRET_BODY_BYTES,
   }),
-  listMySessions: route('GET', '/me/sessions', { policy: 'my-sessions:read', query: z.strictObject(pageQuery), answer: pageOf(session) }),
+  listMySessions: route('GET', '/me/sessions', { policy: 'my-sessions:read', query: record(pageQuery), answer: pageOf(session) }),
   endMySession: route('POST', '/me/sessions/:sessionId/end', {
     policy: 'my-sessions:end',
     params: z.strictObject({ sessionId: idText }),
@@ -65,7 +65,7 @@ export const MY_ROUTES = {
 
 /** What coordinators do with people and their roles. */
 export const PEOPLE_ROUTES = {
-  listPeople: route('GET', '/people', { policy: 'person:list', query: z.strictObject(pageQuery), answer: pageOf(person) }),
+  listPeople: route('GET', '/people', { policy: 'person:list', query: record(pageQuery), answer: pageOf(person) }),
   readPerson: route('GET', '/people/:personId', { policy: 'person:read', params: personParams, answer: person }),
   invite: route('POST', '/people', {
     policy: 'person:invite',
@@ -111,7 +111,7 @@ export const SITE_KEY_ROUTES = {
   listSiteKeys: route('GET', '/sites/:siteId/keys', {
     policy: 'site-key:list',
     params: siteParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(siteKey),
   }),
   makeSiteKey: route('POST', '/sites/:siteId/keys', {

@@ -1,5 +1,6 @@
 import * as z from 'zod';
 import { healthAnswer } from './health';
+import { record } from './leaves';
 import { idText, pageOf, pageQuery } from './page';
 import { utc } from './people';
 import { route } from './routes';
@@ -8,7 +9,7 @@ import { route } from './routes';
 export const HEALTH_ROUTES = {
   readHealth: route('GET', '/health', {
     policy: 'health:read',
-    query: z.looseObject({}), // whoever watches a server may add what they like, to get past a cache for example
+    query: z.looseObject({}, { error: 'an object' }), // whoever watches a server may add what they like, to get past a cache for example
     answer: healthAnswer,
   }),
 };
@@ -34,13 +35,13 @@ const word = (right: string) => z.string({ error: right }).regex(/^[a-z][a-z:-]{
 export const AUDIT_ROUTES = {
   readAudit: route('GET', '/audit', {
     policy: 'audit:read',
-    query: z.strictObject({
+    query: record({
       ...pageQuery,
       networkId: idText.optional(),
       action: word('an action such as role:given').optional(),
       actorId: idText.optional(),
       subjectKind: word('a kind such as person').optional(),
-      subjectId: z.string().min(1, 'the id of a subject').max(200, 'the id of a subject').optional(),
+      subjectId: z.string({ error: 'the id of a subject' }).min(1, 'the id of a subject').max(200, 'the id of a subject').optional(),
     }),
     answer: pageOf(auditEntry),
   }),
@@ -69,7 +70,7 @@ export const keptMail = z.strictObject({
 export const KEPT_MAIL_ROUTES = {
   listKeptMails: route('GET', '/kept-mails', {
     policy: 'kept-mail:read',
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(keptMail),
   }),
 };

@@ -4,7 +4,7 @@ import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
 import { utc, version } from './people';
 import { route } from './routes';
-import { between, idOf, nameOrEmpty, setupNote, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
+import { edit, between, idOf, nameOrEmpty, setupNote, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
 
 const MOST_WINDOW_NS = 1e11; // 100 s: light needs 0.04 s across the Earth
 const LEAST_SPEED_C = 1e-3;
@@ -109,7 +109,7 @@ export const RULE_ROUTES = {
   listRules: route('GET', '/networks/:networkId/rules', {
     policy: 'rule:list',
     params: networkParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(rule),
   }),
   readRule: route('GET', '/rules/:ruleId', { policy: 'rule:read', params: ruleParams, answer: rule }),
@@ -117,7 +117,7 @@ export const RULE_ROUTES = {
   listRuleVersions: route('GET', '/rules/:ruleId/versions', {
     policy: 'rule:read-history',
     params: ruleParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(ruleState),
   }),
   /** Not active until it is made so. */
@@ -131,7 +131,7 @@ export const RULE_ROUTES = {
   changeRule: route('PATCH', '/rules/:ruleId', {
     policy: 'rule:change',
     params: ruleParams,
-    body: record({ name: nameOrEmpty().optional(), state: ruleStateGiven.optional(), version: version() }),
+    body: edit({ name: nameOrEmpty().optional(), state: ruleStateGiven.optional() }),
     answer: rule.extend(withWarnings),
   }),
   activateRule: route('POST', '/rules/:ruleId/activate', { policy: 'rule:activate', params: ruleParams, body: versionSeen, answer: rule }),

@@ -114,7 +114,7 @@ export const SET_ASIDE_ROUTES = {
   listSetAsides: route('GET', '/networks/:networkId/set-asides', {
     policy: 'set-aside:list',
     params: networkParams,
-    query: z.strictObject({
+    query: record({
       ...partQuery,
       /** Absent for the open ones. */
       state: wordText(...SET_ASIDE_STATES, 'all'),

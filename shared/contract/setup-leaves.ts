@@ -1,7 +1,7 @@
 import * as z from 'zod';
 import { type Instant } from '../time/instant';
-import { instant, numberThat } from './leaves';
-import { line } from './people';
+import { instant, numberThat, record } from './leaves';
+import { line, version } from './people';
 
 /** Leaves of what a network is set up from: ids, names, notes, and times as they are given. */
 
@@ -59,6 +59,12 @@ export const wholeNumber = (least: number, most: number) =>
 /** A number with a unit between bounds, both allowed. */
 export const between = (least: number, most: number, unit: string) =>
   numberThat(`a number of ${unit} from ${least} to ${most}`, (value) => value >= least && value <= most);
+
+/** An edit of some of the fields, whatever is absent staying as it is, with the version that was seen. At least one field is there. */
+export const edit = <T extends z.ZodRawShape>(shape: T) =>
+  record({ ...shape, version: version() }).refine((given) => Object.keys(given).length > 1, {
+    error: `an edit of at least one field beside "version": ${Object.keys(shape).join(', ')}`,
+  });
 
 export const flag = (right: string) => z.boolean({ error: right });
 

@@ -5,7 +5,7 @@ import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
 import { utc, version } from './people';
 import { route } from './routes';
-import { between, flag, idOf, nameOrEmpty, setupNote, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
+import { edit, between, flag, idOf, nameOrEmpty, setupNote, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
 
 const MOST_DELAY_NS = 1e9;
 const MOST_SIGMA_NS = 1e15; // 11 days: worse than any clock that is read at all
@@ -129,7 +129,7 @@ export const SITE_ROUTES = {
   listSites: route('GET', '/networks/:networkId/sites', {
     policy: 'site:list',
     params: networkParams,
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(siteBrief),
   }),
   readSite: route('GET', '/sites/:siteId', { policy: 'site:read', params: siteParams, answer: site }),
@@ -143,7 +143,7 @@ export const SITE_ROUTES = {
   changeSite: route('PATCH', '/sites/:siteId', {
     policy: 'site:change',
     params: siteParams,
-    body: record({ name: nameOrEmpty().optional(), ...limits, version: version() }),
+    body: edit({ name: nameOrEmpty().optional(), ...limits }),
     answer: site,
   }),
   /** Takes the place of the state that `replaces` numbers; without it, of one in force with the same `from`, or of none. */

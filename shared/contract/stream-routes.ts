@@ -1,5 +1,5 @@
 import * as z from 'zod';
-import { instant } from './leaves';
+import { instant, record } from './leaves';
 import { countText, isUsableSpan, partOf, partQuery, SPAN_FAULT, spanQuery } from './list-query';
 import { idText, pageOf, pageQuery } from './page';
 import { route } from './routes';
@@ -58,20 +58,20 @@ export const STREAM_ROUTES = {
   listSeries: route('GET', '/sites/:siteId/series', {
     policy: 'series:list',
     params: siteParams,
-    query: z.strictObject(partQuery),
+    query: record(partQuery),
     answer: partOf(series),
   }),
   /** Upwards by number. */
   listGaps: route('GET', '/sites/:siteId/gaps', {
     policy: 'series:list',
     params: siteParams,
-    query: z.strictObject({ series: seriesText.optional(), cursor: partQuery.cursor, limit: partQuery.limit }),
+    query: record({ series: seriesText.optional(), cursor: partQuery.cursor, limit: partQuery.limit }),
     answer: z.strictObject({ items: z.array(gap), next: z.string().nullable() }),
   }),
   listLiveSpans: route('GET', '/sites/:siteId/live-spans', {
     policy: 'live-span:list',
     params: siteParams,
-    query: z.strictObject({ ...partQuery, ...spanQuery }).refine(isUsableSpan, SPAN_FAULT),
+    query: record({ ...partQuery, ...spanQuery }).refine(isUsableSpan, SPAN_FAULT),
     answer: partOf(liveSpan),
   }),
   /** Of the open sites; the network is complete up to the least of them, and null while one has said nothing. */
@@ -86,7 +86,7 @@ export const STREAM_ROUTES = {
   listChanges: route('GET', '/networks/:networkId/changes', {
     policy: 'change:list',
     params: networkParams,
-    query: z.strictObject({ after: countText, limit: pageQuery.limit }),
+    query: record({ after: countText, limit: pageQuery.limit }),
     answer: pageOf(changeNote).extend({ last: z.int(), isMissing: z.boolean() }),
   }),
 };

@@ -66,7 +66,7 @@ export const TABLE_ROUTES = {
 
   listLeapSecondTables: route('GET', '/leap-second-tables', {
     policy: 'time-tables:read',
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(leapSecondTable),
   }),
   readLeapSecondTable: route('GET', '/leap-second-tables/:tableId', {
@@ -90,7 +90,7 @@ export const TABLE_ROUTES = {
 
   listOrientationTables: route('GET', '/orientation-tables', {
     policy: 'time-tables:read',
-    query: z.strictObject(pageQuery),
+    query: record(pageQuery),
     answer: pageOf(orientationTable),
   }),
   readOrientationTable: route('GET', '/orientation-tables/:tableId', {

@@ -89,7 +89,6 @@ const middleOf: Readonly<Record<CoincidenceSort, (rows: number) => readonly numb
   span: (rows) => [500, rows / 2],
   turning: (rows) => [0.5, rows / 2],
   amplitude: (rows) => [500, rows / 2],
-  chance: (rows) => [500, rows / 2],
 };
 
 const inTheMiddle = (sort: CoincidenceSort, rows: number): string => positionText(sort, middleOf[sort](rows));

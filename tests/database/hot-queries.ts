@@ -212,7 +212,6 @@ export const HOT_QUERIES: readonly HotQuery[] = [
   ...sortedBy('span', 500, 50),
   ...sortedBy('turning', 0.4, 50),
   ...sortedBy('amplitude', 500, 50),
-  ...sortedBy('chance', 500, 50),
   ...searched(
     'coincidences of a class by margin',
     { sort: 'margin', class: 'timelike' },

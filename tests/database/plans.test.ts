@@ -70,6 +70,7 @@ const SERVES_WHAT_IS_SMALL = [
   'clock_fits_of_clock',
   'coincidence_alerts_of_network',
   'coincidence_alerts_of_person',
+  'coincidences_by_chance', // until chance is estimated, nothing is sorted by it
   'ephemerides_of_site',
   'failed_attempts_last_at',
   'intakes_of_file',
@@ -104,6 +105,9 @@ describe('every index', () => {
       .all()
       .map(({ name }) => name);
     const served = new Set(HOT_QUERIES.flatMap(({ indexes }) => indexes.map((line) => line.replace(/^.* /, ''))));
-    expect(made.filter((name) => !served.has(name))).toEqual(SERVES_WHAT_IS_SMALL);
+    expect(
+      made.filter((name) => !served.has(name)),
+      'add the query of an index to hot-queries.ts, or its name to SERVES_WHAT_IS_SMALL above, in the order of the alphabet',
+    ).toEqual(SERVES_WHAT_IS_SMALL);
   });
 });

@@ -2,64 +2,24 @@ import { Router } from 'express';
 import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import * as z from 'zod';
-import { CLOCK_ROUTES, REFERENCE_ROUTES } from '#shared/contract/clock-routes';
-import { FRAME_ROUTES } from '#shared/contract/frame-routes';
-import { NETWORK_ROUTES, RUN_ROUTES } from '#shared/contract/network-routes';
 import { problem } from '#shared/contract/problem';
-import { RULE_ROUTES } from '#shared/contract/rule-routes';
-import { SITE_ROUTES } from '#shared/contract/site-routes';
-import { TABLE_ROUTES } from '#shared/contract/table-routes';
-import { COINCIDENCE_ROUTES } from '#shared/contract/coincidence-routes';
-import { EVENT_ROUTES } from '#shared/contract/event-routes';
-import { PAIR_ROUTES } from '#shared/contract/pair-routes';
-import { SET_ASIDE_ROUTES } from '#shared/contract/set-aside-routes';
-import { STREAM_ROUTES } from '#shared/contract/stream-routes';
-import { AUDIT_ROUTES, HEALTH_ROUTES, KEPT_MAIL_ROUTES } from '#shared/contract/record-routes';
-import { MY_ROUTES, PEOPLE_ROUTES, SESSION_ROUTES, SITE_KEY_ROUTES } from '#shared/contract/people-routes';
-import { PREFERENCE_ROUTES } from '#shared/contract/preference-routes';
 import { judge, POLICIES, policyOf, type PolicyName } from '#shared/contract/policies';
 import { DEPLOYMENT } from '#shared/contract/roles';
 import { route, type Route } from '#shared/contract/routes';
 import { LIVE_REQUESTS } from '#shared/contract/live-socket';
 import { SITE_REQUESTS } from '#shared/contract/site-socket';
-import { SITE_STATE_ROUTES } from '#shared/contract/site-state';
 import { allRoutes } from '../../backend/app';
 import { registerRoutes } from '../../backend/api/register';
 import { serve } from '../../backend/api/serve';
 import { newSiteKey } from '../../backend/accounts/site-key-use';
 import { siteKeys } from '#schema/schema';
+import { DECLARED, nameOf } from '../support/declared';
 import { startApp, type RunningApp } from '../support/app';
 import { storeOneOfEach, type OneOfEach } from '../support/one-of-each';
 import { Client, type Answer, type Sending } from '../support/client';
 import { makeSetup, type Setup } from '../support/setup';
 import { makeWorld, PASSWORD, PERSONAS, type Persona, type World } from '../support/world';
 import { setupWalk } from './setup-walk';
-
-const DECLARED: readonly Route[] = [
-  HEALTH_ROUTES,
-  SESSION_ROUTES,
-  MY_ROUTES,
-  PREFERENCE_ROUTES,
-  PEOPLE_ROUTES,
-  SITE_KEY_ROUTES,
-  EVENT_ROUTES,
-  COINCIDENCE_ROUTES,
-  PAIR_ROUTES,
-  SET_ASIDE_ROUTES,
-  STREAM_ROUTES,
-  SITE_STATE_ROUTES,
-  AUDIT_ROUTES,
-  KEPT_MAIL_ROUTES,
-  NETWORK_ROUTES,
-  RUN_ROUTES,
-  SITE_ROUTES,
-  CLOCK_ROUTES,
-  REFERENCE_ROUTES,
-  FRAME_ROUTES,
-  RULE_ROUTES,
-  TABLE_ROUTES,
-].flatMap((group) => Object.values<Route>(group));
-const nameOf = ({ method, path }: Route): string => `${method} ${path}`;
 
 let app: RunningApp;
 let world: World;
@@ -87,7 +47,10 @@ const handOver = () => Promise.reject(new Error('nothing is asked here'));
 describe('22 deny by default', () => {
   it('serves every route that the contract declares, and no other', () => {
     const served = allRoutes(app.ground).map(({ route: { method, path } }) => `${method} ${path}`);
-    expect(served.sort()).toEqual(DECLARED.map(nameOf).sort());
+    expect(
+      served.sort(),
+      'a route is declared in shared/contract, listed in DECLARED of tests/support/declared.ts and in allRoutes of backend/app.ts',
+    ).toEqual(DECLARED.map(nameOf).sort());
   });
 
   it('a route whose policy has no line in the table stops the start', () => {
@@ -260,7 +223,9 @@ async function ask(asker: Asker, declared: Route): Promise<Answer> {
 
 describe('every declared route', () => {
   it('has its line in the walk', () => {
-    expect(Object.keys(EXPECTED).sort()).toEqual(DECLARED.map(nameOf).sort());
+    expect(Object.keys(EXPECTED).sort(), 'say in EXPECTED who gets in, and to whom it must look absent').toEqual(
+      DECLARED.map(nameOf).sort(),
+    );
   });
 
   it.each(DECLARED.map((declared) => [nameOf(declared), declared] as const))(
