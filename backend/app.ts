@@ -97,6 +97,7 @@ function requestLog(log: Logger) {
     logger: log,
     genReqId: () => randomUUID(),
     customLogLevel: (_req, res, fault) => {
+      if (res.statusCode === 503 && res.hasHeader('Retry-After')) return 'warn'; // busy, and soon no more
       if (fault ?? res.statusCode >= 500) return 'error';
       return res.statusCode >= 400 ? 'info' : 'debug';
     },

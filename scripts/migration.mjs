@@ -12,11 +12,18 @@ const migrations = () => readdirSync(folder).filter((name) => name.endsWith('.sq
 
 const before = new Set(migrations());
 const kit = join(root, 'node_modules', 'drizzle-kit', 'bin.cjs');
-const { status } = spawnSync(process.execPath, [kit, 'generate', '--config', 'schema/drizzle.config.ts', ...process.argv.slice(2)], {
-  cwd: root,
-  stdio: 'inherit',
-});
-if (status !== 0) process.exit(status ?? 1);
+const { status, stdout, stderr } = spawnSync(
+  process.execPath,
+  [kit, 'generate', '--config', 'schema/drizzle.config.ts', ...process.argv.slice(2)],
+  {
+    cwd: root,
+    encoding: 'utf8',
+  },
+);
+if (status !== 0) {
+  process.stderr.write(stdout + stderr);
+  process.exit(status ?? 1);
+}
 
 for (const name of migrations().filter((file) => !before.has(file))) {
   const path = join(folder, name);

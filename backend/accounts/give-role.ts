@@ -6,7 +6,11 @@ import { type Note, type Tx } from '../audit/change';
 import { utcText } from '../ground';
 import { ROLE_COLUMNS } from './roles-of';
 
-/** Gives a person a role at a place that exists; one that they hold already, or an end that is past, is refused. */
+/**
+ * Gives a person a role at a place that exists; one that they hold already, or an end that is past, is refused.
+ *
+ * @param path of the role in the request, with its dot, for what goes wrong
+ */
 export function insertRole(
   tx: Tx,
   note: (note: Note) => void,
@@ -14,9 +18,10 @@ export function insertRole(
   given: RoleGiven,
   givenBy: number | null,
   nowMs: number,
+  path = '',
 ): RoleHeld {
-  refusePlace(tx, given);
-  refusePast(given.expiresAt, nowMs);
+  refusePlace(tx, given, path);
+  refusePast(given.expiresAt, nowMs, path);
   const { role, networkId, siteId, expiresAt } = given;
   // One that has run out is in nobody's way: it is dated as taken, so that it can be given anew.
   tx.update(roles)
@@ -53,12 +58,12 @@ export function insertRole(
 }
 
 /** Refuses an end that is not ahead. */
-export function refusePast(expiresAt: string | null, nowMs: number): void {
+export function refusePast(expiresAt: string | null, nowMs: number, path = ''): void {
   if (expiresAt !== null && expiresAt <= utcText(nowMs))
-    throw unusable({ where: 'expiresAt', text: `is "${expiresAt}"; it must be an instant ahead, or null` });
+    throw unusable({ where: `${path}expiresAt`, text: `is "${expiresAt}"; it must be an instant ahead, or null` });
 }
 
-function refusePlace(tx: Tx, { networkId, siteId }: RoleGiven): void {
+function refusePlace(tx: Tx, { networkId, siteId }: RoleGiven, path: string): void {
   if (networkId === null) return;
   if (!tx.select({ id: networks.id }).from(networks).where(eq(networks.id, networkId)).get()) throw absent();
   if (siteId === null) return;
@@ -67,5 +72,5 @@ function refusePlace(tx: Tx, { networkId, siteId }: RoleGiven): void {
     .from(sites)
     .where(and(eq(sites.id, siteId), eq(sites.networkId, networkId)))
     .get();
-  if (!site) throw unusable({ where: 'siteId', text: `is ${siteId}; it must be the id of a site of this network` });
+  if (!site) throw unusable({ where: `${path}siteId`, text: `is ${siteId}; it must be the id of a site of this network` });
 }

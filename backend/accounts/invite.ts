@@ -31,6 +31,6 @@ export function invitePerson(
     .returning({ personId: people.id })
     .get();
   note({ action: 'person:invited', subjectKind: 'person', subjectId: personId, networkId: role.networkId });
-  insertRole(tx, note, personId, role, givenBy, nowMs);
+  insertRole(tx, note, personId, role, givenBy, nowMs, 'role.');
   return { personId, token: issueMailedToken(tx, 'invitation', personId, givenBy, nowMs) };
 }

@@ -3,6 +3,7 @@ import { siteKeys, sites } from '#schema/schema';
 import { absent, conflict } from '../api/refusal';
 import { type Note, type Tx } from '../audit/change';
 import { utcText } from '../ground';
+import { openNetwork } from '../networks/network-rows';
 import { newSiteKey } from './site-key-use';
 
 const MOST_LIVE_KEYS = 20;
@@ -28,11 +29,13 @@ export interface KeyValues {
  * Makes a key of a site.
  *
  * @returns what is shown of it, and the key itself, which is kept nowhere
- * @throws Refusal for a site that does not exist, or has as many keys as it may
+ * @throws Refusal for a site that does not exist, is closed, or has as many keys as it may
  */
 export function makeSiteKey(tx: Tx, note: (note: Note) => void, { siteId, label, createdBy }: KeyValues, nowMs: number) {
-  const site = tx.select({ networkId: sites.networkId }).from(sites).where(eq(sites.id, siteId)).get();
+  const site = tx.select({ networkId: sites.networkId, closedAt: sites.closedAt }).from(sites).where(eq(sites.id, siteId)).get();
   if (!site) throw absent();
+  openNetwork(tx, site.networkId);
+  if (site.closedAt !== null) throw conflict('The site is closed: it takes no more records, and no keys.');
   const live = tx
     .select({ id: siteKeys.id })
     .from(siteKeys)

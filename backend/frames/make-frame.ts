@@ -53,6 +53,7 @@ export function makeFrame(making: Making, values: FrameValues): number {
   const codes = tx.select({ code: frames.code }).from(frames).where(eq(frames.networkId, networkId)).all();
   if (codes.length >= MOST_FRAMES) throw conflict(`The network has ${MOST_FRAMES} frames, which is the most.`);
   if (codes.some((one) => one.code === code)) throw codeTaken(code, 'frame of the network');
+  refusePinned(tx, networkId, pinned);
   const { id } = tx
     .insert(frames)
     .values({ networkId, code, name, pinned, createdAt: utcText(nowMs), createdBy: makerOf(actor) })
@@ -62,6 +63,18 @@ export function makeFrame(making: Making, values: FrameValues): number {
   note({ action: 'frame:made', subjectKind: 'frame', subjectId: id, networkId, details: { code } });
   noteSetup(tx, networkId, { what: 'frame', id }, nowMs);
   return id;
+}
+
+/** Two frames do not share a place in the tables. */
+function refusePinned(tx: Making['tx'], networkId: number, pinned: number | null | undefined, ownId?: number): void {
+  if (pinned === null || pinned === undefined) return;
+  const taken = tx
+    .select({ id: frames.id, code: frames.code })
+    .from(frames)
+    .where(and(eq(frames.networkId, networkId), eq(frames.pinned, pinned)))
+    .all()
+    .find(({ id }) => id !== ownId);
+  if (taken) throw unusable({ where: 'pinned', text: `is ${pinned}, where ${taken.code} stands; it must be a place of its own, or null` });
 }
 
 /** Changes a frame: its motion, parent and instant by another version, the rest in place. Refuses as its making does. */
@@ -82,6 +95,7 @@ export function changeFrame(making: Making, frameId: number, { name, pinned, ...
       .run();
     insertState(making, networkId, frameId, before.number + 1, { parentId, at, motion });
   }
+  refusePinned(tx, networkId, pinned, frameId);
   tx.update(frames)
     .set({ name, pinned, version: version + 1 })
     .where(eq(frames.id, frameId))

@@ -54,7 +54,8 @@ export const siteRoutes = (): Served[] => [
       change(ground, actorOf(asked), (tx, note) => {
         const { siteId } = asked.params;
         const { version, ...edit } = asked.body;
-        const { networkId } = unchanged(tx, siteId, version);
+        const { networkId, closedAt } = unchanged(tx, siteId, version);
+        if (closedAt !== null) throw conflict('The site is closed: it is changed no more.');
         tx.update(sites)
           .set({ ...edit, version: version + 1 })
           .where(eq(sites.id, siteId))

@@ -14,16 +14,17 @@ import { liveSpanOf, liveSpansQuery, touchingFrom, type LiveSpanRow } from './li
 import { gapsOf, seriesQuery } from './series-list';
 import { type Series } from '#shared/contract/stream-routes';
 
-const BY_TIME = 'time';
+const BY_TIME = 'live-span';
 const TIME_WIDTH = 3;
 
-/** A name or a number of any size as a position. */
-const textPosition = (text: string): string => Buffer.from(`=${text}`).toString('base64url');
-function textFrom(cursor: string, form: RegExp): string {
+/** A name or a number of any size as a position of its list. */
+const textPosition = (list: 'series' | 'gap', text: string): string => Buffer.from(`${list}=${text}`).toString('base64url');
+function textFrom(list: 'series' | 'gap', cursor: string, form: RegExp): string {
   const text = Buffer.from(cursor, 'base64url').toString('latin1');
-  if (!text.startsWith('=') || !form.test(text.slice(1)))
+  const own = `${list}=`;
+  if (!text.startsWith(own) || !form.test(text.slice(own.length)))
     throw unusable({ where: 'cursor', text: 'must be the "next" or "back" of a page of this list' });
-  return text.slice(1);
+  return text.slice(own.length);
 }
 
 /** What came of the sites' streams: series, gaps, live spans, completeness, changes. */
@@ -31,17 +32,19 @@ export const streamRoutes = (): Served[] => [
   serve(STREAM_ROUTES.listSeries, {
     placeOf: ({ params: { siteId } }, { db }) => placeOfSite(db, siteId),
     handle: ({ params: { siteId }, query: { cursor, order = 'up', limit = USUAL_ITEMS } }, { db }) => {
-      const after = cursor === undefined ? undefined : textFrom(cursor, /^(?:[\w-]{0,24}|\*)$/);
-      return partFrom(rowsOf<Series>(db, seriesQuery(siteId, after, { order, limit })), limit, ({ series }) => textPosition(series));
+      const after = cursor === undefined ? undefined : textFrom('series', cursor, /^(?:[\w-]{0,24}|\*)$/);
+      return partFrom(rowsOf<Series>(db, seriesQuery(siteId, after, { order, limit })), limit, ({ series }) =>
+        textPosition('series', series),
+      );
     },
   }),
   serve(STREAM_ROUTES.listGaps, {
     placeOf: ({ params: { siteId } }, { db }) => placeOfSite(db, siteId),
     handle: ({ params: { siteId }, query: { series = '', cursor, limit = USUAL_ITEMS } }, { db }) => {
-      const behind = cursor === undefined ? undefined : textFrom(cursor, /^(?:0|[1-9]\d{0,149})$/);
+      const behind = cursor === undefined ? undefined : textFrom('gap', cursor, /^(?:0|[1-9]\d{0,149})$/);
       const found = gapsOf(db, { siteId, series }, behind, limit);
       if (!found) throw absent();
-      return { items: found.items, next: found.next === null ? null : textPosition(found.next) };
+      return { items: found.items, next: found.next === null ? null : textPosition('gap', found.next) };
     },
   }),
   serve(STREAM_ROUTES.listLiveSpans, {

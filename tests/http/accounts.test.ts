@@ -242,6 +242,21 @@ describe('a role', () => {
   const give = (body: object, client = world.as('chief')) =>
     client.post(`/people/${world.people.analyst}/roles`, { networkId: null, siteId: null, expiresAt: null, ...body });
 
+  it('of an invitation that cannot be is named by its path in the request', async () => {
+    const chief = world.as('chief');
+    const invited = (role: object) =>
+      chief.post('/people', {
+        email: 'new@example.org',
+        name: 'New',
+        role: { role: 'operator', networkId: world.networks.first, siteId: 99_999, expiresAt: null, ...role },
+      });
+    expect((await invited({})).body).toMatchObject({ status: 400, where: 'role.siteId' });
+    expect((await invited({ siteId: world.sites.alpha, expiresAt: '2020-01-01T00:00:00.000Z' })).body).toMatchObject({
+      status: 400,
+      where: 'role.expiresAt',
+    });
+  });
+
   it('is given where its giver coordinates, and nowhere else', async () => {
     const [first, second] = [world.networks.first, world.networks.second];
     expect((await give({ role: 'reviewer', networkId: first }, world.as('coordinator'))).status).toBe(201);

@@ -136,7 +136,6 @@ const KEYS: Readonly<Record<CoincidenceSort, (item: CoincidenceBrief) => number 
   span: ({ spanNs }) => spanNs,
   turning: ({ leastTurningSpeedC }) => leastTurningSpeedC,
   amplitude: ({ amplitude }) => amplitude,
-  chance: ({ expectedByChance }) => expectedByChance,
 };
 
 describe('coincidences in force', () => {
@@ -229,6 +228,28 @@ describe('32 sort and filter names', () => {
     const { status, text } = await analyst.get(`${coincidences}?${query}`);
     expect([status, JSON.parse(text)], text).toMatchObject([400, { title: 'Unusable request' }]);
   }); // prettier-ignore
+
+  it.each([
+    ['events', 'live spans', '/networks/1/events?limit=1', `/sites/1/live-spans`],
+    ['live spans', 'events', '/sites/1/live-spans?limit=1', '/networks/1/events'],
+    ['series', 'gaps', '/sites/1/series?limit=1', '/sites/1/gaps'],
+  ])('do not take a position of another list: of %s in %s', async (_from, _to, from, to) => {
+    const { back, next } = (await analyst.get(from)).body as { back?: string; next: string };
+    expect((await analyst.get(`${to}?cursor=${back ?? next}`)).body).toMatchObject({ status: 400, where: 'cursor' });
+  });
+
+  it.each(['sort=amplitude', 'kind=other', 'order=sideways', 'siteIds=1,1', 'sigmaNs=1', 'cursor=AAAA', 'limit=1&limit=2'])(
+    'are from a list, of events too: %s',
+    async (query) => expect((await analyst.get(`${events}?${query}`)).body).toMatchObject({ status: 400, where: query.split('=')[0] }),
+  );
+
+  it.each(['sort=name', 'order=up', 'email=a@example.org', 'passwordHash=1', 'cursor=x', 'limit=0'])(
+    'are from a list, of people too: %s',
+    async (query) => {
+      const coordinator = signIn(app, [{ role: 'coordinator', networkId: NETWORK, siteId: null }]);
+      expect((await coordinator.get(`/people?${query}`)).body).toMatchObject({ status: 400, where: query.split('=')[0] });
+    },
+  );
 
   it.each(['state=decided', 'reason=bad', 'sort=id', 'siteIds=x'])('are from a list, of set-asides too: %s', async (query) => {
     expect((await analyst.get(`/networks/${NETWORK}/set-asides?${query}`)).status).toBe(400);

@@ -176,6 +176,8 @@ describe('sites', () => {
     );
     expect(refusal(await coordinator.post(path, { ...siteState(), version: 3 }))).toEqual([409, 'version']);
     expect((await coordinator.post(`/sites/${id}/close`, { version: 4 })).status).toBe(200);
+    expect((await coordinator.post(`/sites/${id}/keys`, { label: 'late' })).status).toBe(409);
+    expect((await coordinator.patch(`/sites/${id}`, { name: 'Late', version: 5 })).status).toBe(409);
     expect(detailOf(await coordinator.post(path, { ...siteState(), version: 5 }))).toContain('closed');
   });
 
@@ -542,7 +544,35 @@ describe('tables of time and Earth', () => {
   });
 });
 
+describe('frames in the tables', () => {
+  it('have each a place of their own', async () => {
+    const coordinator = world.as('coordinator');
+    const make = (code: string, pinned: number) => coordinator.post(first('/frames'), { code, pinned, motion: { kind: 'barycentric' } });
+    const one = (await make('pin1', 8)).body as { id: number; version: number };
+    expect(refusal(await make('pin2', 8))).toEqual([400, 'pinned']);
+    const two = (await make('pin2', 9)).body as { id: number; version: number };
+    expect(refusal(await coordinator.patch(`/frames/${two.id}`, { pinned: 8, version: two.version }))).toEqual([400, 'pinned']);
+    expect((await coordinator.patch(`/frames/${one.id}`, { pinned: 8, name: 'same', version: one.version })).status).toBe(200);
+  });
+});
+
 describe('set-up as a whole', () => {
+  it('27 refuses an edit of a version that is no longer the last, and one of nothing, wherever there is a version', async () => {
+    const things = [
+      [first(), { name: 'x' }],
+      [`/runs/${setup.runId}`, { name: 'x' }],
+      [`/sites/${world.sites.alpha}`, { name: 'x' }],
+      [`/clocks/${setup.clockId}`, { name: 'x' }],
+      [`/references/${setup.referenceId}`, { name: 'x' }],
+      [`/frames/${setup.frameId}`, { name: 'x' }],
+      [`/rules/${setup.ruleId}`, { name: 'x' }],
+    ] as const;
+    for (const [path, edit] of things) {
+      expect(refusal(await world.as('coordinator').patch(path, { ...edit, version: 999 })), path).toEqual([409, 'version']);
+      expect((await world.as('coordinator').patch(path, { version: 999 })).status, path).toBe(400);
+    }
+  });
+
   it('41 leaves an entry in the audit trail and a numbered change with each act, and neither with a refusal', async () => {
     const coordinator = world.as('coordinator');
     const counts = () => [
