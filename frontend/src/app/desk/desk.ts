@@ -278,10 +278,10 @@ export class Desk {
     const work = this.work()?.nativeElement;
     const svg = work?.querySelector<SVGSVGElement>('sw-diagram > svg');
     if (!svg) return;
-    const text = standaloneSvg(svg, work?.querySelector<HTMLCanvasElement>('sw-diagram > canvas') ?? undefined, this.caption());
+    const canvas = work?.querySelector<HTMLCanvasElement>('sw-diagram > canvas') ?? undefined;
     try {
-      if (form === 'svg') saveFile('diagram.svg', text, 'image/svg+xml');
-      else saveFile('diagram.png', await pngOf(text), 'image/png');
+      if (form === 'svg') saveFile('diagram.svg', standaloneSvg(svg, canvas, this.caption()), 'image/svg+xml');
+      else saveFile('diagram.png', await pngOf(svg, canvas, this.caption()), 'image/png');
       this.toasts.say(`Diagram exported as ${form.toUpperCase()}.`);
     } catch {
       this.toasts.fail('The browser could not draw the diagram as a picture. Export it as SVG.');

@@ -111,6 +111,7 @@ export class EventTable {
       const parts = brief ? instantParts(brief.at, this.preferences.scale(), 9) : undefined;
       const sameSecond = parts?.clock === this.second()?.clock;
       const isOrigin = row === this.picture.originRow();
+      const rankThere = geocentric?.[i]?.rank;
       const kind = MARK_KINDS[kinds[row] ?? 0] ?? 'plain';
       return {
         row,
@@ -137,11 +138,10 @@ export class EventTable {
         hereLeads: isOrigin ? 'self' : (plane.tMs[row] ?? 0) > 0 ? 'origin' : 'row',
         cells: cells.map((column, k) => {
           const cell = column[i];
-          const base = geocentric?.[i]?.rank;
-          const moved = k === 0 || cell?.rank === undefined || base === undefined ? 0 : cell.rank - base;
+          const moved = k === 0 || cell?.rank === undefined || rankThere === undefined ? 0 : cell.rank - rankThere;
           return { ...cell, moved, isTurned: k > 0 && cell?.leads !== geocentric?.[i]?.leads };
         }),
-        hereMoved: geocentric?.[i]?.rank === undefined ? 0 : (here[i] ?? 0) - (geocentric[i]?.rank ?? 0),
+        hereMoved: rankThere === undefined ? 0 : (here[i] ?? 0) - rankThere,
       };
     });
   });

@@ -47,6 +47,6 @@ export class SiteStrip {
 }
 
 function streamOf(state: SiteStateNow | undefined, ageS: number | undefined): 'streaming' | 'late' | 'silent' {
-  if (!state || state.connectedAtMs === null) return 'silent';
+  if (state?.connectedAtMs == null) return 'silent';
   return ageS !== undefined && ageS > LATE_S ? 'late' : 'streaming';
 }

@@ -311,10 +311,9 @@ export class PairPage {
   protected async exportPicture(form: 'png' | 'svg'): Promise<void> {
     const svg = this.drawing()?.nativeElement.querySelector<SVGSVGElement>('sw-diagram > svg');
     if (!svg) return;
-    const text = standaloneSvg(svg, undefined, this.caption());
     try {
-      if (form === 'svg') saveFile(`${this.fileName()}.svg`, text, 'image/svg+xml');
-      else saveFile(`${this.fileName()}.png`, await pngOf(text), 'image/png');
+      if (form === 'svg') saveFile(`${this.fileName()}.svg`, standaloneSvg(svg, undefined, this.caption()), 'image/svg+xml');
+      else saveFile(`${this.fileName()}.png`, await pngOf(svg, undefined, this.caption()), 'image/png');
       this.toasts.say(`Diagram exported as ${form.toUpperCase()}.`);
     } catch {
       this.toasts.fail('The browser could not draw the diagram as a picture. Export it as SVG.');
