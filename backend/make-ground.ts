@@ -61,7 +61,7 @@ export async function makeGround({ config, db, log, version, port, nowMs }: Sour
     origin,
     trustedProxies: config.trustedProxies,
     signingKey: key.value,
-    noteKeyUse: (keyId) => keepKeyUse({ db, nowMs }, keyId),
+    noteKeyUse: (keyId) => keepKeyUse({ db, nowMs, log }, keyId),
     passwords: await passwordHasher(newSecret(NOBODYS_BITS)),
     auditHead,
     onCommitted: (listener) => onCommitted(db, listener),

@@ -48,10 +48,11 @@ export function useSiteKey(
   return holder;
 }
 
-/** Writes down that a key was used now. */
-export function keepKeyUse({ db, nowMs }: Pick<Ground, 'db' | 'nowMs'>, keyId: number): undefined {
+/** Writes down that a key was used now, in the database and the log. */
+export function keepKeyUse({ db, nowMs, log }: Pick<Ground, 'db' | 'nowMs' | 'log'>, keyId: number): undefined {
   db.update(siteKeys)
     .set({ lastUsedAt: utcText(nowMs()) })
     .where(eq(siteKeys.id, keyId))
     .run();
+  log.info({ event: 'site-key:used', keyId }, 'a key is in use');
 }

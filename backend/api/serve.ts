@@ -56,22 +56,23 @@ export function serve<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
   route: Route<P, Q, B, A>,
   { placeOf, placeIn, handle }: Service<z.output<P>, z.output<Q>, z.output<B>, z.input<A>>,
 ): Served {
+  const told = ({ requestId }: Exchange, { log }: Ground): Refusing => ({ name: route.policy, policy: policyFor(route), requestId, log });
   const enter = (exchange: Exchange, ground: Ground): Addressed<z.output<P>> => {
     const policy = policyFor(route);
     const caller = policy.who === 'anyone' ? NOBODY : callerOf(exchange, ground); // health must answer while the database does not
-    refuseStrangers(policy, caller, placeIn !== undefined);
+    refuseStrangers(caller, placeIn !== undefined, told(exchange, ground));
     if (route.method !== 'GET') refuseForeign(exchange, ground.origin, ground.production);
     const params = route.params.safeParse(exchange.params);
     if (!params.success) throw absent();
     const addressed = { params: params.data, caller };
-    if (placeOf) refuseElsewhere(policy, caller, placeOf(addressed, ground));
+    if (placeOf) refuseElsewhere(caller, placeOf(addressed, ground), told(exchange, ground));
     return addressed;
   };
   const answer = async (exchange: Exchange, ground: Ground): Promise<unknown> => {
     const addressed = enter(exchange, ground);
     const given = route.method === 'GET' ? {} : await readBody(exchange, route.mostBodyBytes);
     const asked = { ...addressed, query: checked(route.query, exchange.query), body: checked(route.body, given), exchange };
-    if (placeIn) refuseElsewhere(policyFor(route), asked.caller, placeIn(asked, ground));
+    if (placeIn) refuseElsewhere(asked.caller, placeIn(asked, ground), told(exchange, ground));
     return route.answer.parse(await handle(asked, ground));
   };
   return {
@@ -98,20 +99,32 @@ export function personOf({ caller }: { readonly caller: Caller }): PersonCalling
  * Whoever could do this nowhere is refused before the place is known: where only the fields say it, before anything of them is read; where
  * the path does, the place itself says in the next step whether it is to look absent.
  */
-function refuseStrangers(policy: Policy, caller: Caller, placeInFields: boolean): void {
-  if (policy.who !== 'roles' || policy.in !== 'place') refuseBy(judge(policy, caller));
-  else refuseBy(judge(placeInFields ? { ...policy, in: 'anywhere' } : { who: 'signed-in' }, caller));
+function refuseStrangers(caller: Caller, placeInFields: boolean, by: Refusing): void {
+  const { policy } = by;
+  if (policy.who !== 'roles' || policy.in !== 'place') refuseBy(judge(policy, caller), caller, by);
+  else refuseBy(judge(placeInFields ? { ...policy, in: 'anywhere' } : { who: 'signed-in' }, caller), caller, by);
 }
 
-function refuseElsewhere(policy: Policy, caller: Caller, place: Place | undefined): void {
+function refuseElsewhere(caller: Caller, place: Place | undefined, by: Refusing): void {
   if (!place) throw absent();
-  refuseBy(judge(policy, caller, place));
+  refuseBy(judge(by.policy, caller, place), caller, by);
 }
 
-function refuseBy(verdict: ReturnType<typeof judge>): void {
+/** By which policy who asks is refused, and where that is written down. */
+interface Refusing {
+  readonly name: string;
+  readonly policy: Policy;
+  readonly requestId: string;
+  readonly log: Ground['log'];
+}
+
+function refuseBy(verdict: ReturnType<typeof judge>, caller: Caller, { name, requestId, log }: Refusing): void {
+  if (verdict === 'allowed') return;
+  const who = caller.kind === 'person' ? { personId: caller.personId } : caller.kind === 'site-key' ? { keyId: caller.keyId } : undefined;
+  if (who) log.info({ event: 'request:refused', ...who, policy: name, verdict, requestId }, 'someone who is known was refused');
   if (verdict === 'sign-in') throw signInFirst();
   if (verdict === 'forbidden') throw forbidden();
-  if (verdict === 'hidden') throw absent();
+  throw absent();
 }
 
 const SECRETS = ['password', 'current', 'token'];

@@ -161,7 +161,7 @@ export class GroupLoop {
   }
 
   private commit(work: (nowMs: number, tx: Tx) => void): void {
-    const { db, keeper, nowMs, tell } = this.sources;
+    const { db, keeper, notes, nowMs, log, tell } = this.sources;
     const now = nowMs();
     let told: readonly Stored[] = [];
     try {
@@ -172,6 +172,8 @@ export class GroupLoop {
       keeper.forget();
       throw fault;
     }
+    // One line a reason and not one a record: of the latter there may be thousands a second.
+    for (const count of notes.takeSetAside()) log.info({ event: 'set-aside:made', ...count }, 'records were set aside');
     for (const stored of told) tell(stored);
   }
 

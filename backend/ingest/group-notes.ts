@@ -20,9 +20,18 @@ interface NetworkNotes {
   readonly completeSites: Map<number, Instant>;
 }
 
+/** How many records of a site were set aside for one reason. */
+export interface SetAsideCount {
+  readonly networkId: number;
+  readonly siteId: number;
+  readonly reason: SetAsideReason;
+  readonly records: number;
+}
+
 /** Gathers what a transaction does to each network: the numbers of its changes, and what the finder is told after the commit. */
 export class GroupNotes {
   private readonly networks = new Map<number, NetworkNotes>();
+  private readonly counts: SetAsideCount[] = [];
   private readonly readHead;
 
   constructor(private readonly db: Db) {
@@ -80,12 +89,21 @@ export class GroupNotes {
           completeUpTo: completenessOf(this.db, networkId),
         });
     }
+    for (const [networkId, { setAside }] of this.networks)
+      for (const [siteId, reasons] of setAside)
+        for (const [reason, records] of reasons) this.counts.push({ networkId, siteId, reason, records });
     this.networks.clear();
     return told;
   }
 
+  /** What was set aside since it was last asked, by network, site and reason. */
+  takeSetAside(): readonly SetAsideCount[] {
+    return this.counts.splice(0);
+  }
+
   forget(): void {
     this.networks.clear();
+    this.counts.length = 0;
   }
 
   private of(networkId: number): NetworkNotes {

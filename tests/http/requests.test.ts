@@ -1,5 +1,5 @@
 import { request } from 'node:http';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { problem } from '#shared/contract/problem';
 import { startApp, type RunningApp } from '../support/app';
 import { Client, type Answer } from '../support/client';
@@ -187,6 +187,9 @@ describe('18 and 19 every answer of the API', () => {
       expect(headers.get('x-content-type-options')).toBe('nosniff');
       expect(headers.get('referrer-policy')).toBe('no-referrer');
       expect(headers.get('cross-origin-resource-policy')).toBe('same-origin');
+      expect(headers.get('cross-origin-opener-policy')).toBe('same-origin');
+      expect(headers.get('permissions-policy')).toContain('geolocation=()');
+      expect(headers.get('strict-transport-security')).toBeNull(); // over plain http
       expect(headers.get('x-powered-by')).toBeNull();
       expect(headers.get('access-control-allow-origin')).toBeNull();
     }
@@ -269,6 +272,43 @@ describe('39 the log', () => {
       expect(events.filter((one) => one === event).length, event).toBeGreaterThanOrEqual(1);
     for (const secret of [PASSWORD, 'not this password', key, ...client.cookies.values(), world.emailOf('chief')])
       expect(app.rawLog()).not.toContain(secret);
+  });
+
+  const linesOf = (event: string) => app.log.filter((line) => line['event'] === event);
+
+  it('has one line for each refusal of someone who is known: who, by which policy, and at which request', async () => {
+    const before = linesOf('request:refused').length;
+    const refused = [
+      await world.as('analyst').get(`/sites/${world.sites.alpha}/keys`),
+      await world.as('otherOperator').get(`/sites/${world.sites.alpha}/keys`),
+      await world.as('analyst').post(`/sites/${world.sites.alpha}/keys`, { label: 'x' }),
+      await world.as('operator').post('/people', {}),
+      await world.as('operator').get('/people'),
+      await world.as('operator').get('/site-key'),
+      await new Client(app.url).get('/people'), // nobody that is known
+    ];
+    expect(refused.map(({ status }) => status)).toEqual([403, 404, 403, 403, 403, 401, 401]);
+    const { analyst, operator, otherOperator } = world.people;
+    expect(
+      linesOf('request:refused')
+        .slice(before)
+        .map(({ personId, policy, verdict, requestId }) => [personId, policy, verdict, requestId]),
+    ).toEqual([
+      [analyst, 'site-key:list', 'forbidden', problem.parse(refused[0]!.body).id],
+      [otherOperator, 'site-key:list', 'hidden', problem.parse(refused[1]!.body).id],
+      [analyst, 'site-key:make', 'forbidden', problem.parse(refused[2]!.body).id],
+      [operator, 'person:invite', 'forbidden', problem.parse(refused[3]!.body).id],
+      [operator, 'person:list', 'forbidden', problem.parse(refused[4]!.body).id],
+      [operator, 'site-key:read-own', 'sign-in', problem.parse(refused[5]!.body).id],
+    ]);
+  });
+
+  it('has one line a minute for the use of a key', async () => {
+    const made = await world.as('chief').post(`/sites/${world.sites.alpha}/keys`, { label: 'used' });
+    const { id, key } = made.body as { id: number; key: string };
+    const use = () => new Client(app.url).get('/site-key', { headers: { authorization: `Bearer ${key}` } });
+    for (let at = 0; at < 3; at += 1) expect((await use()).status).toBe(200);
+    await vi.waitFor(() => expect(linesOf('site-key:used').map(({ keyId }) => keyId)).toEqual([id]));
   });
 
   it('has no character that a terminal would obey', () => {
