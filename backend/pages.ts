@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
-import express, { Router, type RequestHandler } from 'express';
+import express, { Router, type Request, type RequestHandler } from 'express';
 import { nonceOf } from './security';
 
 /** The build puts a hash of the content into these names, so what they hold never changes. */
@@ -9,8 +9,8 @@ const YEAR = 'public, max-age=31536000, immutable';
 const DAY = 'public, max-age=86400';
 
 /**
- * Serves the built front end. A person's address that is no file gets the application, which has its own page for what does not exist;
- * anything else that is absent is not found, so that a missing script never comes as a page.
+ * Serves the built front end. An address that is no file gets the application, which has its own page for what does not exist;
+ * a file that is absent is not found, so that a missing script never comes as a page.
  *
  * @param folder of the built front end
  */
@@ -32,7 +32,13 @@ export function pageRoutes(folder: string): Router {
     .get('/index.html', page)
     .use(files)
     .get('/{*path}', (req, res, next) => {
-      if (req.get('accept')?.includes('text/html')) page(req, res, next);
+      if (wantsPage(req)) page(req, res, next);
       else next();
     });
+}
+
+/** A browser says that it takes pages; a program that takes anything gets one where no file can be meant. */
+function wantsPage(req: Request): boolean {
+  const accepts = req.get('accept') ?? '*/*';
+  return accepts.includes('text/html') || (accepts.includes('*/*') && !/\.[^/]*$/.test(req.path));
 }

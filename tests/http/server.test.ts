@@ -54,7 +54,9 @@ describe('what does not exist', () => {
     const page = await get('/no/such/page', html);
     expect(page.status).toBe(200);
     expect(await page.text()).toContain('<sw-root');
+    for (const path of ['/', '/no/such/page']) expect(await (await get(path, { accept: '*/*' })).text(), path).toContain('<sw-root');
     expect((await get('/chunk-ABCDEFGH.js', { accept: '*/*' })).status).toBe(404);
+    expect((await get('/no/such/picture', { accept: 'image/avif,image/webp' })).status).toBe(404);
     expect((await fetch(server.url, { method: 'POST', headers: html })).status).toBe(404);
   });
 
@@ -117,7 +119,7 @@ describe('the headers of every answer', () => {
     expect((await get(`/${script}`, { 'accept-encoding': 'gzip' })).headers.get('content-encoding')).toBe('gzip');
   });
 
-  it('ask for https in production', async () => {
+  it('18 ask for https in production', async () => {
     const production = await startServer({ DATA_DIR: newFolder('production'), ...PRODUCTION });
     try {
       expect((await fetch(production.url)).headers.get('strict-transport-security')).toBe('max-age=31536000');
