@@ -157,6 +157,10 @@ export const triggers = sqliteTable(
     index('triggers_of_intake')
       .on(t.intakeId)
       .where(sql`intake_id IS NOT NULL`),
+    // What a set-aside was mended to.
+    index('triggers_mended')
+      .on(t.mendedFromId)
+      .where(sql`mended_from_id IS NOT NULL`),
     ...checks('triggers', {
       series: isCodeOrEmpty(t.series),
       sequence: isWholeNumber(t.sequence),

@@ -56,7 +56,7 @@ function inOneDecision({ ground, parts, actor }: DecisionSources, deciding: Deci
       const nowMs = ground.nowMs();
       const decide: Work['decide'] = (row, state) => {
         keeper.setAsides.decide(row, state, { personId: actor.kind === 'person' ? actor.id : null, why: deciding.why, nowMs });
-        const details = { reason: row.reason, siteId: row.siteId };
+        const details = { reason: row.reason, siteId: row.siteId, whyGiven: deciding.why.trim() !== '' }; // its words stand in the row alone
         note({ action: `set-aside:${state}`, subjectKind: 'set-aside', subjectId: row.id, networkId: row.networkId, details });
       };
       told = writeBooks(parts, tx, nowMs, () => {

@@ -17,6 +17,10 @@ export const contentsQuery = (eventId: number): Query =>
     eventId,
   );
 
+/** The record to which a set-aside was mended. */
+export const mendedQuery = (setAsideId: number): Query =>
+  part('SELECT id FROM triggers WHERE mended_from_id = ? ORDER BY id DESC LIMIT 1', setAsideId);
+
 /** All contents that came under the identity of a record, in the order in which they came. */
 export const contentsOf = (db: Pick<Db, '$client'>, eventId: number): SetAsideContent[] =>
   rowsOf<ContentRow>(db, contentsQuery(eventId)).map(({ extra, stands, ...row }) => ({

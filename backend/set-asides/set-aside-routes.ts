@@ -17,7 +17,7 @@ import { atChange, lastChange } from '../search/at-change';
 import { partFrom, positionFrom, positionText } from '../search/keyset';
 import { rowsOf } from '../search/query';
 import { sitesWithin } from '../search/sites-within';
-import { contentsOf } from './set-aside-contents';
+import { contentsOf, mendedQuery } from './set-aside-contents';
 import { areFew, positionOf, setAsideListQuery, setAsidesOf, sortOf, widthOf, withoutClock, type SetAsidePlace } from './set-aside-list';
 
 /** Records that could not be accepted. */
@@ -74,7 +74,8 @@ function placeOfSetAside(db: Pick<Db, '$client'>, setAsideId: number): Place | u
 function inFull(db: Pick<Db, '$client'>, setAsideId: number): SetAsideInFull {
   const [row] = setAsidesOf(db, [setAsideId]);
   if (!row) throw absent();
-  return { ...row, contents: row.eventId === null ? [] : contentsOf(db, row.eventId) };
+  const mendedEventId = rowsOf<{ id: number }>(db, mendedQuery(setAsideId))[0]?.id ?? null;
+  return { ...row, mendedEventId, contents: row.eventId === null ? [] : contentsOf(db, row.eventId) };
 }
 
 /** What names no site is nobody's but those who see all of the network. */

@@ -107,7 +107,12 @@ const mendedRecord = record({
     .optional(),
 });
 
-const setAsideInFull = setAside.extend({ networkId: z.int(), contents: z.array(content) });
+const setAsideInFull = setAside.extend({
+  networkId: z.int(),
+  /** The event that it was mended to, which names it as `mendedFromId`; null where it was not. */
+  mendedEventId: z.int().nullable(),
+  contents: z.array(content),
+});
 
 /** What could not be accepted: an operator sees that of their own sites, and nobody's that names no site. */
 export const SET_ASIDE_ROUTES = {

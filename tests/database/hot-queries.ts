@@ -1,3 +1,4 @@
+import { mendedQuery } from '../../backend/set-asides/set-aside-contents';
 import { type CoincidenceSort } from '#shared/contract/coincidence-routes';
 import { membersQuery, pairsQuery } from '../../backend/coincidences/coincidence-brief';
 import {
@@ -195,6 +196,7 @@ export const HOT_QUERIES: readonly HotQuery[] = [
     liveSpansQuery(1, { from: CURSOR, to: { taiS: CURSOR_S + 60, ps: 0 } }, { order: 'up', limit: PAGE }),
   ),
   ofProduct("a site's live span before an instant", 'live_spans_of_site', spanBeforeQuery(1, CURSOR)),
+  ofProduct('what a set-aside was mended to', 'triggers_mended', mendedQuery(1)),
   // Coincidences.
   sets('coincidences from a cursor on', 'coincidences_by_time', { after: AFTER_TIME }),
   sets('coincidences back from a cursor', 'coincidences_by_time', { after: AFTER_TIME, order: 'down' }),

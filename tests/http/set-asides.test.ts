@@ -84,7 +84,10 @@ describe('a set-aside', () => {
     });
     expect([right.status, right.body]).toMatchObject([200, { state: 'accepted', decision: 'seven is 7' }]);
     const { body } = await operator.get(`/networks/${networkId}/events`);
-    expect((body as { items: { name: string }[] }).items.map(({ name }) => name)).toContain('A:7');
+    const event = (body as { items: { id: number; name: string }[] }).items.find(({ name }) => name === 'A:7')!;
+    // One leads to the other and back.
+    expect(right.body).toMatchObject({ mendedEventId: event.id });
+    expect((await operator.get(`/events/${event.id}`)).body).toMatchObject({ record: { mendedFromId: seven.id } });
   });
 
   it('of a conflict is decided for one content, or for none', async () => {
@@ -123,6 +126,17 @@ describe('a set-aside', () => {
     expect(checkConservation(db)).toEqual([]);
     const actions = db.$client.prepare<[], string>("SELECT action FROM audit WHERE action LIKE 'set-aside:%'").pluck().all();
     expect(actions.filter((action) => action === 'set-aside:accepted')).toHaveLength(2);
+    // That a reason was given stands in the trail, its words in the row alone.
+    const details = db.$client.prepare<[], string>("SELECT details FROM audit WHERE action LIKE 'set-aside:%'").pluck().all();
+    for (const text of details)
+      expect(JSON.parse(text)).toEqual({ reason: expect.any(String) as string, siteId: expect.any(Number) as number, whyGiven: true });
+    // 39: one line a reason, with how many.
+    const lines = app.log.filter(({ event }) => event === 'set-aside:made');
+    expect(lines.map(({ reason, records }) => [reason, records]).sort()).toEqual([
+      ['conflict', 4],
+      ['sequence', 2],
+      ['sigma', 1],
+    ]);
     expect(actions.filter((action) => action === 'set-aside:dismissed')).toHaveLength(4);
   });
 });

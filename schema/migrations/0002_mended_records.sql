@@ -1,0 +1,1 @@
+CREATE INDEX `triggers_mended` ON `triggers` (`mended_from_id`) WHERE mended_from_id IS NOT NULL;
