@@ -2,6 +2,7 @@ import { request } from 'node:http';
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { problem } from '#shared/contract/problem';
 import { startApp, type RunningApp } from '../support/app';
+import { DECLARED } from '../support/declared';
 import { Client, type Answer } from '../support/client';
 import { allRows } from '../support/rows';
 import { makeWorld, PASSWORD, type Persona, type World } from '../support/world';
@@ -157,6 +158,16 @@ describe('15 GET', () => {
       '/kept-mails',
       '/health',
     ];
+    // Every GET there is, of the things of this world where there are such, else of nothing.
+    const ids: Readonly<Record<string, number>> = {
+      networkId: world.networks.first,
+      siteId: world.sites.alpha,
+      personId: world.people.analyst,
+    };
+    const every = DECLARED.filter(({ method }) => method === 'GET').map(({ path }) =>
+      path.replaceAll(/:(\w+)/g, (_all, name: string) => String(ids[name] ?? 1)),
+    );
+    for (const path of every) expect([200, 400, 401, 404], path).toContain((await chief.get(path)).status);
     for (const path of paths) expect((await chief.get(path)).status, path).toBe(200);
     for (const path of [
       '/sign-out',

@@ -60,7 +60,15 @@ describe('what does not exist', () => {
     expect((await fetch(server.url, { method: 'POST', headers: html })).status).toBe(404);
   });
 
-  it('is nothing of the data folder or the sources', async () => {
+  it('44 is nothing of the data folder or the sources', async () => {
+    const kept = ['skewline.sqlite', 'skewline.sqlite-wal', 'audit-head', 'session-secret', 'demo.json'];
+    for (const name of kept)
+      for (const path of [`/${name}`, `/data/${name}`, `/api/${name}`, `/static/${name}`, `/static/..%2f${name}`, `/..%2fdata%2f${name}`]) {
+        const res = await get(path, { accept: '*/*' });
+        const text = await res.text();
+        expect(res.status >= 400 || text.includes('<sw-root'), path).toBe(true);
+        expect(text, path).not.toContain('SQLite format 3');
+      }
     for (const path of ['/data/skewline.sqlite', '/..%2f..%2f..%2fpackage.json', '/%2e%2e/%2e%2e/package.json', '/.backend'])
       expect((await get(path)).status, path).toBeGreaterThanOrEqual(400);
   });
