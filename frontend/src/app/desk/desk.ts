@@ -293,10 +293,10 @@ export class Desk {
     const at = instantText(origin?.at ?? this.picture.laneOrigin(), this.preferences.scale(), 9);
     const network = this.networks.network()?.name ?? '';
     const view = VIEWS.find(({ value }) => value === this.picture.view())?.word ?? '';
-    const frame = this.view().speedC === 0 ? 'geocentric frame' : `frame at ${plain(this.view().speedC, 3)} c along the baseline`;
+    const frame = this.view().speedC === 0 ? 'Geocentric frame' : `Frame at ${plain(this.view().speedC, 3)} c along the baseline`;
     const what = origin ? `${origin.name} at ${at}` : `up to ${at}`;
     const along = this.isBaseline() ? `, toward ${this.picture.other()?.name ?? ''}` : '';
-    return [`${network}. ${view}: ${what}${along}; ${frame}.`, window.location.href.slice(0, 160)];
+    return [`${network}. ${view}: ${what}`, `${frame}${along}`, window.location.href.slice(0, 160)];
   }
 
   private comparedEvents() {
