@@ -33,6 +33,11 @@ import { TableStore } from './table-store';
     span {
       flex: 1;
     }
+    a {
+      display: inline-flex;
+      align-items: center;
+      min-height: 30px;
+    }
     span::first-letter {
       text-transform: uppercase;
     }
