@@ -114,7 +114,7 @@ export async function startGateOver(db: Db, desk: SiteDesk, siteIds: readonly [n
     nowMs: Date.now,
     noteKeyUse: (keyId: number) => {
       keyUses.push(keyId);
-      keepKeyUse({ db, nowMs: Date.now }, keyId);
+      keepKeyUse({ db, log: ground.log, nowMs: Date.now }, keyId);
     },
     origin: `http://127.0.0.1:${port}`,
     production: false,
