@@ -29,7 +29,8 @@ export const absent = (): Refusal => new Refusal(404, 'Not found', 'There is no 
 
 export const forbidden = (): Refusal => new Refusal(403, 'Not allowed', 'None of your roles there lets you do this.');
 
-export const signInFirst = (): Refusal => new Refusal(401, 'Not signed in', 'Sign in to do this; a session whose ten minutes are over is renewed by POST /api/refresh.');
+export const signInFirst = (): Refusal =>
+  new Refusal(401, 'Not signed in', 'Sign in to do this; a session whose ten minutes are over is renewed by POST /api/refresh.');
 
 export const stale = (): Refusal =>
   new Refusal(409, 'Changed meanwhile', 'Someone changed this after you read it: read it again, and decide anew.', { where: 'version' });
