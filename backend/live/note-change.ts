@@ -1,9 +1,24 @@
-import { eq } from 'drizzle-orm';
-import { changeHeads, changes } from '#schema/changes';
 import { type CHANGE_KINDS } from '#schema/words';
-import { noteOf, type Tx } from '../writer/commit';
+import { type Db } from '../db';
+import { databaseOf, noteOf, type Tx } from '../writer/commit';
 
 export type ChangeKind = (typeof CHANGE_KINDS)[number];
+
+const statementsOf = new WeakMap<Db, ReturnType<typeof prepared>>();
+
+/** Prepared once a database: a change is numbered at every group of records. */
+function statements(db: Db): ReturnType<typeof prepared> {
+  const found = statementsOf.get(db) ?? prepared(db);
+  statementsOf.set(db, found);
+  return found;
+}
+
+const prepared = ({ $client: client }: Db) => ({
+  next: client.prepare<[number], number>('SELECT last + 1 FROM change_heads WHERE network_id = ?').pluck(),
+  insert: client.prepare<[number, number, number, ChangeKind, string]>(
+    'INSERT INTO changes (network_id, number, at_ms, kind, body) VALUES (?, ?, ?, ?, ?)',
+  ),
+});
 
 /**
  * Numbers a change of a network, in the transaction that makes it.
@@ -16,12 +31,10 @@ export type ChangeKind = (typeof CHANGE_KINDS)[number];
  * @returns the change's number
  */
 export function noteChange(tx: Tx, networkId: number, kind: ChangeKind, body: object, atMs: number): number {
-  const head = tx.select({ last: changeHeads.last }).from(changeHeads).where(eq(changeHeads.networkId, networkId)).get();
-  if (!head) throw new Error(`network ${networkId} has no numbering of changes`);
-  const number = head.last + 1;
-  tx.insert(changes)
-    .values({ networkId, number, atMs, kind, body: JSON.stringify(body) })
-    .run(); // the head follows by itself
+  const { next, insert } = statements(databaseOf(tx));
+  const number = next.get(networkId);
+  if (number === undefined) throw new Error(`network ${networkId} has no numbering of changes`);
+  insert.run(networkId, number, atMs, kind, JSON.stringify(body)); // the head follows by itself
   noteOf(tx, { networkId, kind, number });
   return number;
 }

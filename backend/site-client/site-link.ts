@@ -107,10 +107,10 @@ export async function openLink(
       ended(told ?? lost(`no answer to ${name} came within ${ANSWER_MS / 1000} s`));
       return undefined;
     }
-    const refusal = siteRefusal.safeParse(answer);
-    if (refusal.success) return refusal.data;
     const found = schema.safeParse(answer);
     if (found.success) return found.data;
+    const refusal = siteRefusal.safeParse(answer);
+    if (refusal.success) return refusal.data;
     ended({ why: `the server answered ${name} in a way that this client does not know`, isForGood: true, retryAfterMs: 0 });
     return undefined;
   };

@@ -30,27 +30,44 @@ export interface Committed {
 export type CommitListener = (committed: Committed) => void;
 
 interface Noted {
+  readonly db: Db;
   readonly changes: NotedChange[];
   readonly revoked: Revoked[];
 }
 
 const notedBy = new WeakMap<Tx, Noted>();
+/** What is noted in the transaction that a database has open. */
+const openIn = new WeakMap<Db, Noted>();
 const listenersOf = new WeakMap<Db, Set<CommitListener>>();
 
 /**
  * Does work in one transaction (BEGIN IMMEDIATE), and once it is committed tells the listeners of this database what was noted in it. The one
- * way to a transaction that notes a change or a revocation.
+ * way to a transaction that notes a change or a revocation. Within the work of another one it is a part of that: undone by itself, committed with
+ * it, and told when that is committed.
  *
  * @param db the writing connection
  * @param work synchronous; what it throws undoes the whole, and nobody is told; a lost write ends the process, whoever catches it
  * @returns what the work returns
  */
 export function commit<T>(db: Db, work: (tx: Tx) => T): T {
-  const noted: Noted = { changes: [], revoked: [] };
-  const value = inTransaction(db, (tx) => {
-    notedBy.set(tx, noted);
-    return work(tx);
-  });
+  const outer = openIn.get(db);
+  const noted: Noted = { db, changes: [], revoked: [] };
+  openIn.set(db, noted);
+  let value: T;
+  try {
+    value = inTransaction(db, (tx) => {
+      notedBy.set(tx, noted);
+      return work(tx);
+    });
+  } finally {
+    if (outer) openIn.set(db, outer);
+    else openIn.delete(db);
+  }
+  if (outer) {
+    outer.changes.push(...noted.changes);
+    outer.revoked.push(...noted.revoked);
+    return value;
+  }
   if (noted.changes.length > 0 || noted.revoked.length > 0) for (const listener of listenersOf.get(db) ?? []) tell(listener, noted);
   return value;
 }
@@ -93,6 +110,9 @@ export function onCommitted(db: Db, listener: CommitListener): () => void {
 
 /** Notes a change in the transaction that `commit` handed out; `noteChange` does so. */
 export const noteOf = (tx: Tx, change: NotedChange): number => notedIn(tx).changes.push(change);
+
+/** The database of a transaction that `commit` handed out, for statements that are prepared once. */
+export const databaseOf = (tx: Tx): Db => notedIn(tx).db;
 
 /** Notes in a transaction that something was revoked, for whoever holds a socket by it. */
 export const noteRevoked = (tx: Tx, revoked: Revoked): number => notedIn(tx).revoked.push(revoked);

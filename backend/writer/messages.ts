@@ -8,7 +8,7 @@ type AnyQuestion = {
   [K in QuestionKind]: { readonly is: 'question'; readonly id: number; readonly kind: K; readonly body: Questions[K]['body'] };
 }[QuestionKind];
 
-/** What the writer thread sends back. */
+/** What the writer thread sends back, all that is said in one turn in one message. */
 export type FromWriter =
   | { readonly is: 'ready'; readonly facts: Facts }
   /** It did not begin, for what the server's user can mend. */

@@ -15,7 +15,7 @@ import { type ThreadSources } from './writer-thread';
  * @param sources what the HTTP thread starts it with
  */
 export async function serveThread(port: MessagePort, sources: ThreadSources): Promise<void> {
-  const send = (message: FromWriter): void => port.postMessage(message);
+  const send = togetherTo(port);
   const log = serverLog(sources.config.logLevel, pino.destination({ dest: 2, sync: true }));
   // Here, since an error of the database loses its words between threads.
   process.on('uncaughtExceptionMonitor', (fault) => log.fatal({ err: fault }, 'the writer failed'));
@@ -50,6 +50,24 @@ export async function serveThread(port: MessagePort, sources: ThreadSources): Pr
   async function close(closing: BegunWriter): Promise<void> {
     await closing.close();
     send({ is: 'closed' });
+    send.now();
     port.close();
   }
+}
+
+/**
+ * Sends what is said in one turn as one message: the news of a commit, and the answers of all that it holds. To wake the other thread for each
+ * would cost more than to say it.
+ */
+function togetherTo(port: MessagePort) {
+  let said: FromWriter[] = [];
+  const now = (): void => {
+    if (said.length > 0) port.postMessage(said);
+    said = [];
+  };
+  const send = (message: FromWriter): void => {
+    // A tick that a microtask asks for comes after all microtasks of the turn, in which answers come about.
+    if (said.push(message) === 1) queueMicrotask(() => process.nextTick(now));
+  };
+  return Object.assign(send, { now });
 }

@@ -63,7 +63,8 @@ export function startWriterThread(sources: ThreadSources, broken: (fault: unknow
     worker.on('error', end);
     worker.on('messageerror', end);
     worker.on('exit', () => end(undefined));
-    worker.on('message', (message: FromWriter) => {
+    worker.on('message', (said: readonly FromWriter[]) => said.forEach(hear));
+    function hear(message: FromWriter): void {
       switch (message.is) {
         case 'ready':
           begun = true;
@@ -88,7 +89,7 @@ export function startWriterThread(sources: ThreadSources, broken: (fault: unknow
         case 'closed':
           closed?.();
       }
-    });
+    }
   });
 
   function settle(id: number): Waiting | undefined {

@@ -206,8 +206,28 @@ describe('news of commits', () => {
     const [first, last] = commit(app.ground.db, (tx) => [1, 2].map(() => noteChange(tx, networkId, 'setup', {}, app.ground.nowMs())));
     expect(heard).toEqual([[first, last].map((number) => ({ networkId, kind: 'setup', number }))]);
     await nextTurn();
-    expect(changed).toEqual([{ networkId, last }]);
+    expect(changed[0]).toEqual({ networkId, last }); // what follows from a new set-up may be told by now too
     for (const end of ends) end();
+  });
+
+  it('tell of a transaction within another once that is committed, and of none that was undone', () => {
+    const heard: (readonly NotedChange[])[] = [];
+    const { db, onCommitted, nowMs } = app.ground;
+    const end = onCommitted(({ changes }) => heard.push(changes));
+    const note = (): number => commit(db, (tx) => noteChange(tx, networkId, 'records', {}, nowMs()));
+    const numbers = commit(db, (tx) => {
+      const first = noteChange(tx, networkId, 'records', {}, nowMs());
+      const within = note();
+      const undone = (): never => {
+        throw new Error(`the change ${note()} is undone`);
+      };
+      expect(() => commit(db, undone)).toThrow('is undone');
+      expect(heard).toEqual([]);
+      return [first, within];
+    });
+    end();
+    expect(heard).toEqual([numbers.map((number) => ({ networkId, kind: 'records', number }))]);
+    expect(note()).toBe(numbers[1]! + 1);
   });
 
   it('is not told of what was undone, and cannot be noted past it', () => {
