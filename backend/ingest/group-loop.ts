@@ -33,6 +33,8 @@ export interface LoopSources {
   readonly nowMs: () => number;
   readonly log: Logger;
   readonly tell: (stored: Stored) => void;
+  /** Whether somebody took what is being stored already, inside its transaction. */
+  readonly takeAlong: (stored: Stored) => boolean;
   /** The database cannot be written: the process must end. */
   readonly fatal: (fault: unknown) => void;
 }
@@ -161,12 +163,13 @@ export class GroupLoop {
   }
 
   private commit(work: (nowMs: number, tx: Tx) => void): void {
-    const { db, keeper, notes, nowMs, log, tell } = this.sources;
+    const { db, keeper, notes, nowMs, log, tell, takeAlong } = this.sources;
     const now = nowMs();
     let told: readonly Stored[] = [];
     try {
       commit(db, (tx) => {
         told = writeBooks(this.sources, tx, now, () => work(now, tx)).stored;
+        if (this.waiting.length === 0) told = told.filter((stored) => !takeAlong(stored));
       });
     } catch (fault) {
       keeper.forget();

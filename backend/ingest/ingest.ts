@@ -111,7 +111,8 @@ export function openIngest({ db, log, nowMs, listener, fatal }: IngestSources): 
       log.error({ event: 'ingest:listener', err: fault }, 'who is told of stored records failed');
     }
   };
-  const loop = new GroupLoop({ db, keeper, notes, nowMs, log, tell, fatal });
+  const takeAlong = (stored: Stored): boolean => listener.takeAlong?.(stored) ?? false;
+  const loop = new GroupLoop({ db, keeper, notes, nowMs, log, tell, takeAlong, fatal });
   const sources = { db, keeper, inForce, inGroup };
   connections.endAll('the server ended', nowMs());
 

@@ -25,6 +25,11 @@ export interface Stored {
 export interface StoredListener {
   readonly onStored: (stored: Stored) => void;
   /**
+   * Offered what is being stored, inside its transaction and while nothing else waits to be written. Who takes it (true) is not told of it again:
+   * what they write is committed with it, and what of theirs fails is undone by themselves.
+   */
+  readonly takeAlong?: (stored: Stored) => boolean;
+  /**
    * What a network is reconciled by has changed. Error rows go on; where a site was added, rows of sites have moved and all must be read again.
    * Called before what was computed anew by it is told.
    */

@@ -6,6 +6,7 @@ export interface Gathered {
   readonly canHold: (stored: Stored) => boolean;
   readonly add: (stored: Stored) => void;
   readonly events: () => number;
+  readonly isEmpty: () => boolean;
   /** Each network's, as if one commit had brought it all; nothing is left. */
   readonly take: () => readonly Stored[];
 }
@@ -25,6 +26,7 @@ export function gathered(): Gathered {
       events += stored.arrived.length;
     },
     events: () => events,
+    isEmpty: () => networks.size === 0,
     take: () => {
       const all = [...networks.values()].map(asOne);
       networks = new Map();

@@ -12,6 +12,9 @@ import { type Answers } from './questions';
 const LOOK_FOR_DUE_MS = 1_000; // readings of the future, whose time has come
 const MOST_GATHERED = 4 * MOST_GROUP_ROWS; // events that are searched at once, while more wait to be stored than a transaction takes
 
+/** Events whose search goes into their own transaction: so few that nobody waits long for their answer, and one commit costs more than it. */
+const MOST_ALONG = 100;
+
 /** The way of records in the writer thread: from what a site sends to coincidences. */
 export interface Stream {
   readonly answers: Pick<Answers, 'site:hello' | 'site:batch' | 'site:state' | 'site:bye'>;
@@ -32,7 +35,8 @@ export function openStream(ground: Ground, fatal: (fault: unknown) => void): Str
     if (unsearched.events() > 0 && unsearched.events() < MOST_GATHERED && ingest.waitingRows() >= MOST_GROUP_ROWS) return true;
     return searchGathered() || search.step();
   }, fatal);
-  // The two need each other: the search reads by the ingest's tables, the ingest tells the search. Sites have their answers before the search.
+  // The two need each other: the search reads by the ingest's tables, the ingest tells the search. Under load sites have their answers before the
+  // search; while nothing waits it goes along in the transaction of the records, which saves a commit, and with it time for everybody.
   const listener = {
     onStored: (stored: Stored): void => {
       if (unsearched.canHold(stored)) unsearched.add(stored);
@@ -41,6 +45,12 @@ export function openStream(ground: Ground, fatal: (fault: unknown) => void): Str
         searchOne(stored);
       }
       rest.wake();
+    },
+    takeAlong: (stored: Stored): boolean => {
+      if (stored.arrived.length > MOST_ALONG || !unsearched.isEmpty() || !unsearched.canHold(stored)) return false;
+      searchOne(stored);
+      rest.wake();
+      return true;
     },
     onInForce: (network: Parameters<CoincidenceSearch['onInForce']>[0]): void => {
       searchGathered(); // it was computed by what was in force
