@@ -1,4 +1,6 @@
 import process from 'node:process';
 
-// The development server hands /api on to the server, which listens on PORT.
-export default { '/api': { target: `http://127.0.0.1:${process.env.PORT || 4210}`, secure: false } };
+// The development server hands /api and the socket of browsers on to the server, which listens on PORT.
+const target = `http://127.0.0.1:${process.env.PORT || 4210}`;
+
+export default { '/api': { target, secure: false }, '/live': { target, secure: false, ws: true } };

@@ -11,7 +11,7 @@ import { Icon } from '../ui/icon';
 import { IntervalMark } from '../ui/interval-mark';
 import { DeskEvents } from './desk-events';
 import { DeskPicture } from './desk-picture';
-import { margin, signed } from './figures';
+import { margin, signed, wholeMargin, withUnit } from './figures';
 
 export const HEAD_PX = 44;
 const ROW_PX = { usual: 42, dense: 34 };
@@ -130,7 +130,8 @@ export class EventTable {
           lightNs: pair.distanceM * NS_PER_LIGHT_M,
           halfNs: pair.sigmaGapNs * (this.data.pairs()?.sigmas ?? 3),
         },
-        margin: pair ? `${margin(pair.marginSigma)} \u03c3` : '',
+        margin: pair ? margin(pair.marginSigma) : '',
+        wholeMargin: pair ? wholeMargin(pair.marginSigma) : '',
         isRinged: rings.has(row),
         turnedWith: siteList((turned.get(row) ?? []).map((other) => briefs[other]?.site ?? '')),
         hasTurnedWithOrigin: (turned.get(row) ?? []).includes(this.picture.originRow()),
@@ -154,7 +155,7 @@ export class EventTable {
     if (!(this.picture.turned().get(row) ?? []).includes(other)) return '';
     const aheadMs = this.picture.plane().tMs[other] ?? 0;
     const [first, second] = aheadMs < 0 ? [this.picture.other(), this.picture.origin()] : [this.picture.origin(), this.picture.other()];
-    return `${first?.site ?? ''} now comes ${Math.abs(aheadMs).toFixed(3)} ms before ${second?.site ?? ''}.`;
+    return `${first?.site ?? ''} now comes ${withUnit(Math.abs(aheadMs).toFixed(3), 'ms')} before ${second?.site ?? ''}.`;
   });
 
   protected readonly abs = Math.abs;

@@ -14,7 +14,7 @@ import { DeskLists } from './desk-lists';
 import { DeskPicture } from './desk-picture';
 import { DeskPlace } from './desk-place';
 import { HEAD_PX } from './event-table';
-import { margin, timeText } from './figures';
+import { margin, timeText, wholeMargin } from './figures';
 import { columnsText, type ShownColumn, shownColumns, widthIn } from './set-columns';
 import { SetOrders } from './set-orders';
 
@@ -218,7 +218,8 @@ export class SetTable {
   protected readonly trackId = (_: number, { set, isInner }: Row): string => `${set.id}${isInner ? ' inner' : ''}`;
   protected readonly span = timeText;
   protected readonly lightNs = (distanceM: number): number => distanceM * NS_PER_LIGHT_M;
-  protected readonly marginText = (set: CoincidenceBrief): string => `${margin(set.nearestMarginSigma)} \u03c3`;
+  protected readonly wholeMarginText = (set: CoincidenceBrief): string => wholeMargin(set.nearestMarginSigma);
+  protected readonly marginText = (set: CoincidenceBrief): string => margin(set.nearestMarginSigma);
   protected readonly sitesText = ({ members }: CoincidenceBrief): string =>
     members.slice(0, MOST_SITES).map(({ site }) => site).join(' ') + (members.length > MOST_SITES ? ` +${members.length - MOST_SITES}` : ''); // prettier-ignore
   protected readonly classesText = ({ pairsOf }: CoincidenceBrief): string =>

@@ -1,4 +1,4 @@
-import { margin, plain, timeText } from '../desk/figures';
+import { margin, plain, timeText, withUnit } from '../desk/figures';
 import { type PairSeen } from './pair-seen';
 
 /** A figure that is another than it was. */
@@ -12,10 +12,10 @@ const FIGURES: readonly { readonly what: string; readonly of: (seen: PairSeen) =
   [
     { what: 'class', of: ({ pair }) => pair.class, exact: ({ pair }) => pair.class },
     { what: 'first', of: ({ a }) => a.name, exact: ({ a }) => a.id },
-    { what: 'margin', of: ({ pair }) => `${margin(pair.marginSigma)} \u03c3`, exact: ({ pair }) => pair.marginSigma },
+    { what: 'margin', of: ({ pair }) => margin(pair.marginSigma), exact: ({ pair }) => pair.marginSigma },
     { what: 'time between them', of: ({ pair }) => timeText(pair.dtNs), exact: ({ pair }) => pair.dtNs },
     { what: 'its error', of: ({ pair }) => timeText(pair.sigmaDtNs), exact: ({ pair }) => pair.sigmaDtNs },
-    { what: 'distance', of: ({ pair }) => `${plain(pair.distanceM, 3)} m`, exact: ({ pair }) => pair.distanceM },
+    { what: 'distance', of: ({ pair }) => withUnit(plain(pair.distanceM, 3), 'm'), exact: ({ pair }) => pair.distanceM },
   ];
 
 /** What a pair's page shows otherwise than before; with all digits it is compared, printed as the page prints it. */

@@ -13,15 +13,15 @@ describe('figures of a pair', () => {
   });
 
   it('give lengths as lengths and as light-time', () => {
-    expect(lengthText(10_031_934)).toBe('10\u202f032 km');
-    expect(lengthText(0.4321)).toBe('432.10 mm');
-    expect(lightText(33.463 * LIGHT_MS_M)).toBe('33.463 light-ms');
+    expect(lengthText(10_031_934)).toBe('10\u202f032\u00a0km');
+    expect(lengthText(0.4321)).toBe('432.10\u00a0mm');
+    expect(lightText(33.463 * LIGHT_MS_M)).toBe('33.463\u00a0light-ms');
   });
 
   it('give the interval in squares with its error to the digits that the error leaves', () => {
     // 14.207^2 - 36.354^2 = -1119.7745 by hand.
     const m2 = (14.207 ** 2 - 36.354 ** 2) * LIGHT_MS_M ** 2;
-    expect(intervalText(m2, 15 * LIGHT_MS_M ** 2)).toBe('\u22121120 \u00b1 15 light-ms\u00b2');
+    expect(intervalText(m2, 15 * LIGHT_MS_M ** 2)).toBe('\u22121120\u00a0\u00b1\u00a015\u00a0light-ms\u00b2');
   });
 
   it('carry both lengths into the error of the interval', () => {
@@ -33,9 +33,9 @@ describe('figures of a pair', () => {
     expect(speedText(0)).toBe('0');
     expect(speedText(-0.00042)).toBe('\u22120.00042');
     expect(speedText(0.45)).toBe('+0.450');
-    expect(paceText(1e-4)).toBe('30.0 km/s');
-    expect(paceText(0.6)).toBe('0.600 c');
-    expect(smallTimeText(1e-9)).toBe('< 0.1 ns');
-    expect(smallTimeText(0)).toBe('0.0 ns');
+    expect(paceText(1e-4)).toBe('30.0\u00a0km/s');
+    expect(paceText(0.6)).toBe('0.600\u00a0c');
+    expect(smallTimeText(1e-9)).toBe('<\u00a00.1\u00a0ns');
+    expect(smallTimeText(0)).toBe('0.0\u00a0ns');
   });
 });

@@ -1,5 +1,5 @@
 import { C_M_S } from '#shared/constants';
-import { plain, timeText } from '../desk/figures';
+import { plain, timeText, withUnit } from '../desk/figures';
 
 /** A unit of time, and with light before its name one of length. */
 export interface TimeUnit {
@@ -21,22 +21,22 @@ const SMALLEST: TimeUnit = { name: 'ps', ns: 1e-3 };
 export const unitFor = (ns: number, least = 1): TimeUnit => UNITS.find((unit) => Math.abs(ns) >= least * unit.ns) ?? SMALLEST;
 
 /** A time in the unit that fits; of one that is too short for a figure, that it is so. */
-export const smallTimeText = (ns: number): string => (ns > 0 && ns < LEAST_NS ? `< ${LEAST_NS} ns` : timeText(ns));
+export const smallTimeText = (ns: number): string => (ns > 0 && ns < LEAST_NS ? withUnit(`<\u00a0${LEAST_NS}`, 'ns') : timeText(ns));
 
 /** A length in the unit that fits. */
 export function lengthText(metres: number): string {
   const size = Math.abs(metres);
-  if (size >= 1e6) return `${plain(metres / 1e3, 0)} km`;
-  if (size >= 1e3) return `${plain(metres / 1e3, 3)} km`;
-  if (size >= 1) return `${plain(metres, 2)} m`;
-  return `${plain(metres * 1e3, 2)} mm`;
+  if (size >= 1e6) return withUnit(plain(metres / 1e3, 0), 'km');
+  if (size >= 1e3) return withUnit(plain(metres / 1e3, 3), 'km');
+  if (size >= 1) return withUnit(plain(metres, 2), 'm');
+  return withUnit(plain(metres * 1e3, 2), 'mm');
 }
 
 /** A length as light-time: 33.463 light-ms. */
 export function lightText(metres: number): string {
   const ns = (metres / C_M_S) * 1e9;
   const unit = unitFor(ns);
-  return `${plain(ns / unit.ns, 3)} light-${unit.name}`;
+  return withUnit(plain(ns / unit.ns, 3), `light-${unit.name}`);
 }
 
 /** An interval in squares of the light-time that fits, with its standard error: \u22121119.8 ± 0.2 light-ms\u00b2. */
@@ -46,7 +46,7 @@ export function intervalText(intervalM2: number, sigmaM2: number): string {
   const value = inUnits(intervalM2);
   const sigma = inUnits(sigmaM2);
   const decimals = sigma > 0 ? Math.min(6, Math.max(0, 1 - Math.floor(Math.log10(sigma)))) : 6;
-  return `${plain(value, decimals)} \u00b1 ${plain(sigma, decimals)} light-${unit.name}\u00b2`;
+  return withUnit(`${plain(value, decimals)}\u00a0\u00b1\u00a0${plain(sigma, decimals)}`, `light-${unit.name}\u00b2`);
 }
 
 /** One standard error of (c dt)^2 - d^2, m^2, from those of both lengths, metres. */
@@ -62,5 +62,5 @@ export function speedText(speedC: number): string {
 
 /** How fast a frame is, in the unit that fits: 30.2 km/s, 0.600 c. */
 export function paceText(speedC: number): string {
-  return speedC < 0.01 ? `${((speedC * C_M_S) / 1e3).toFixed(1)} km/s` : `${speedC.toFixed(3)} c`;
+  return speedC < 0.01 ? withUnit(((speedC * C_M_S) / 1e3).toFixed(1), 'km/s') : withUnit(speedC.toFixed(3), 'c');
 }

@@ -14,7 +14,7 @@ import {
 import { Router, RouterLink } from '@angular/router';
 import { C_M_S } from '#shared/constants';
 import { CommandStore } from '../commands/command-store';
-import { margin, plain, signed, timeText } from '../desk/figures';
+import { margin, plain, signed, timeText, wholeMargin, withUnit } from '../desk/figures';
 import { saveFile } from '../desk/save-file';
 import { Diagram } from '../diagrams/diagram';
 import { IntervalDial } from '../diagrams/interval-dial';
@@ -190,7 +190,7 @@ export class PairPage {
       xMs,
       tMs,
       errorMs,
-      errorText: `\u00b1 ${timeText(seen.sigmas * seen.pair.sigmaDtNs)} (${seen.sigmas} \u03c3)`,
+      errorText: `\u00b1 ${timeText(seen.sigmas * seen.pair.sigmaDtNs)} (${withUnit(String(seen.sigmas), '\u03c3')})`,
       turningC: seen.turning?.speedC,
       frames: this.rows(),
     });
@@ -220,6 +220,7 @@ export class PairPage {
   };
 
   protected readonly margin = margin;
+  protected readonly wholeMargin = wholeMargin;
   protected readonly time = smallTimeText;
   protected readonly speed = speedText;
 
@@ -331,7 +332,7 @@ export class PairPage {
     const at = instantText(seen.a.at, this.preferences.scale(), 9);
     const network = this.networks.network()?.name ?? '';
     return [
-      `${network}. ${seen.a.name} at ${at} and ${seen.b.name}, geocentric frame: ${seen.pair.class}, margin ${margin(seen.pair.marginSigma)} \u03c3.`,
+      `${network}. ${seen.a.name} at ${at} and ${seen.b.name}, geocentric frame: ${seen.pair.class}, margin ${wholeMargin(seen.pair.marginSigma)}.`,
       's\u00b2 = (c\u0394t)\u00b2 \u2212 |\u0394x|\u00b2, positive = timelike.',
       window.location.href.slice(0, 160),
     ];

@@ -61,8 +61,8 @@ export function explanation(seen: PairSeen, nameA: string, nameB: string): reado
       phrases.push({
         text:
           reverse > sigmas
-            ? `That ${nameB} did not cause ${nameA} is certain all the same: the reverse margin is ${margin(reverse)} \u03c3.`
-            : `Nor is it certain that ${nameB} did not cause ${nameA}: the reverse margin is ${margin(reverse)} \u03c3.`,
+            ? `That ${nameB} did not cause ${nameA} is certain all the same: the reverse margin is ${margin(reverse)}.`
+            : `Nor is it certain that ${nameB} did not cause ${nameA}: the reverse margin is ${margin(reverse)}.`,
       });
   }
   return phrases;

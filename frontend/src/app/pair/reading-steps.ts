@@ -1,7 +1,7 @@
 import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
 import { RouterLink } from '@angular/router';
 import { type EventInFull, type EventVersion } from '#shared/contract/event-routes';
-import { plain, signed, timeText } from '../desk/figures';
+import { plain, signed, timeText, withUnit } from '../desk/figures';
 import { InstantMark } from '../instants/instant';
 
 const FORMS: Readonly<Record<EventInFull['record']['readingForm'], string>> = {
@@ -36,7 +36,7 @@ export class ReadingSteps {
 
   /** What is taken off, with the sign that it then has: the delay of 153 280 ns makes the instant earlier. */
   protected takenOff(ns: number): string {
-    return `${signed(ns === 0 ? 0 : -ns, 1)} ns`;
+    return withUnit(signed(ns === 0 ? 0 : -ns, 1), 'ns');
   }
 
   protected error(name: 'reading' | 'delay' | 'clock' | 'reference'): string {
