@@ -25,6 +25,7 @@ export interface TurningTick {
 const STEP_C = 0.01;
 const FINE_C = 0.001;
 const EDGE_PX = 16;
+const SLOW_C = 0.0095; // below, a speed of three decimals would say little
 
 /** The speed of the frame along the baseline, turning speeds and frames as ticks. Arrows go by 0.01 c, with Shift by 0.001 c. */
 @Component({
@@ -172,7 +173,9 @@ export class SpeedSlider {
 
   protected readonly gamma = computed(() => 1 / Math.sqrt((1 - this.speedC()) * (1 + this.speedC())));
   protected readonly value = computed(() =>
-    this.speedC() === 0 ? '\u03b2 0' : `\u03b2 ${plain(this.speedC(), 3)}, \u03b3 ${this.gamma().toFixed(3)}`,
+    this.speedC() === 0
+      ? '\u03b2 0'
+      : `\u03b2 ${plain(this.speedC(), Math.abs(this.speedC()) < SLOW_C ? 5 : 3)}, \u03b3 ${this.gamma().toFixed(3)}`,
   );
   protected readonly words = computed(() => {
     if (this.speedC() === 0) return 'at rest in the geocentric frame';
