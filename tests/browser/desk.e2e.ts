@@ -148,6 +148,43 @@ test('is the same view again by its address, and Back replays no drag', async ()
   await expect.poll(() => page.url()).not.toContain('view=baseline&event');
 });
 
+test('is set to a frame of the network, says what of it cannot be drawn, and pins the frame of its slider', async () => {
+  const { first, other } = turningPair();
+  await page.goto(`/desk?view=baseline&event=${first.id}&other=${other.id}`);
+  const chip = page.locator('sw-frame-chip button');
+  await expect(chip).toContainText('Geocentric');
+  await chip.click();
+  await page.getByRole('menuitemradio', { name: 'cmb' }).click();
+  await expect(chip).toContainText('cmb');
+  await expect.poll(() => page.url()).toContain('frame=cmb');
+  // 369.82 km/s against the cosmic background, as measured by Planck (2018 results I, table 3).
+  await expect(page.locator('.limits.off')).toContainText(/cmb moves at 0\.0013\sc, .?0\.00\d\d\sc of it along/);
+  const answer = await ask<PairsOfSet>(`/networks/1/pairs?events=${first.id},${other.id}&frames=cmb`);
+  const [along] = answer.frames.map(({ gamma, gammaBeta }) => {
+    const [a, b] = answer.events.map(({ placeM }) => placeM);
+    const step = a!.map((from, i) => b![i]! - from);
+    return step.reduce((sum, x, i) => sum + x * gammaBeta[i]!, 0) / gamma / Math.hypot(...step);
+  });
+  const slider = page.getByRole('slider');
+  await expect.poll(async () => Number(await slider.getAttribute('aria-valuenow'))).toBeCloseTo(along!, 6);
+
+  await page.goto(`/desk?view=baseline&event=${first.id}&other=${other.id}&speed=0.45`);
+  await expect(chip).toContainText(`toward ${other.site} at 0.450\u00a0c`);
+  await chip.click();
+  await page.getByRole('menuitem', { name: 'Pin this frame' }).click();
+  const code = `to-${other.site}-450`;
+  await expect(page.locator('sw-event-table thead')).toContainText(code);
+  await chip.click();
+  await page.getByRole('menuitemradio', { name: code }).click();
+  await expect(chip).toContainText(code);
+  // The same frame as the slider's, but for the Earth's turning between the two triggers.
+  await expect.poll(async () => Number(await slider.getAttribute('aria-valuenow'))).toBeCloseTo(0.45, 4);
+  await expect(page.locator('sw-event-table tr.other')).toContainText(first.site);
+  await page.getByRole('button', { name: 'Undo' }).click();
+  await expect(page.locator('sw-event-table thead')).not.toContainText(code);
+  await expect(chip).toContainText('Geocentric');
+});
+
 test('is worked by the keyboard alone', async () => {
   await openEvent();
   const diagram = page.locator('sw-diagram > svg');

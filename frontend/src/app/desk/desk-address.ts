@@ -1,6 +1,7 @@
 import { COINCIDENCE_SORTS, type CoincidenceSort } from '#shared/contract/coincidence-routes';
 import { COINCIDENCE_CLASSES, type CoincidenceBrief } from '#shared/contract/coincidence';
 import { type Order, ORDERS } from '#shared/contract/list-query';
+import { isCode } from '#shared/reconcile/code';
 import { type Instant } from '#shared/time/instant';
 
 /** How the desk shows its events: all sites side by side, around one event, or along a baseline. */
@@ -18,6 +19,8 @@ export interface DeskAddress {
   readonly set?: number;
   /** Speed of the frame along the baseline, in c, with its sign. */
   readonly speedC: number;
+  /** Code of the network's frame that the desk is in; the speed is then its own along the baseline. */
+  readonly frame?: string;
   /** How much time is shown from bottom to top, ms. */
   readonly spanMs?: number;
   /** What stands at the top and at the left, from the event on, ms; absent in the middle. */
@@ -59,6 +62,7 @@ export function readDeskAddress(read: Read): DeskAddress {
     other: id('other'),
     set: id('set'),
     speedC: number('speed', -MOST_SPEED_C, MOST_SPEED_C) ?? 0,
+    frame: isCode(read('frame') ?? '') ? (read('frame') ?? undefined) : undefined,
     spanMs: number('span', 1e-3, MOST_MS),
     topMs: number('top', -MOST_MS, MOST_MS),
     leftMs: number('left', -MOST_MS, MOST_MS),
@@ -82,6 +86,7 @@ export function writeDeskAddress(address: DeskAddress): Record<string, string | 
     other: figure(address.other, 0),
     set: figure(address.set, 0),
     speed: address.speedC === 0 ? null : figure(address.speedC, 6),
+    frame: address.frame ?? null,
     span: figure(address.spanMs, 4),
     top: figure(address.topMs, 4),
     left: figure(address.leftMs, 4),

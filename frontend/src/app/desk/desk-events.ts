@@ -19,6 +19,7 @@ import { NO_EVENTS, showEvents, type ShownEvents, type ShownSite } from './shown
 export const USUAL_SPAN_MS = { sites: 20_000, event: 60, baseline: 60 } as const;
 const LEAST_AROUND_MS = 1_000;
 const ASK_PAIRS_AFTER_MS = 120;
+const MOST_ASKED = 19; // frames beside the geocentric one
 const MOST_KEPT = 1_000; // news while a list is read
 
 /** The events of the desk, what the server says of their pairs, and the frames of the network. */
@@ -68,6 +69,15 @@ export class DeskEvents {
     (this.frames.value() ?? [])
       .filter(({ pinned, resolved }) => pinned !== null && resolved !== null)
       .sort((a, b) => (a.pinned ?? 0) - (b.pinned ?? 0)),
+  );
+  /** Those of which pairs are asked: the pinned ones, and the one that the desk is in. */
+  readonly inTables = computed<readonly Frame[]>(
+    () => {
+      const code = this.place.address().frame;
+      const shown = (this.frames.value() ?? []).filter((frame) => frame.code === code && frame.pinned === null && frame.resolved !== null);
+      return [...this.pinned().slice(0, MOST_ASKED - shown.length), ...shown];
+    },
+    { equal: (a, b) => a.length === b.length && a.every((frame, i) => frame === b[i]) },
   );
   /** The coincidences that hold the event around which the desk is. */
   readonly setsOfEvent = new Loader<readonly CoincidenceBrief[]>(async () => {
@@ -165,7 +175,7 @@ export class DeskEvents {
   askPairs(eventIds: readonly number[]): void {
     const networkId = this.networks.network()?.id;
     const known = new Set(this.answered()?.events.map(({ id }) => id));
-    const codes = this.pinned().map(({ code }) => code);
+    const codes = this.inTables().map(({ code }) => code);
     const sameFrames = JSON.stringify(this.answered()?.frames.map(({ code }) => code)) === JSON.stringify(['geocentric', ...codes]);
     if (networkId === undefined || eventIds.length < 2 || (sameFrames && eventIds.every((id) => known.has(id)))) return;
     const key = JSON.stringify([networkId, eventIds, codes]);

@@ -1,7 +1,7 @@
 import { computed, effect, inject, Injectable, signal, untracked } from '@angular/core';
 import { AT_REST } from '#shared/relativity/velocity';
 import { type Speed, speedFromC } from '#shared/relativity/speed';
-import { norm, scale, subtract, type Vec3 } from '#shared/relativity/vector';
+import { dot, norm, scale, subtract, type Vec3 } from '#shared/relativity/vector';
 import { picosecondsBetween } from '#shared/time/instant';
 import { aroundPicture, type SiteAcross } from '../diagrams/around-picture';
 import { baselinePicture } from '../diagrams/baseline-picture';
@@ -25,7 +25,7 @@ const USUAL_SIGMAS = 3;
 const LIMITS = { leastPxPerMs: 0.02, mostPxPerMs: 4e5 };
 const ABOVE = 0.72; // of the box lies above the event: of 60 ms what light needs through the Earth
 const EDGE_ROOM = 0.03; // of the span, above the latest event
-const LEFT = { sites: 78, wide: 60, narrow: 48 };
+const LEFT = { sites: 92, sitesNarrow: 78, wide: 64, narrow: 48 };
 const TOP_PX = 44;
 const BOTTOM_PX = 46;
 export const GUTTER_PX = 84;
@@ -79,8 +79,14 @@ export class DeskPicture {
     const step = subtract(placeOf(this.columns(), other), placeOf(this.columns(), row));
     return norm(step) === 0 ? [1, 0, 0] : scale(1 / norm(step), step);
   });
+  /** The network's frame that the desk is in, with its speed along the baseline; absent at the slider's own speed. */
+  readonly frameShown = computed(() => {
+    const code = this.view() === 'baseline' ? this.place.address().frame : undefined;
+    return code === undefined ? undefined : this.framesAlong().find((frame) => frame.code === code);
+  });
+  readonly speedC = computed(() => this.frameShown()?.velocityC ?? this.place.address().speedC);
   readonly speed = computed<Speed>(() => {
-    const speed = this.view() === 'baseline' ? speedFromC(this.place.address().speedC, 'speed') : undefined;
+    const speed = this.view() === 'baseline' ? speedFromC(this.speedC(), 'speed') : undefined;
     return speed?.ok ? speed.value : { gamma: AT_REST.gamma, gammaBeta: 0 };
   });
 
@@ -119,7 +125,7 @@ export class DeskPicture {
   private readonly size = computed(() => {
     const { widthPx, heightPx, isNarrow } = this.room();
     const isSites = this.view() === 'sites';
-    const left = isNarrow ? (isSites ? LEFT.sites : LEFT.narrow) : isSites ? LEFT.sites : LEFT.wide;
+    const left = isNarrow ? (isSites ? LEFT.sitesNarrow : LEFT.narrow) : isSites ? LEFT.sites : LEFT.wide;
     const sites = this.data.sites().length;
     if (isNarrow) {
       const width = Math.max(200, widthPx - left - 14);
@@ -230,14 +236,18 @@ export class DeskPicture {
       return speedC === undefined ? [] : [{ row, speedC, site: events.briefs[row]?.site ?? '', isMain: row === this.otherRow() }];
     });
   });
-  /** Speeds of the pinned frames along the baseline: by these alone the pair's order goes. */
-  readonly framesAlong = computed(() =>
-    this.data.pinned().flatMap(({ code, name, resolved }) => {
-      const toward = this.toward();
-      const beta = resolved?.betaC;
-      return beta ? [{ code, name, velocityC: beta[0] * toward[0] + beta[1] * toward[1] + beta[2] * toward[2] }] : [];
-    }),
-  );
+  /**
+   * Speeds of the frames in the tables along the baseline: by these alone the pair's order goes. A frame that changes with time is here as
+   * soon as the server has said how it is at these events.
+   */
+  readonly framesAlong = computed(() => {
+    const told = new Map(this.data.pairs()?.frames.map(({ code, gamma, gammaBeta }) => [code, scale(1 / gamma, gammaBeta)]));
+    const toward = this.toward();
+    return this.data.inTables().flatMap(({ code, name, resolved }) => {
+      const beta = told.get(code) ?? (resolved?.isConstant ? resolved.betaC : undefined);
+      return beta ? [{ code, name, speedC: norm(beta), velocityC: dot(beta, toward) }] : [];
+    });
+  });
   /** The same as ticks of the slider, the geocentric frame with them; what is too near another to be told from it is left out. */
   readonly framesOnSlider = computed(() => {
     const ticks: { readonly velocityC: number }[] = [{ velocityC: 0 }];
@@ -319,7 +329,7 @@ export class DeskPicture {
   constructor() {
     effect(() => {
       const [origin, rows, { briefs }] = [this.origin(), this.compared(), this.data.events()];
-      this.data.pinned();
+      this.data.inTables();
       this.data.pairs();
       if (origin) untracked(() => this.data.askPairs([origin.id, ...rows.map((row) => briefs[row]?.id ?? 0)]));
     });

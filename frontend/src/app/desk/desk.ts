@@ -23,6 +23,7 @@ import { pngOf, standaloneSvg } from '../diagrams/picture-file';
 import { instantText } from '../instants/instant-parts';
 import { NetworkStore } from '../networks/network-store';
 import { Preferences } from '../preferences/preferences';
+import { FrameChoice } from '../frames/frame-choice';
 import { Icon } from '../ui/icon';
 import { IntervalMark } from '../ui/interval-mark';
 import { Empty, Fault, Skeleton } from '../ui/states';
@@ -31,12 +32,13 @@ import { ColumnChoice } from './column-choice';
 import { type DeskView } from './desk-address';
 import { DeskEvents } from './desk-events';
 import { csvOf, eventSheet, jsonOf, setSheet } from './desk-export';
+import { DeskFrames } from './desk-frames';
 import { DeskLists } from './desk-lists';
 import { DeskPicture, GUTTER_PX } from './desk-picture';
 import { DeskPlace } from './desk-place';
 import { DESK_SOURCE } from './desk-source';
 import { EventTable } from './event-table';
-import { plain, signed } from './figures';
+import { plain, signed, withUnit } from './figures';
 import { LiveDeskSource } from './live-desk-source';
 import { saveFile } from './save-file';
 import { SetOrders } from './set-orders';
@@ -56,6 +58,7 @@ const SPANS_MS = {
 } as const;
 const FOLDS = [2, 3, 4, 5, 6, 8];
 const NARROW_PX = 700;
+const AT_REST = { speedC: 0, frame: undefined };
 const CLASSES = ['spacelike', 'timelike', 'undecided'] as const;
 
 /** The desk: where people watch, and see an order turn. */
@@ -77,7 +80,7 @@ const CLASSES = ['spacelike', 'timelike', 'undecided'] as const;
     Skeleton,
     SpeedSlider,
   ],
-  providers: [DeskPlace, DeskEvents, DeskLists, DeskPicture, SetOrders, { provide: DESK_SOURCE, useClass: LiveDeskSource }],
+  providers: [DeskPlace, DeskEvents, DeskLists, DeskPicture, DeskFrames, SetOrders, { provide: DESK_SOURCE, useClass: LiveDeskSource }],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './desk.html',
   styleUrl: './desk.scss',
@@ -127,6 +130,7 @@ export class Desk {
     return CLASSES.map((kind) => ({ kind, count: count(kind) }));
   });
   protected readonly classes = CLASSES;
+  protected readonly atRest = AT_REST;
   protected readonly isPaused = computed(() => this.place.address().until !== undefined);
   protected readonly label = computed(() => {
     const count = this.data.events().columns.count;
@@ -136,7 +140,7 @@ export class Desk {
     const what = `${this.picture.compared().length + 1} triggers`;
     if (!this.isBaseline())
       return `${what}; horizontal axis light-time from ${origin?.site ?? ''}, vertical axis time. The table beside it lists the same triggers.`;
-    return `${what} along the baseline from ${origin?.site ?? ''} to ${this.picture.other()?.site ?? ''}, in a frame at ${plain(this.view().speedC, 3)} c along it. The table beside it lists the same triggers in the same order.`;
+    return `${what} along the baseline from ${origin?.site ?? ''} to ${this.picture.other()?.site ?? ''}, in a frame at ${plain(this.picture.speedC(), 3)} c along it. The table beside it lists the same triggers in the same order.`;
   });
   protected readonly chosenSet = computed(() => (this.isSites() ? this.picture.ringedSet() : undefined));
   /** What is said of the event that was chosen beside the one compared with. */
@@ -148,9 +152,9 @@ export class Desk {
     return {
       origin,
       other,
-      dt: seen ? `${signed(((seen.isFirst ? 1 : -1) * seen.pair.dtNs) / 1e6, 3)} ms` : '',
+      dt: seen ? withUnit(signed(((seen.isFirst ? 1 : -1) * seen.pair.dtNs) / 1e6, 3), 'ms') : '',
       class: seen?.pair.class,
-      turning: turning ? `turns at ${turning.speedC.toFixed(3)} c` : '',
+      turning: turning ? `turns at ${withUnit(turning.speedC.toFixed(3), 'c')}` : '',
     };
   });
 
@@ -191,11 +195,14 @@ export class Desk {
       window.addEventListener('resize', measure);
       destroyed.onDestroy(() => window.removeEventListener('resize', measure));
     });
+    const frames = inject(DeskFrames);
+    inject(FrameChoice).offer(frames.offered);
     inject(CommandStore).offer(() => [
+      ...frames.commands(),
       { title: 'Show all sites', section: 'This page', icon: 'radar', key: '1', run: () => this.show('sites') },
       { title: 'Show around an event', section: 'This page', icon: 'radar', key: '2', run: () => this.show('event') },
       { title: 'Show along a baseline', section: 'This page', icon: 'radar', key: '3', run: () => this.show('baseline') },
-      { title: 'Back to the geocentric frame', section: 'This page', icon: 'undo', key: '0', run: () => this.place.go({ speedC: 0 }) },
+      { title: 'Back to the geocentric frame', section: 'This page', icon: 'undo', key: '0', run: () => this.place.go(AT_REST) },
       { title: this.isPaused() ? 'Go on live' : 'Pause', section: 'This page', icon: 'pause', key: 'p', run: () => this.pause() },
       { title: 'Copy the link to this view', section: 'This page', icon: 'link', run: () => this.copyLink() },
       { title: 'Export the table as CSV', section: 'This page', icon: 'download', run: () => this.exportTable('csv') },
@@ -210,13 +217,13 @@ export class Desk {
     // Each view has a sight of its own.
     const sight = { spanMs: undefined, topMs: undefined, leftMs: undefined, until: undefined };
     if (view !== 'sites' && event === undefined) this.place.go({ view, ...sight, event: this.firstEvent() });
-    else this.place.go({ view, ...sight, ...(view === 'sites' && { event: undefined, other: undefined, speedC: 0 }) });
+    else this.place.go({ view, ...sight, ...(view === 'sites' && { event: undefined, other: undefined, ...AT_REST }) });
   }
 
   /** Around the first event of a coincidence, or along its widest pair. */
   protected open(set: CoincidenceBrief, view: DeskView = 'event'): void {
     const [first, last] = [set.members[0], set.members.at(-1)];
-    const sight = { spanMs: undefined, topMs: undefined, leftMs: undefined, until: undefined, speedC: 0 };
+    const sight = { spanMs: undefined, topMs: undefined, leftMs: undefined, until: undefined, ...AT_REST };
     this.place.go({ view, event: first?.eventId, other: view === 'baseline' ? last?.eventId : undefined, set: set.id, ...sight });
   }
 
@@ -225,7 +232,7 @@ export class Desk {
   }
 
   protected around(eventId: number): void {
-    this.place.go({ view: 'event', event: eventId, other: undefined, set: undefined, topMs: undefined, leftMs: undefined, speedC: 0 });
+    this.place.go({ view: 'event', event: eventId, other: undefined, set: undefined, topMs: undefined, leftMs: undefined, ...AT_REST });
   }
 
   /** A mark or row was chosen. */
@@ -293,7 +300,7 @@ export class Desk {
     const at = instantText(origin?.at ?? this.picture.laneOrigin(), this.preferences.scale(), 9);
     const network = this.networks.network()?.name ?? '';
     const view = VIEWS.find(({ value }) => value === this.picture.view())?.word ?? '';
-    const frame = this.view().speedC === 0 ? 'Geocentric frame' : `Frame at ${plain(this.view().speedC, 3)} c along the baseline`;
+    const frame = this.picture.speedC() === 0 ? 'Geocentric frame' : `Frame at ${plain(this.picture.speedC(), 3)} c along the baseline`;
     const what = origin ? `${origin.name} at ${at}` : `up to ${at}`;
     const along = this.isBaseline() ? `, toward ${this.picture.other()?.name ?? ''}` : '';
     return [`${network}. ${view}: ${what}`, `${frame}${along}`, window.location.href.slice(0, 160)];

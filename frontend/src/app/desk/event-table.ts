@@ -11,9 +11,10 @@ import { Icon } from '../ui/icon';
 import { IntervalMark } from '../ui/interval-mark';
 import { DeskEvents } from './desk-events';
 import { DeskPicture } from './desk-picture';
-import { margin, signed, wholeMargin, withUnit } from './figures';
+import { margin, plain, signed, wholeMargin, withUnit } from './figures';
 
 export const HEAD_PX = 44;
+const ACROSS_C = 1e-9; // of a frame along the baseline, as rounding leaves it
 const ROW_PX = { usual: 42, dense: 34 };
 
 /** The events beside the diagram around one of them or along a baseline: newest first, as their marks stand. */
@@ -156,6 +157,18 @@ export class EventTable {
     const aheadMs = this.picture.plane().tMs[other] ?? 0;
     const [first, second] = aheadMs < 0 ? [this.picture.other(), this.picture.origin()] : [this.picture.origin(), this.picture.other()];
     return `${first?.site ?? ''} now comes ${withUnit(Math.abs(aheadMs).toFixed(3), 'ms')} before ${second?.site ?? ''}.`;
+  });
+
+  /** What cannot be drawn of the frame that was chosen: its motion across the baseline. */
+  protected readonly offBaseline = computed(() => {
+    const frame = this.picture.frameShown();
+    if (!frame || frame.speedC - Math.abs(frame.velocityC) < ACROSS_C) return '';
+    const [from, to] = [this.picture.origin()?.site ?? '', this.picture.other()?.site ?? ''];
+    const speed = (c: number): string => withUnit(plain(c, 4), 'c');
+    return (
+      `${frame.code} moves at ${speed(frame.speedC)}, ${speed(frame.velocityC)} of it along ${from} to ${to}: the diagram, the times and ` +
+      `'here' have that part alone, which gives the order of ${from} and ${to} exactly. Its exact orders of all stand under ${frame.code}.`
+    );
   });
 
   protected readonly abs = Math.abs;

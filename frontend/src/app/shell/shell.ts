@@ -14,11 +14,11 @@ import { NetworkStore } from '../networks/network-store';
 import { AskPassword } from '../session/ask-password';
 import { SessionStore } from '../session/session-store';
 import { TableWarnings } from '../tables/table-warnings';
-import { FrameGlyph } from '../ui/frame-glyph';
 import { Icon } from '../ui/icon';
 import { OpenDialog } from '../ui/open-dialog';
 import { Wordmark } from '../ui/wordmark';
 import { ConnectionMark } from './connection-mark';
+import { FrameChip } from './frame-chip';
 import { FIRST_STEPS, type Place, PLACES } from './navigation';
 import { NetworkChooser } from './network-chooser';
 
@@ -31,7 +31,7 @@ const THEME_WORDS: Readonly<Record<Theme, string>> = { system: 'as the system', 
   selector: 'sw-shell',
   imports: [
     ConnectionMark,
-    FrameGlyph,
+    FrameChip,
     Icon,
     NetworkChooser,
     OfflineBanner,
