@@ -35,7 +35,7 @@ export function checkTrailAtStart(ground: Sources & Pick<Ground, 'log'>): () => 
   verdict.then(
     (found) => {
       if (found?.fault) log.error({ event: 'audit:broken', ...found.fault }, brokenText(found.fault));
-      else if (found) log.info({ event: 'audit:checked', entries: found.sound }, 'the audit trail is as it was written');
+      else if (found) log.debug({ event: 'audit:checked', entries: found.sound }, 'the audit trail is as it was written');
     },
     (fault: unknown) => log.error({ err: fault }, 'the audit trail could not be checked'),
   );
