@@ -1,3 +1,4 @@
+import { type Readable } from 'node:stream';
 import { compareText } from '#shared/compare-text';
 import { type SiteWelcome } from '#shared/contract/site-socket';
 import { type SiteRecord } from '#shared/contract/site-record';
@@ -5,9 +6,10 @@ import { compareInstants, type Instant } from '#shared/time/instant';
 import { createReadingParser } from '#shared/time/reading';
 import { SCALES } from '#shared/time/scales';
 import { shippedLeapSeconds } from '#shared/time/shipped-leap-seconds';
+import { taiOf } from '../ingest/server-time';
 import { SiteClient, SiteStreamRefused, type FinalFate } from '../site-client/site-client';
 import { VERSION } from '../version';
-import { blocksOf, followed } from './feed-source';
+import { blocksOf, followed, partsOf } from './feed-source';
 import { FeedLines, type FedRecord } from './feed-lines';
 import { grouped, type Progress } from './progress';
 import { checkReadable, readOption } from './readable-file';
@@ -31,7 +33,7 @@ export interface FeedOptions {
 /** The world around the command. */
 export interface FeedContext {
   readonly env: Readonly<Record<string, string | undefined>>;
-  readonly input: AsyncIterable<Buffer>;
+  readonly input: Readable;
   readonly signal: AbortSignal;
   readonly progress: Progress;
   readonly say: (line: string) => void;
@@ -51,6 +53,7 @@ export async function feed(options: FeedOptions, context: FeedContext): Promise<
     throw new UsageProblem('--follow: standard input is followed by itself; name a file');
   const sizeBytes = options.log === STANDARD_INPUT ? 0 : checkReadable(options.log);
   let account = new Account();
+  let [isOut, wasIn] = [false, false];
   const client = new SiteClient({
     url,
     key,
@@ -58,17 +61,26 @@ export async function feed(options: FeedOptions, context: FeedContext): Promise<
     onFate: (record, fate) => account.take(record, fate),
     onLink: (news) => {
       if (news.is === 'lost') say(`skewline: ${news.why}; trying again in ${(news.againInMs / 1000).toFixed(1)} s`);
+      else if (isOut) say(`skewline: connected${wasIn ? ' again' : ''}`);
+      wasIn ||= news.is === 'open';
+      isOut = news.is === 'lost';
     },
   });
+  const refused = new AbortController();
+  client.refusal().catch(() => refused.abort()); // told where the client is asked next
+  const over = AbortSignal.any([signal, refused.signal]);
   const stopped = new Promise<void>((resolve) => signal.addEventListener('abort', () => resolve(), { once: true }));
   try {
     const welcome = await Promise.race([client.welcome(), stopped]);
     if (!welcome) throw new Error('stopped; nothing was sent');
     if (options.complete) account = new Account(parserFor(welcome));
     progress.begin('sending, bytes', sizeBytes);
-    const isWhole = await sendAll(options, { ...context, client, welcome, account, stopped });
+    const isWhole = await sendAll(options, { ...context, client, welcome, account, over });
     const late = new Promise<void>((resolve) => void stopped.then(() => setTimeout(resolve, FINISH_MS).unref()));
-    if (isWhole && account.latest) await Promise.race([client.state({ completeTo: account.latest }), stopped]);
+    if (isWhole && options.complete) {
+      await Promise.race([client.drained(), late]);
+      if (account.latest) await Promise.race([client.state({ completeTo: account.latest }), late]);
+    }
     await Promise.race([client.finish(), late]);
     progress.end();
     const unanswered = client.stop();
@@ -77,8 +89,10 @@ export async function feed(options: FeedOptions, context: FeedContext): Promise<
       throw new Error('stopped before the end of the log; feed it again: what is known is not doubled');
   } catch (fault) {
     progress.end();
-    client.stop();
-    throw fault instanceof SiteStreamRefused ? new UsageProblem(fault.message) : fault;
+    const unanswered = client.stop();
+    if (!(fault instanceof SiteStreamRefused)) throw fault;
+    const told = fault.message.replace(/\.$/, '');
+    throw new UsageProblem(account.isBegun ? `${told}; ${account.closingLine(unanswered)}` : told);
   }
 }
 
@@ -86,29 +100,30 @@ interface Sending extends FeedContext {
   readonly client: SiteClient;
   readonly welcome: SiteWelcome;
   readonly account: Account;
-  readonly stopped: Promise<void>;
+  /** Aborted when the command is told to stop, and when the server will have no more. */
+  readonly over: AbortSignal;
 }
 
 /** Sends the whole log; false when it was stopped before its end. */
 async function sendAll({ log, follow, resume }: FeedOptions, sending: Sending): Promise<boolean> {
-  const { client, welcome, account, signal, progress, say, stopped } = sending;
+  const { client, welcome, account, over, progress, say } = sending;
   const name = log === STANDARD_INPUT ? 'standard input' : log;
   let lines = new FeedLines(name, welcome.site, say);
   let doneBytes = 0;
   const send = async (records: readonly FedRecord[]): Promise<void> => {
     for (const { record } of records) {
-      if (signal.aborted) return;
+      if (over.aborted) return;
       if (resume && client.holds(record.series, record.sequence)) {
         account.leaveOut(record);
         continue;
       }
-      account.send(record);
-      await Promise.race([client.push(record), stopped]);
+      account.send();
+      await untilAborted(client.push(record), over);
     }
   };
-  const parts = log === STANDARD_INPUT ? sending.input : follow ? followed(log, signal) : blocksOf(log);
+  const parts = log === STANDARD_INPUT ? partsOf(sending.input, over) : follow ? followed(log, over) : blocksOf(log);
   for await (const part of parts) {
-    if (signal.aborted) return false;
+    if (over.aborted) return false;
     if (Buffer.isBuffer(part)) {
       await send(lines.add(part));
       progress.at((doneBytes += part.length));
@@ -119,36 +134,54 @@ async function sendAll({ log, follow, resume }: FeedOptions, sending: Sending): 
     if (!part.isCutShort) await send(lines.end());
     lines = new FeedLines(name, welcome.site, say);
   }
-  if (signal.aborted) return false;
+  if (over.aborted) return false;
   await send(lines.end());
   return true;
 }
 
+/** Waits for the work or the signal, and leaves nothing behind on the signal: a race with one promise would keep a little of every record. */
+async function untilAborted(work: Promise<void>, signal: AbortSignal): Promise<void> {
+  let leave = (): void => undefined;
+  const aborted = new Promise<void>((resolve) => (leave = resolve));
+  signal.addEventListener('abort', leave);
+  try {
+    await Promise.race([work, aborted]);
+  } finally {
+    signal.removeEventListener('abort', leave);
+  }
+}
+
 /** What was read, sent, and what became of it. */
 class Account {
-  /** The latest reading, as the site's own clock and scale have it. */
+  /** The latest reading that the server has, as the site's own clock and scale have it; of what is set aside none counts. */
   latest: Instant | undefined;
   private readonly counts = { sent: 0, stored: 0, known: 0, unsendable: 0 };
   private heldAlready = 0;
+  private readonly leapSeconds = shippedLeapSeconds();
   private readonly setAside = new Map<string, number>();
   private firstUnsendable = '';
 
   /** @param parse reads readings, where the latest is asked for */
   constructor(private readonly parse?: ReturnType<typeof createReadingParser>) {}
 
-  leaveOut(record: SiteRecord): void {
-    this.heldAlready++;
-    this.look(record);
+  get isBegun(): boolean {
+    return this.counts.sent > 0 || this.heldAlready > 0;
   }
 
-  send(record: SiteRecord): void {
+  leaveOut(record: SiteRecord): void {
+    this.heldAlready++;
+    this.lookBack(record);
+  }
+
+  send(): void {
     this.counts.sent++;
-    this.look(record);
   }
 
   take(record: SiteRecord, fate: FinalFate): void {
     if (fate.fate === 'set-aside') this.setAside.set(fate.reason, (this.setAside.get(fate.reason) ?? 0) + 1);
     else this.counts[fate.fate]++;
+    if (fate.fate === 'stored') this.look(record);
+    else if (fate.fate === 'known') this.lookBack(record);
     if (fate.fate === 'unsendable') this.firstUnsendable ||= `the record ${record.sequence.slice(0, 40)}: ${fate.detail}`;
   }
 
@@ -168,9 +201,14 @@ class Account {
       .join('');
   }
 
-  private look({ reading }: SiteRecord): void {
+  /** A record that the server had before may be set aside there: one of the future says nothing of what is complete. */
+  private lookBack(record: SiteRecord): void {
+    if (this.parse) this.look(record, taiOf(Date.now(), this.leapSeconds));
+  }
+
+  private look({ reading }: SiteRecord, most?: Instant): void {
     const found = this.parse?.(reading);
-    if (found === undefined || typeof found === 'string') return;
+    if (found === undefined || typeof found === 'string' || (most && compareInstants(found, most) > 0)) return;
     if (!this.latest || compareInstants(found, this.latest) > 0) this.latest = { taiS: found.taiS, ps: found.ps };
   }
 }
@@ -183,7 +221,13 @@ function parserFor({ scale, site }: SiteWelcome): ReturnType<typeof createReadin
 }
 
 function serverOf(text: string): string {
-  if (URL.canParse(text) && /^https?:$/.test(new URL(text).protocol)) return new URL(text).origin;
+  if (URL.canParse(text) && /^https?:$/.test(new URL(text).protocol)) {
+    const { origin, href } = new URL(text);
+    if (href === `${origin}/`) return origin;
+    throw new UsageProblem(
+      `--server: ${JSON.stringify(text)} has more than scheme, host and port; it must be the address alone: ${origin}`,
+    );
+  }
   throw new UsageProblem(
     `--server: ${JSON.stringify(text)} cannot be used; it must be the server's address, such as http://127.0.0.1:4210`,
   );

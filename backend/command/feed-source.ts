@@ -1,4 +1,5 @@
 import { closeSync, fstatSync, openSync, readSync, statSync } from 'node:fs';
+import { addAbortSignal, type Readable } from 'node:stream';
 import { setTimeout as wait } from 'node:timers/promises';
 
 const BLOCK_BYTES = 1 << 17;
@@ -58,5 +59,15 @@ export async function* followed(path: string, signal: AbortSignal): AsyncGenerat
     }
   } finally {
     closeSync(descriptor);
+  }
+}
+
+/** What a stream brings, until the signal is aborted: then it is closed, since whoever waits for its next part might wait for ever. */
+export async function* partsOf(input: Readable, signal: AbortSignal): AsyncGenerator<Buffer> {
+  const parts: AsyncIterable<Buffer> = addAbortSignal(signal, input);
+  try {
+    yield* parts;
+  } catch (fault) {
+    if (!signal.aborted) throw fault;
   }
 }

@@ -107,6 +107,15 @@ export class SiteClient {
     return this.firstWelcome;
   }
 
+  /**
+   * Waits, as long as the client lasts, for the stream to end for good: for who waits for records to come meanwhile.
+   *
+   * @throws SiteStreamRefused
+   */
+  async refusal(): Promise<void> {
+    await this.until(() => false);
+  }
+
   /** Whether the server held a record of this number when the link was first opened: a reason not to send it again. */
   holds(series: string, sequence: string): boolean {
     return this.firstWelcome !== undefined && heldBy(this.firstWelcome.series, series, sequence);
@@ -141,12 +150,21 @@ export class SiteClient {
   }
 
   /**
-   * Waits until every record is answered, and ends the link.
+   * Waits until everything is answered.
+   *
+   * @throws SiteStreamRefused
+   */
+  async drained(): Promise<void> {
+    await this.until(() => this.backlog.length === 0 && this.again.length === 0 && this.sent.size === 0);
+  }
+
+  /**
+   * Waits until everything is answered, and ends the link.
    *
    * @throws SiteStreamRefused
    */
   async finish(): Promise<void> {
-    await this.until(() => this.backlog.length === 0 && this.again.length === 0 && this.sent.size === 0);
+    await this.drained();
     this.stop();
   }
 
@@ -186,7 +204,8 @@ export class SiteClient {
     const found = await openLink(this.options, { onCredit: () => this.soon(), onEnd: (end) => this.lost(end) });
     if (!('welcome' in found)) {
       this.failures++;
-      this.lost(found);
+      // A server that was there before may be away, with something else in its place; one that never was is at another address.
+      this.lost({ ...found, isForGood: found.isForGood || (found.isOther === true && !this.firstWelcome) });
       return;
     }
     if (this.isEnding) {

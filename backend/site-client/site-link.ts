@@ -13,6 +13,7 @@ import {
   type SiteRequestName,
   type SiteWelcome,
 } from '#shared/contract/site-socket';
+import { unreachable } from './unreachable';
 
 const CONNECT_MS = 10_000;
 const ANSWER_MS = 30_000;
@@ -23,6 +24,8 @@ export interface LinkEnd {
   readonly isForGood: boolean;
   /** What the server asked to wait at least; 0 for nothing. */
   readonly retryAfterMs: number;
+  /** Whether something answers at the address that is no server of this protocol. */
+  readonly isOther?: boolean;
 }
 
 /** A connection that was welcomed. */
@@ -45,6 +48,16 @@ export interface LinkListener {
   readonly onEnd: (end: LinkEnd) => void;
 }
 
+/** What socket.io calls the ends of a link, in words. */
+const ENDS: Readonly<Record<string, string>> = {
+  'transport close': 'the link was lost',
+  'transport error': 'the link was lost',
+  'ping timeout': 'nothing was heard from the server any more',
+  'io server disconnect': 'the server ended the link',
+  'parse error': 'the server sent what cannot be read',
+};
+
+const lostAs = (reason: string): LinkEnd => lost(ENDS[reason] ?? reason);
 const lost = (why: string, retryAfterMs = 0): LinkEnd => ({ why, isForGood: false, retryAfterMs });
 export const sumOf = (a: SiteCredit, b: SiteCredit): SiteCredit => ({ records: a.records + b.records, bytes: a.bytes + b.bytes });
 const isForGood = (code: SiteRefusal['code']): boolean => code === 'refused' || code === 'protocol';
@@ -69,7 +82,7 @@ export async function openLink(
     reconnection: false,
     forceNew: true,
   });
-  const refusedAt = await connected(socket);
+  const refusedAt = await connected(socket, new URL(url).origin);
   if (refusedAt) {
     socket.disconnect();
     return refusedAt;
@@ -84,7 +97,7 @@ export async function openLink(
   let told: LinkEnd | undefined;
   let link: SiteLink | undefined;
   let early: SiteCredit = { records: 0, bytes: 0 }; // may come before the welcome is read
-  socket.on('disconnect', (why) => ended(told ?? lost(why)));
+  socket.on('disconnect', (reason) => ended(told ?? lostAs(reason)));
   hear(socket, 'stream:refused', SITE_NEWS['stream:refused'], ({ text }) => ended({ why: text, isForGood: true, retryAfterMs: 0 }));
   hear(socket, 'stream:ended', SITE_NEWS['stream:ended'], ({ text, retryAfterMs }) => {
     told = lost(text, retryAfterMs);
@@ -131,19 +144,22 @@ export async function openLink(
 }
 
 /** Undefined once the server has let the socket in; else why it did not. A link may be lost before that, and may carry nothing. */
-function connected(socket: Socket): Promise<LinkEnd | undefined> {
+function connected(socket: Socket, origin: string): Promise<LinkEnd | undefined> {
   return new Promise((resolve) => {
-    const timer = setTimeout(() => done(lost(`the server did not let the site in within ${CONNECT_MS / 1000} s`)), CONNECT_MS);
+    const timer = setTimeout(() => done(lost(`${origin} did not let the site in within ${CONNECT_MS / 1000} s`)), CONNECT_MS);
     const done = (end?: LinkEnd): void => {
       clearTimeout(timer);
       resolve(end);
     };
     socket.once('connect', () => done());
-    socket.once('disconnect', (why) => done(lost(why)));
+    socket.once('disconnect', (reason) => done(lostAs(reason)));
     socket.once('connect_error', (fault: Error & { data?: unknown }) => {
       const { data, success } = siteConnectRefusal.safeParse(fault.data);
       if (success) done({ why: data.text, isForGood: isForGood(data.code), retryAfterMs: data.retryAfterMs ?? 0 });
-      else done(lost('the server cannot be reached'));
+      else {
+        const { why, isOther } = unreachable(fault, origin);
+        done({ ...lost(why), isOther });
+      }
     });
   });
 }
