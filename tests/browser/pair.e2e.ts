@@ -71,6 +71,8 @@ test.afterAll(async () => {
   await server.stop();
 });
 
+const shortOf = (sigma: number): number => Number(Math.abs(sigma) < 1_000 ? sigma.toFixed(1) : sigma.toPrecision(3));
+
 test('says in a sentence that the order depends on the frame, with the figures of the server', async () => {
   const [a, b] = idsAt(0);
   await page.goto(`/pair/${b}/${a}?set=${set.id}`);
@@ -79,8 +81,13 @@ test('says in a sentence that the order depends on the frame, with the figures o
   const pair = pairs[0]!;
   await expect(page).toHaveTitle(`${events[0]!.name} and ${events[1]!.name}: Skewline`);
   const verdict = page.locator('header.verdict');
-  expect(figure(await verdict.getByText(/^margin/).textContent())).toBeCloseTo(Number(pair.marginSigma), 0);
-  expect(figure(await verdict.getByText(/^reverse margin/).textContent())).toBeCloseTo(Number(pair.reverseMarginSigma), 0);
+  // Above 1,000 three digits are shown, and all of them in the title.
+  const margin = verdict.getByText(/^margin/);
+  expect(figure(await margin.textContent())).toBe(shortOf(Number(pair.marginSigma)));
+  expect(figure(await margin.getAttribute('title'))).toBeCloseTo(Number(pair.marginSigma), 0);
+  const reverse = verdict.getByText(/^reverse margin/);
+  expect(figure(await reverse.textContent())).toBe(shortOf(Number(pair.reverseMarginSigma)));
+  expect(figure(await reverse.locator('.figure').getAttribute('title'))).toBeCloseTo(Number(pair.reverseMarginSigma), 0);
   await expect(verdict).toContainText(`Turning speed ${pair.turning!.speedC.toFixed(3)} c, counted from the geocentric frame`);
   expect(figure(await page.locator('.orders b.turning').textContent())).toBeCloseTo(pair.turning!.speedC, 3);
   const [geocentric] = pair.orders;
