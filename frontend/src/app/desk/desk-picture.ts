@@ -25,11 +25,11 @@ const USUAL_SIGMAS = 3;
 const LIMITS = { leastPxPerMs: 0.02, mostPxPerMs: 4e5 };
 const ABOVE = 0.72; // of the box lies above the event: of 60 ms what light needs through the Earth
 const EDGE_ROOM = 0.03; // of the span, above the latest event
-const LEFT = { sites: 92, sitesNarrow: 78, wide: 64, narrow: 48 };
+const LEFT = { sites: 86, sitesNarrow: 78, wide: 64, narrow: 48 };
 const TOP_PX = 44;
 const BOTTOM_PX = 46;
 export const GUTTER_PX = 84;
-const LANE_PX = 40;
+const LANE_PX = 39;
 const AT_MOST_ACROSS = 0.45; // of the page is the diagram's
 const AROUND_MS = 43; // light through the Earth and a little more
 

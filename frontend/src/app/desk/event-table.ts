@@ -165,9 +165,11 @@ export class EventTable {
     if (!frame || frame.speedC - Math.abs(frame.velocityC) < ACROSS_C) return '';
     const [from, to] = [this.picture.origin()?.site ?? '', this.picture.other()?.site ?? ''];
     const speed = (c: number): string => withUnit(plain(c, 4), 'c');
+    const { isNarrow } = this.picture.room();
     return (
-      `${frame.code} moves at ${speed(frame.speedC)}, ${speed(frame.velocityC)} of it along ${from} to ${to}: the diagram, the times and ` +
-      `'here' have that part alone, which gives the order of ${from} and ${to} exactly. Its exact orders of all stand under ${frame.code}.`
+      `${frame.code} moves at ${speed(frame.speedC)}, ${speed(frame.velocityC)} of it along ${from} to ${to}: the diagram` +
+      `${isNarrow ? ' and the times' : ", the times and 'here'"} have that part alone, which gives the order of ${from} and ${to} exactly. ` +
+      (isNarrow ? 'A wider window has its exact orders of all.' : `Its exact orders of all stand under ${frame.code}.`)
     );
   });
 

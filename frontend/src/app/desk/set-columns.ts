@@ -11,10 +11,10 @@ export interface SetColumn {
 
 /** The columns that every network has, in their usual order; one for each pinned frame follows. */
 export const SET_COLUMNS: readonly SetColumn[] = [
-  { name: 'time', head: 'First trigger', widthPx: 138, sort: 'time' },
-  { name: 'sites', head: 'Sites', widthPx: 104 },
+  { name: 'time', head: 'First trigger', widthPx: 134, sort: 'time' },
+  { name: 'sites', head: 'Sites', widthPx: 100 },
   { name: 'fold', head: 'Fold', widthPx: 48, sort: 'fold', isRight: true },
-  { name: 'span', head: 'Span', widthPx: 98, sort: 'span', isRight: true },
+  { name: 'span', head: 'Span', widthPx: 92, sort: 'span', isRight: true },
   { name: 'interval', head: 'Interval nearest light', widthPx: 204, sort: 'margin' },
   { name: 'turning', head: 'Turns, c', widthPx: 58, sort: 'turning', isRight: true },
   { name: 'state', head: 'State', widthPx: 46 },

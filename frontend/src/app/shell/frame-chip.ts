@@ -31,6 +31,9 @@ import { FrameGlyph } from '../ui/frame-glyph';
     }
   `,
   styles: `
+    :host {
+      display: flex;
+    }
     .chip {
       display: inline-flex;
       gap: 7px;
