@@ -43,6 +43,7 @@ export const streamRoutes = (): Served[] => [
     handle: ({ params: { siteId }, query: { series = '', cursor, limit = USUAL_ITEMS } }, { db }) => {
       const behind = cursor === undefined ? undefined : textFrom('gap', cursor, /^(?:0|[1-9]\d{0,149})$/);
       const found = gapsOf(db, { siteId, series }, behind, limit);
+      if (!found && series === '') return { items: [], next: null }; // a site that has sent nothing yet
       if (!found) throw absent();
       return { items: found.items, next: found.next === null ? null : textPosition('gap', found.next) };
     },

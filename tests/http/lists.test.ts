@@ -366,6 +366,14 @@ describe('changes of a network', () => {
   });
 });
 
+describe('gaps of a site', () => {
+  it('are none where nothing was sent, and absent for a numbering of a name that it has not', async () => {
+    const ofTwo = signIn(app, [{ role: 'analyst', networkId: 2, siteId: null }]);
+    expect(await ofTwo.get('/sites/99/gaps')).toMatchObject({ status: 200, body: { items: [], next: null } });
+    expect((await ofTwo.get('/sites/99/gaps?series=other')).status).toBe(404);
+  });
+});
+
 describe('every answer of these lists', () => {
   const PATHS = [
     events,
