@@ -1,7 +1,8 @@
 import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { afterEach, describe, expect, it } from 'vitest';
+import { afterEach, describe, expect, it, vi } from 'vitest';
 import { root } from '../../scripts/lib.mjs';
+import { startChaosProxy } from '../support/chaos-proxy';
 import { startProgram } from '../support/command';
 import { newFolder } from '../support/folder';
 import { recordingDesk, startGate, type RunningGate } from './gate';
@@ -33,6 +34,19 @@ describe('a client written from the README alone', () => {
     expect(again.code).toBe(0);
     expect(again.stdout).not.toMatch(/"stored":\[\[/);
     expect(desk.kept.size).toBe(250);
+  });
+
+  it('says that its link broke, and ends', async () => {
+    const desk = recordingDesk();
+    gate = await startGate(desk);
+    const proxy = await startChaosProxy(gate.port);
+    desk.delayMs = 60_000; // no answer comes before the cut
+    const running = startProgram([process.execPath, clientOfReadme(), `http://127.0.0.1:${proxy.port}`, gate.keys[0], '1']);
+    await vi.waitFor(() => expect(desk.attempts).toBe(1), 15_000);
+    proxy.cut();
+    const { code, stderr } = await running.ended;
+    await proxy.close();
+    expect([code, stderr]).toEqual([1, expect.stringMatching(/^the link was lost \(transport close\)\n$/)]);
   });
 
   it('ends with the reason when its key is refused', async () => {
