@@ -13,8 +13,10 @@ export interface FedRecord {
 
 const MOST_TEXT_CHARACTERS = 16_384; // of a line that is sent as it stands: in UTF-8 no longer than a text may be
 
-/** A line that is no record of this site, which the server keeps as it stands and sets aside. */
-const asItStands = (text: string): SiteRecord => ({
+const MOST_SITE_CHARACTERS = 40; // of a name that is quoted
+
+/** A line that is no record of this site, and why, which the server keeps as it stands and sets aside. */
+const asItStands = (text: string, why: string): SiteRecord => ({
   series: '',
   sequence: '',
   kind: '',
@@ -22,7 +24,7 @@ const asItStands = (text: string): SiteRecord => ({
   readingForm: 'iso',
   sigmaNs: '',
   amplitude: '',
-  extra: { line: text.slice(0, MOST_TEXT_CHARACTERS) },
+  extra: { line: text.slice(0, MOST_TEXT_CHARACTERS), why },
 });
 
 const QUOTED = /[",\r\n]/;
@@ -81,7 +83,11 @@ export class FeedLines {
     }
     const { layout, names } = this.columns;
     if (broken !== undefined || fields.length !== layout.width) {
-      this.found.push({ record: asItStands(broken ?? lineOf(fields)), line });
+      const why =
+        broken === undefined
+          ? `has ${fields.length} columns; the header has ${layout.width}`
+          : 'has a quote that is not written as CSV has it';
+      this.found.push({ record: asItStands(broken ?? lineOf(fields), why), line });
       return;
     }
     const at = (column: number): string => (column < 0 ? '' : (fields[column] ?? ''));
@@ -109,7 +115,7 @@ export class FeedLines {
   private ofAnother(fields: readonly string[], site: string, line: number): SiteRecord {
     if (!this.hasOurs)
       throw new UsageProblem(`${this.path}: line ${line}: the site is ${JSON.stringify(site)}; the key is for ${this.site}`);
-    return asItStands(lineOf(fields));
+    return asItStands(lineOf(fields), `is of the site ${JSON.stringify(site.slice(0, MOST_SITE_CHARACTERS))}; the key is for ${this.site}`);
   }
 
   private headerOf(fields: readonly string[], line: number) {
