@@ -7,6 +7,7 @@ import {
   ElementRef,
   inject,
   input,
+  linkedSignal,
   output,
   signal,
   viewChild,
@@ -168,6 +169,8 @@ export class SpeedSlider {
   readonly moved = output<number>();
   protected readonly most = MOST_SPEED_C;
   protected readonly dragging = signal(false);
+  /** Where it was moved last: keys may come faster than the page is drawn anew. */
+  private readonly latestC = linkedSignal(() => this.speedC());
   protected readonly widthPx = signal(400);
   private readonly bar = viewChild.required<ElementRef<HTMLElement>>('bar');
 
@@ -237,7 +240,7 @@ export class SpeedSlider {
 
   protected onKey(event: KeyboardEvent): void {
     const step = event.shiftKey ? FINE_C : STEP_C;
-    const now = this.speedC();
+    const now = this.latestC();
     const to: Readonly<Record<string, number>> = {
       ArrowRight: now + step,
       ArrowUp: now + step,
@@ -258,7 +261,9 @@ export class SpeedSlider {
 
   private say(c: number): void {
     const rounded = Math.round(Math.min(MOST_SPEED_C, Math.max(-MOST_SPEED_C, c)) * 1e6) / 1e6;
-    this.moved.emit(rounded === 0 ? 0 : rounded);
+    const speedC = rounded === 0 ? 0 : rounded;
+    this.latestC.set(speedC);
+    this.moved.emit(speedC);
   }
 }
 
