@@ -225,13 +225,22 @@ export class LiveLink {
   ): LiveAnswers[LiveRequestName] {
     const session = this.ground.look.again(this.claimed);
     if (!session) {
+      this.noteRefusal(name, networkId, 'sign-in');
       setImmediate(() => this.lookAgain());
       return SIGN_IN;
     }
     const policy = policyOf(name);
     const verdict = policy && judge(policy, { kind: 'person', held: session.held }, { kind: 'network', networkId });
     const audience = verdict === 'allowed' ? audienceOf(session.held, networkId) : undefined;
-    return audience && keptChanges(this.ground.db, networkId) ? then(audience) : ABSENT;
+    if (audience && keptChanges(this.ground.db, networkId)) return then(audience);
+    this.noteRefusal(name, networkId, 'hidden');
+    return ABSENT;
+  }
+
+  /** Messages have no id as requests have: the network that was asked for stands in its place. As many as `hasRoom` lets through. */
+  private noteRefusal(policy: LiveRequestName, networkId: number, verdict: 'sign-in' | 'hidden'): void {
+    const { personId } = this.claimed;
+    this.ground.log.info({ event: 'live:refused', personId, policy, verdict, networkId }, 'someone who is known was refused');
   }
 
   private follow({ networkId, after }: FollowAsked, audience: Audience): LiveAnswers['network:follow'] {

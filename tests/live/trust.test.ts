@@ -1,8 +1,10 @@
-import { request } from 'node:http';
+import { createServer, request } from 'node:http';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { io } from 'socket.io-client';
-import { LIVE_PATH } from '#shared/contract/live-socket';
+import { sessions } from '#schema/schema';
+import { LIVE_PATH, LIVE_REQUESTS } from '#shared/contract/live-socket';
 import { ACCESS_S } from '../../backend/accounts/access-token';
+import { openLive } from '../../backend/live/live-server';
 import { noteChange } from '../../backend/live/note-change';
 import { commit } from '../../backend/writer/commit';
 import { startApp, type RunningApp } from '../support/app';
@@ -153,6 +155,23 @@ describe('16 a browser socket', () => {
   });
 });
 
+describe('22 an event', () => {
+  it('without a policy, or with one that is not for people, stops the start', () => {
+    const requests: Record<string, unknown> = LIVE_REQUESTS;
+    const declared = Object.keys(LIVE_REQUESTS);
+    for (const planted of ['network:planted', 'toString', 'health:read', 'stream:state']) {
+      Object.defineProperty(requests, planted, { value: LIVE_REQUESTS['network:leave'], enumerable: true, configurable: true });
+      try {
+        expect(() => openLive(createServer(), app.ground, app.writer)).toThrow(`the event ${planted} has no policy for people`);
+      } finally {
+        Reflect.deleteProperty(requests, planted);
+      }
+    }
+    expect(Object.keys(LIVE_REQUESTS)).toEqual(declared);
+    openLive(createServer(), app.ground, app.writer).close();
+  });
+});
+
 describe('24 each message is judged by its place', () => {
   it.each([
     ['otherCoordinator', 'first'],
@@ -182,6 +201,43 @@ describe('24 each message is judged by its place', () => {
     );
     expect(await news).toMatchObject({ kind: 'changes', setAsides: [{ siteId: world.sites.alpha, records: 2 }] });
     socket.disconnect();
+  });
+});
+
+describe('39 the log', () => {
+  it('has one line for each message that is refused: who, by which policy, for which network', async () => {
+    const { first, second } = world.networks;
+    const lines = () => app.log.filter(({ event }) => event === 'live:refused');
+    const before = lines().length;
+    const client = world.as('otherCoordinator');
+    const socket = await linked(app, client);
+    expect(await ask(socket, 'network:follow', { networkId: second })).toMatchObject({ ok: true });
+    expect(await ask(socket, 'network:follow', { networkId: first })).toMatchObject({ ok: false, code: 'absent' });
+    expect(await ask(socket, 'network:missed', { networkId: 999_999, after: 0 })).toMatchObject({ ok: false, code: 'absent' });
+    const personId = world.people.otherCoordinator;
+    const refused = lines().slice(before);
+    expect(refused.map(({ personId, policy, verdict, networkId }) => [personId, policy, verdict, networkId])).toEqual([
+      [personId, 'network:follow', 'hidden', first],
+      [personId, 'network:missed', 'hidden', 999_999],
+    ]);
+    for (const cookie of client.cookies.values()) expect(app.rawLog()).not.toContain(cookie);
+    socket.disconnect();
+  });
+
+  // The look at all links, twice a second, may end the link in the moment between its session's end and the message: then it is tried again.
+  it('has a line for a message of a session that has ended', { retry: 3 }, async () => {
+    const socket = await linked(app, world.as('chief'));
+    const end = ended(socket);
+    const asking = ask(socket, 'network:follow', { networkId: world.networks.first });
+    app.ground.db.update(sessions).set({ endedAt: '2026-03-01T00:00:00.000Z', endReason: 'signed-out' }).run();
+    expect(await asking).toMatchObject({ ok: false, code: 'sign-in' });
+    expect(app.log.findLast(({ event }) => event === 'live:refused')).toMatchObject({
+      personId: world.people.chief,
+      policy: 'network:follow',
+      verdict: 'sign-in',
+      networkId: world.networks.first,
+    });
+    await within(end);
   });
 });
 
