@@ -126,8 +126,8 @@ export class Viewer {
     this.isReading = false;
     const waiting = this.waiting;
     this.waiting = [];
-    // What lies between the two numbers may be in what was read already.
-    for (const changes of waiting) this.putOver(changes, Math.max(events.change, coincidences.change));
+    // What lies between the oldest and the newest page may be in what was read already.
+    for (const changes of waiting) this.putOver(changes, Math.max(events.newest, coincidences.newest));
   }
 
   private putOver(changes: NetworkChanges, readAt: number): void {
@@ -135,16 +135,18 @@ export class Viewer {
     this.put(changes);
   }
 
-  private async all(path: string): Promise<Pick<Part, 'items' | 'change'>> {
+  private async all(path: string): Promise<Pick<Part, 'items' | 'change'> & { readonly newest: number }> {
     const items: Part['items'][number][] = [];
     let change = Infinity;
+    let newest = 0;
     for (let cursor: string | null = ''; cursor !== null;) {
       const { body } = await this.client.get(`${path}?limit=200${cursor === '' ? '' : `&cursor=${cursor}`}`);
       const part = body as Part;
       items.push(...part.items);
       change = Math.min(change, part.change);
+      newest = Math.max(newest, part.change);
       cursor = part.next;
     }
-    return { items, change };
+    return { items, change, newest };
   }
 }
