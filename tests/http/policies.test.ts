@@ -19,6 +19,8 @@ import { storeOneOfEach, type OneOfEach } from '../support/one-of-each';
 import { Client, type Answer, type Sending } from '../support/client';
 import { makeSetup, type Setup } from '../support/setup';
 import { makeWorld, PASSWORD, PERSONAS, type Persona, type World } from '../support/world';
+import { allRows } from '../support/rows';
+import { oddBodies } from './odd-bodies';
 import { setupWalk } from './setup-walk';
 
 let app: RunningApp;
@@ -243,6 +245,36 @@ describe('every declared route', () => {
         expect(status, who).toBeLessThan(500);
         app.forwardMs(3600_000); // attempts are forgiven between askers; each has a session of their own
       }
+    },
+  );
+});
+
+/** Who may do it, or does where nobody gets in for what the walk asks. */
+function doersOf(declared: Route): readonly Asker[] {
+  const { in: allowed } = EXPECTED[nameOf(declared)]!;
+  if (allowed.length > 0) return allowed;
+  return policyOf(declared.policy)?.who === 'anyone' ? ['nobody'] : ALL_PEOPLE;
+}
+
+describe('every route that changes something', () => {
+  it.each(DECLARED.filter(({ method }) => method !== 'GET').map((declared) => [nameOf(declared), declared] as const))(
+    '25, 31 and 37 refuses a body that only looks like data, from whoever may, and nothing changes: %s',
+    async (name, declared) => {
+      const { path = () => declared.path, body = () => ({}) } = EXPECTED[name]!;
+      const at = path();
+      const usable = body() as object;
+      expect(declared.body.safeParse(usable).error, 'the body in EXPECTED is one that the route takes').toBeUndefined();
+      const askers = doersOf(declared).map((asker) => [asker, clientOf(asker)] as const);
+      const before = allRows(app.ground.db);
+      for (const [asker, client] of askers)
+        for (const { what, raw, status, detail = '', where } of oddBodies(usable, declared.body, declared.mostBodyBytes)) {
+          const answer = await client.send(declared.method, at, undefined, { ...sendingOf(asker), raw });
+          const who = `${asker} at ${name} with ${what} got ${answer.status} ${answer.text}`;
+          expect(answer.status, who).toBe(status);
+          expect(problem.parse(answer.body).detail, who).toContain(detail);
+          if (where) expect(where, who).toContain(problem.parse(answer.body).where ?? '');
+        }
+      expect(allRows(app.ground.db)).toEqual(before);
     },
   );
 });
