@@ -41,6 +41,70 @@ const NEVER_DELETED = [
   'time_reference_versions',
 ];
 
+/** Tables with a rule of their own, which has its test below. */
+const TRIED_APART = [
+  'changes',
+  'clock_fits',
+  'clocks',
+  'coincidences',
+  'events',
+  'frames',
+  'networks',
+  'rules',
+  'site_streams',
+  'sites',
+  'stored_files',
+];
+
+/** Tables of which nothing has to be kept: rows change, and go where no foreign key holds them. */
+const MAY_CHANGE_AND_GO = [
+  'access_tokens',
+  'attachments',
+  'backups',
+  'candidate_events',
+  'candidate_frames',
+  'candidate_sets',
+  'candidates',
+  'chance_estimates',
+  'claims',
+  'clock_fit_points',
+  'coincidence_alerts',
+  'column_mappings',
+  'comments',
+  'crowded_events',
+  'deployment',
+  'emitters',
+  'event_histograms',
+  'event_rates',
+  'failed_attempts',
+  'growths',
+  'held_ranges',
+  'intakes',
+  'jobs',
+  'kept_mails',
+  'live_spans',
+  'mailed_tokens',
+  'members',
+  'mentions',
+  'pairs',
+  'people',
+  'preferences',
+  'recovery_codes',
+  'refresh_tokens',
+  'reviewers',
+  'roles',
+  'runs',
+  'saved_views',
+  'second_factors',
+  'sessions',
+  'site_connections',
+  'site_keys',
+  'staged_events',
+  'time_references',
+  'webhook_deliveries',
+  'webhooks',
+];
+
 let folder: string;
 let db: Db;
 beforeAll(() => {
@@ -111,6 +175,30 @@ function sign(
     snapshotHash,
   );
 }
+
+describe('every table', () => {
+  const namesOf = (sql: string): string[] => db.$client.prepare<[], string>(sql).pluck().all();
+
+  it('is tried here, or named as one of which nothing has to be kept', () => {
+    const named = [...ONLY_ADDED_TO, ...NEVER_DELETED, ...TRIED_APART, ...MAY_CHANGE_AND_GO];
+    expect(
+      named.sort(),
+      'put a new table on one list of kept.test.ts: ONLY_ADDED_TO or NEVER_DELETED with a row of it in beforeAll, TRIED_APART with a test of its rule, or MAY_CHANGE_AND_GO',
+    ).toEqual(
+      namesOf(
+        "SELECT name FROM sqlite_schema WHERE type = 'table' AND name NOT GLOB 'sqlite_*' AND name NOT GLOB '__drizzle*' ORDER BY name",
+      ),
+    );
+  });
+
+  it('that has a trigger is tried', () => {
+    const guarded = namesOf("SELECT DISTINCT tbl_name FROM sqlite_schema WHERE type = 'trigger' ORDER BY tbl_name");
+    expect(
+      guarded.filter((table) => MAY_CHANGE_AND_GO.includes(table)),
+      'a table that a trigger guards goes from MAY_CHANGE_AND_GO to a list that is tried',
+    ).toEqual([]);
+  });
+});
 
 describe('42: UPDATE or DELETE on audit or raw records aborts', () => {
   it.each(ONLY_ADDED_TO)('%s takes no UPDATE, no DELETE and no REPLACE', (table) => {
@@ -232,6 +320,30 @@ describe('a coincidence', () => {
       .join(', ');
     expect(tried(`INSERT INTO coincidences (${columns}) SELECT ${columns} FROM coincidences WHERE id = 7`)).toThrow('UNIQUE');
     expect(tried(`INSERT INTO coincidences (${columns}) SELECT ${columns} FROM coincidences WHERE id = 10`)).not.toThrow();
+  });
+});
+
+describe('what a clock or a log came from', () => {
+  const fit = `INSERT INTO clock_fits (id, clock_id, site_id, emitter_version_id, from_tai_s, from_ps, to_tai_s, to_ps, at_tai_s, at_ps, offset_ns,
+      offset_sigma_ns, rate_ns_per_day, rate_sigma_ns_per_day, covariance_ns2_per_day, chi_square, points, outliers, findings, created_at)
+    VALUES (1, 1, 1, 1, 1, 0, 9, 0, 5, 0, 10, 1, 0.5, 0.1, 0, 1, 4, 0, '{}', ${AT});`;
+
+  it('as a fit is never changed, and stays while a segment came from it', () => {
+    for (const column of columnsOf('clock_fits').filter((name) => name !== 'job_id'))
+      expect(tried(`${fit} UPDATE clock_fits SET ${column} = ${column}`), column).toThrow('never changed');
+    const columns = columnsOf('clock_segments').filter((name) => name !== 'id');
+    const fitted: Readonly<Record<string, string>> = { segment: '99', from_tai_s: '77', origin: "'fit'", fit_id: '1' };
+    const segment = `INSERT INTO clock_segments (${columns.join()}) SELECT ${columns.map((name) => fitted[name] ?? name).join()}
+      FROM clock_segments WHERE id = 1;`;
+    expect(tried(`${fit} ${segment} DELETE FROM clock_fits`)).toThrow('is kept');
+    expect(tried(`${fit} DELETE FROM clock_fits`)).not.toThrow();
+  });
+
+  it('as a file is never changed, but can go', () => {
+    const file = `INSERT INTO stored_files VALUES ('${'0'.repeat(64)}', 1, 'text/csv', ${AT});`;
+    for (const column of columnsOf('stored_files'))
+      expect(tried(`${file} UPDATE stored_files SET ${column} = ${column}`), column).toThrow('never changed');
+    expect(tried(`${file} DELETE FROM stored_files`)).not.toThrow();
   });
 });
 
