@@ -7,7 +7,8 @@ export default defineConfig({
   reporter: [['line'], ['json', { outputFile: '../../test-results/browser.json' }]],
   forbidOnly: Boolean(process.env['CI']),
   workers: 1,
-  timeout: 60_000,
+  timeout: 180_000, // a walk over all pages, on a machine that does other work too
+  expect: { timeout: 30_000 },
   use: {
     browserName: 'chromium',
     launchOptions: { executablePath: process.env['CHROMIUM'] ?? '/usr/bin/chromium' },
