@@ -89,13 +89,14 @@ export class Viewer {
     else this.put(changes);
   }
 
-  private put({ from, to, events, coincidences }: NetworkChanges): void {
+  /** Puts changes over what is shown; those up to `readAt` may be in it already, and are put all the same, since not every page held them. */
+  private put({ from, to, events, coincidences }: NetworkChanges, readAt = 0): void {
     if (this.had === undefined || to <= this.had) return;
     if (events.isCut || coincidences.isCut) {
       void this.read();
       return;
     }
-    const overlaps = from <= this.had;
+    const overlaps = from <= Math.max(this.had, readAt);
     this.had = to;
     for (const { id } of events.items) {
       if (this.told.has(id)) this.faults.push(`the event ${id} was told twice`);
@@ -127,12 +128,7 @@ export class Viewer {
     const waiting = this.waiting;
     this.waiting = [];
     // What lies between the oldest and the newest page may be in what was read already.
-    for (const changes of waiting) this.putOver(changes, Math.max(events.newest, coincidences.newest));
-  }
-
-  private putOver(changes: NetworkChanges, readAt: number): void {
-    if (this.had !== undefined && changes.to > this.had && changes.from <= readAt) this.had = Math.max(this.had, changes.from);
-    this.put(changes);
+    for (const changes of waiting) this.put(changes, Math.max(events.newest, coincidences.newest));
   }
 
   private async all(path: string): Promise<Pick<Part, 'items' | 'change'> & { readonly newest: number }> {
