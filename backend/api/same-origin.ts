@@ -24,7 +24,8 @@ export function refuseForeign({ header }: Pick<Exchange, 'header'>, ours: string
     throw new Refusal(415, 'Unusable request', 'The body must be JSON: Content-Type: application/json.');
 }
 
-function isOurs(origin: string, ours: string, site: string | undefined, production: boolean): boolean {
-  if (origin === ours) return true;
-  return !production && site === 'same-origin' && URL.canParse(origin) && LOCAL_HOSTS.includes(new URL(origin).hostname);
-}
+const isOurs = (origin: string, ours: string, site: string | undefined, production: boolean): boolean =>
+  origin === ours || (!production && site === 'same-origin' && isOfThisMachine(origin));
+
+/** Whether an origin is a page of this machine, by any port. */
+export const isOfThisMachine = (origin: string): boolean => URL.canParse(origin) && LOCAL_HOSTS.includes(new URL(origin).hostname);

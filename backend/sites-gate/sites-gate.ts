@@ -1,5 +1,5 @@
-import { type IncomingMessage, type Server as HttpServer } from 'node:http';
-import { Server, type Socket } from 'socket.io';
+import { type Server as HttpServer } from 'node:http';
+import { type Socket } from 'socket.io';
 import {
   SITE_LIMITS,
   SITE_REQUESTS,
@@ -9,22 +9,14 @@ import {
   type SiteRefusalCode,
 } from '#shared/contract/site-socket';
 import { policyOf } from '#shared/contract/policies';
-import { isOurOrigin, sayForbidden } from '../api/socket-door';
+import { doorArrivals, isOurOrigin, openSocketDoor, retryAfterMs } from '../api/socket-door';
 import { type Ground } from '../ground';
-import { arrivalsOf } from './arrivals';
 import { CreditOffice } from './credit-office';
 import { type SiteDesk } from './site-desk';
 import { keyReader, type SiteOfKey } from './site-of-key';
 import { SiteStream, type StreamGround } from './site-stream';
 
-const HEARTBEAT_MS = 10_000; // asked so often, and answered within as long again, or the link is taken as lost
-const CONNECT_MS = 10_000;
-const MOST_LINKS = 2_000;
 const MOST_STREAMS_OF_SITE = 8;
-const ARRIVALS_AT_ONCE = 100;
-const ARRIVALS_PER_S = 50;
-const LEAST_RETRY_MS = 2_000;
-const RETRY_SPREAD_MS = 3_000;
 const LOOK_MS = 250;
 const KEYS_MS = 1_000; // a key that was revoked ends its streams within 2 s
 const BEHIND_MS = 1_000; // a batch that waits longer than this says that the work is behind
@@ -59,30 +51,17 @@ export type GateGround = Pick<Ground, 'db' | 'log' | 'nowMs' | 'noteKeyUse' | 'o
  */
 export function openSitesGate(server: HttpServer, ground: GateGround, desk: SiteDesk): SitesGate {
   for (const name of Object.keys(SITE_REQUESTS)) refuseUndeclared(name);
-  const io = new Server(server, {
+  const io = openSocketDoor(server, {
     path: SITE_STREAM_PATH,
-    transports: ['websocket'],
-    allowUpgrades: false,
-    serveClient: false,
-    cookie: false,
-    maxHttpBufferSize: SITE_LIMITS.messageBytes,
-    perMessageDeflate: false,
-    httpCompression: false,
-    pingInterval: HEARTBEAT_MS,
-    pingTimeout: HEARTBEAT_MS,
-    connectTimeout: CONNECT_MS,
-    allowRequest: (req, decide) => {
-      const isIn = comesFromOurs(req, ground) && io.engine.clientsCount < MOST_LINKS;
-      if (!isIn) sayForbidden(req);
-      decide(null, isIn);
-    },
+    mostBytes: SITE_LIMITS.messageBytes,
+    // Programs say no origin; a browser always says one, and no page of another site may reach the gate.
+    letsIn: (origin) => origin === undefined || isOurOrigin(origin, ground),
   });
   const readKey = keyReader(ground.db);
   const office = new CreditOffice(CREDIT);
-  const arrivals = arrivalsOf(ARRIVALS_AT_ONCE, ARRIVALS_PER_S, LEAST_RETRY_MS);
+  const arrivals = doorArrivals();
   const streams = new Set<SiteStream>();
   let isEnding = false;
-  const retryAfterMs = (): number => LEAST_RETRY_MS + Math.floor(Math.random() * RETRY_SPREAD_MS);
 
   io.use((socket, next) => {
     const waitMs = isEnding || office.isFull ? retryAfterMs() : arrivals.admit(ground.nowMs());
@@ -147,13 +126,8 @@ function refuseUndeclared(name: string): void {
     throw new Error(`the event ${name} has no policy for site keys: it needs a line in shared/contract/policies.ts`);
 }
 
-/** Programs say no origin; a browser always says one, and no page of another site may reach the gate. */
-function comesFromOurs({ headers: { origin } }: IncomingMessage, ours: Pick<Ground, 'origin' | 'production'>): boolean {
-  return origin === undefined || isOurOrigin(origin, ours);
-}
-
 /** An error that socket.io hands to the client with its data. */
-function refusal(code: SiteRefusalCode, text: string, retryAfterMs?: number): Error {
-  const data = siteConnectRefusal.parse({ code, text, ...(retryAfterMs !== undefined && { retryAfterMs }) });
+function refusal(code: SiteRefusalCode, text: string, waitMs?: number): Error {
+  const data = siteConnectRefusal.parse({ code, text, ...(waitMs !== undefined && { retryAfterMs: waitMs }) });
   return Object.assign(new Error(text), { data });
 }
