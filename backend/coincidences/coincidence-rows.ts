@@ -52,7 +52,6 @@ export class CoincidenceRows {
   private readonly deleteCrowd;
   private readonly deleteCrowds;
   private readonly deleteGone;
-  private readonly selectNext;
   private readonly selectOthers;
   private readonly selectVersions;
 
@@ -94,14 +93,6 @@ export class CoincidenceRows {
     this.selectVersions = client
       .prepare<[number], number>('SELECT v.id FROM rules r JOIN rule_versions v ON v.rule_id = r.id WHERE r.network_id = ? ORDER BY v.id')
       .pluck();
-    this.selectNext = client.prepare<[number], number>('SELECT last + 1 FROM change_heads WHERE network_id = ?').pluck();
-  }
-
-  /** The number that the next change of a network will have. */
-  nextChange(networkId: number): number {
-    const number = this.selectNext.get(networkId);
-    if (number === undefined) throw new Error(`network ${networkId} has no numbering of changes`);
-    return number;
   }
 
   /** The other versions of a rule. */

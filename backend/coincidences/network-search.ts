@@ -1,7 +1,7 @@
 import { addPicoseconds, compareInstants, type Instant } from '#shared/time/instant';
 import { type Db } from '../db';
 import { type Stored } from '../ingest/stored';
-import { noteChange } from '../live/note-change';
+import { nextChange, noteChange } from '../live/note-change';
 import { type StoredEvent } from '../reconcile/stored-event';
 import { commit } from '../writer/commit';
 import { activeRules } from './active-rule';
@@ -190,7 +190,7 @@ export class NetworkSearch {
 
   /** Searches around what was stored and not searched when the process ended; one transaction for each piece. */
   private catchUp(missed: readonly Place[], known: readonly RuleSearch[]): void {
-    const searchedTo = this.rows.nextChange(this.ground.networkId) - 1;
+    const searchedTo = nextChange(this.ground.db, this.ground.networkId) - 1;
     for (const rule of known) {
       if (missed.length > 0)
         this.write((outcome) => {
@@ -360,7 +360,7 @@ export class NetworkSearch {
     const mark = searchedTo > this.searchedTo ? searchedTo : undefined;
     const outcome = new Outcome();
     const isMarked = commit(db, (tx) => {
-      const change = this.rows.nextChange(networkId);
+      const change = nextChange(db, networkId);
       work(outcome, change);
       const isDue = isNoted !== undefined || (mark !== undefined && mark - this.searchedTo >= MARK_EVERY);
       if (outcome.isEmpty() && !isDue) return false;

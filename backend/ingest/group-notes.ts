@@ -2,7 +2,7 @@ import { type SET_ASIDE_WORDS } from '#schema/words';
 import { type Instant } from '#shared/time/instant';
 import { type Tx } from '../writer/commit';
 import { type Db } from '../db';
-import { noteChange } from '../live/note-change';
+import { nextChange, noteChange } from '../live/note-change';
 import { type StoredEvent } from '../reconcile/stored-event';
 import { completenessOf } from './completeness';
 import { type Stored, type WithdrawnEvent } from './stored';
@@ -32,11 +32,8 @@ export interface SetAsideCount {
 export class GroupNotes {
   private readonly networks = new Map<number, NetworkNotes>();
   private readonly counts: SetAsideCount[] = [];
-  private readonly readHead;
 
-  constructor(private readonly db: Db) {
-    this.readHead = db.$client.prepare<[number], number>('SELECT last FROM change_heads WHERE network_id = ?').pluck();
-  }
+  constructor(private readonly db: Db) {}
 
   /** The number that the change of this transaction's events will have. */
   changeNumber(networkId: number): number {
@@ -110,7 +107,7 @@ export class GroupNotes {
     const known = this.networks.get(networkId);
     if (known) return known;
     const made: NetworkNotes = {
-      changeNumber: (this.readHead.get(networkId) ?? 0) + 1,
+      changeNumber: nextChange(this.db, networkId),
       arrived: new Map(),
       withdrawn: [],
       setAside: new Map(),

@@ -20,6 +20,13 @@ const prepared = ({ $client: client }: Db) => ({
   ),
 });
 
+/** The number that the next change of a network will have, by the writing connection. */
+export function nextChange(db: Db, networkId: number): number {
+  const number = statements(db).next.get(networkId);
+  if (number === undefined) throw new Error(`network ${networkId} has no numbering of changes`);
+  return number;
+}
+
 /**
  * Numbers a change of a network, in the transaction that makes it.
  *
@@ -31,10 +38,9 @@ const prepared = ({ $client: client }: Db) => ({
  * @returns the change's number
  */
 export function noteChange(tx: Tx, networkId: number, kind: ChangeKind, body: object, atMs: number): number {
-  const { next, insert } = statements(databaseOf(tx));
-  const number = next.get(networkId);
-  if (number === undefined) throw new Error(`network ${networkId} has no numbering of changes`);
-  insert.run(networkId, number, atMs, kind, JSON.stringify(body)); // the head follows by itself
+  const db = databaseOf(tx);
+  const number = nextChange(db, networkId);
+  statements(db).insert.run(networkId, number, atMs, kind, JSON.stringify(body)); // the head follows by itself
   noteOf(tx, { networkId, kind, number });
   return number;
 }
