@@ -5,7 +5,7 @@ import { type OrientationRow, type OrientationTable } from '#shared/earth/orient
 import { type EarthRotation, earthRotation } from '#shared/earth/rotation';
 import { createTaiWriter } from '#shared/time/format';
 import { compareInstants, type Instant } from '#shared/time/instant';
-import { type LeapSecondTable, parseLeapSeconds, taiMinusUtcOnDay, utcDayAt } from '#shared/time/leap-seconds';
+import { type LeapSecondTable, parseLeapSeconds, taiMinusUtcAt, taiMinusUtcOnDay } from '#shared/time/leap-seconds';
 import { SHIPPED_LEAP_SECONDS_LIST } from '#shared/time/shipped-leap-seconds';
 import { readOption } from './readable-file';
 import { UsageProblem } from './usage-problem';
@@ -153,10 +153,4 @@ function loadOrientation(path: string | undefined, table: LeapSecondTable): Load
   const read = readFinalsFile(text, (day) => taiMinusUtcOnDay(table, day) ?? 0);
   if (!read.ok) throw UsageProblem.of(read.problem, path);
   return { table: read.value, sha256: sha256(text) };
-}
-
-/** TAI - UTC at an instant; before 1972 the first value, since no list says another. */
-export function taiMinusUtcAt(table: LeapSecondTable, { taiS }: Instant): number {
-  const utc = utcDayAt(table, taiS);
-  return (utc && taiMinusUtcOnDay(table, utc.day)) ?? table.steps[0]?.taiMinusUtcS ?? 0;
 }

@@ -1,3 +1,4 @@
+import { S_PER_DAY } from '#shared/constants';
 import { type NetworkFile } from '#shared/contract/network-file';
 import { createTaiWriter } from '#shared/time/format';
 
@@ -10,7 +11,6 @@ export const SEED = 4_210;
 /** Seconds of stream before the first start, so that the screens are not empty. */
 export const HISTORY_S = 600;
 
-const S_PER_DAY = 86_400;
 const RUN_DAYS = 38; // for which the run has gone on
 
 /** A coincidence rule in the words of the network file, with the sites that it is for; absent for all. */

@@ -8,7 +8,7 @@ import { type Config } from '../config';
 import { type Db } from '../db';
 import { utcText, type Ground } from '../ground';
 import { leapSecondsInForce } from '../tables/leap-seconds-in-force';
-import { presentInstant } from '../tables/present';
+import { taiOf } from '../tables/present';
 import { hasDemoFile, keepDemoFile } from './demo-file';
 import { newDemoPassword } from './demo-password';
 import { makeDemoNetwork } from './make-network';
@@ -53,7 +53,7 @@ async function seed(ground: Ground, dataDir: string): Promise<boolean> {
   return change(ground, SERVER, (tx, note) => {
     const nowMs = ground.nowMs();
     const making = { tx, note, actor: SERVER, nowMs };
-    const { taiS } = presentInstant(leapSecondsInForce(tx), nowMs);
+    const { taiS } = taiOf(nowMs, leapSecondsInForce(tx));
     const firstTaiS = Math.floor(taiS / SLICE_S) * SLICE_S - HISTORY_S;
     const { networkId, siteIds } = makeDemoNetwork(making, firstTaiS);
     const siteId = (code: string): number => siteIds.get(code) ?? NO_SITE;

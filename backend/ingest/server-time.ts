@@ -1,6 +1,7 @@
 import { S_PER_DAY } from '#shared/constants';
 import { type Instant } from '#shared/time/instant';
-import { type LeapSecondTable, taiMinusUtcOnDay, utcDayAt } from '#shared/time/leap-seconds';
+import { type LeapSecondTable, utcDayAt } from '#shared/time/leap-seconds';
+import { taiOf } from '../tables/present';
 
 /**
  * How far behind a site's event the server's own clock may be, s. What lies farther in its future waits, and is tried again when its time has
@@ -12,13 +13,6 @@ const MS_PER_S = 1_000;
 const PS_PER_MS = 1e9;
 /** The last instant that a time of the server's clock may name: the end of the year 9999. */
 const LAST_MS = 253_402_300_799_999;
-
-/** The server's clock on the time axis. */
-export function taiOf(nowMs: number, leapSeconds: LeapSecondTable): Instant {
-  const utcS = Math.floor(nowMs / MS_PER_S);
-  const taiMinusUtcS = taiMinusUtcOnDay(leapSeconds, Math.floor(utcS / S_PER_DAY)) ?? 0;
-  return { taiS: utcS + taiMinusUtcS, ps: (nowMs - utcS * MS_PER_S) * PS_PER_MS };
-}
 
 /** The latest instant that is not in the server's far future. */
 export function latestAt(nowMs: number, leapSeconds: LeapSecondTable): Instant {

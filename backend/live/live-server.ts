@@ -1,25 +1,18 @@
 import { type Server as HttpServer } from 'node:http';
-import { Server, type Socket } from 'socket.io';
+import { type Socket } from 'socket.io';
 import { LIVE_LIMITS, LIVE_PATH, LIVE_REQUESTS, liveConnectRefusal } from '#shared/contract/live-socket';
 import { policyOf } from '#shared/contract/policies';
-import { isOurOrigin, sayForbidden } from '../api/socket-door';
+import { type SiteStates } from '#shared/contract/site-state';
+import { doorArrivals, isOurOrigin, openSocketDoor, retryAfterMs } from '../api/socket-door';
 import { type Ground } from '../ground';
-import { arrivalsOf } from '../sites-gate/arrivals';
 import { type Writer } from '../writer/questions';
 import { LiveHub } from './live-hub';
 import { LiveLink, UNSENT_BYTES, type LinkGround } from './live-link';
 import { sessionLook, type SessionNow } from './session-look';
-import { siteStatesReader } from './site-states';
+import { siteStatesOf } from './site-states';
 
-const HEARTBEAT_MS = 10_000; // asked so often, and answered within as long again, or the link is taken as lost
-const CONNECT_MS = 10_000;
-const MOST_LINKS = 2_000;
 const MOST_LINKS_OF_PERSON = 20;
-const ARRIVALS_AT_ONCE = 100;
-const ARRIVALS_PER_S = 50;
 const TOO_MANY_MS = 60_000;
-const LEAST_RETRY_MS = 2_000;
-const RETRY_SPREAD_MS = 3_000;
 const LOOK_MS = 500; // what ends by time alone is seen within it, and whoever is slow
 const STATES_MS = 1_000;
 
@@ -44,34 +37,19 @@ export type LiveGround = Pick<Ground, 'db' | 'log' | 'nowMs' | 'origin' | 'produ
 export function openLive(server: HttpServer, ground: LiveGround, writer: Pick<Writer, 'on'>, unsent = UNSENT_BYTES): LiveServer {
   for (const name of Object.keys(LIVE_REQUESTS)) refuseUndeclared(name);
   const { nowMs } = ground;
-  const io = new Server(server, {
+  const io = openSocketDoor(server, {
     path: LIVE_PATH,
-    transports: ['websocket'],
-    allowUpgrades: false,
-    serveClient: false,
-    cookie: false,
-    maxHttpBufferSize: LIVE_LIMITS.messageBytes,
-    perMessageDeflate: false,
-    httpCompression: false,
-    pingInterval: HEARTBEAT_MS,
-    pingTimeout: HEARTBEAT_MS,
-    connectTimeout: CONNECT_MS,
-    allowRequest: (req, decide) => {
-      const { origin } = req.headers;
-      const isIn = origin !== undefined && isOurOrigin(origin, ground) && io.engine.clientsCount < MOST_LINKS;
-      if (!isIn) sayForbidden(req);
-      decide(null, isIn);
-    },
+    mostBytes: LIVE_LIMITS.messageBytes,
+    letsIn: (origin) => origin !== undefined && isOurOrigin(origin, ground),
   });
   const look = sessionLook(ground);
-  const arrivals = arrivalsOf(ARRIVALS_AT_ONCE, ARRIVALS_PER_S, LEAST_RETRY_MS);
-  const readStates = siteStatesReader(ground);
+  const arrivals = doorArrivals();
+  const readStates = (networkId: number): SiteStates => siteStatesOf(ground, networkId);
   const hub = new LiveHub({ ...ground, io, readStates });
   const linkGround: LinkGround = { ...ground, hub, look, readStates, unsentBytes: unsent };
   const links = new Set<LiveLink>();
   const sessions = new WeakMap<Socket, SessionNow>();
   let isEnding = false;
-  const retryAfterMs = (): number => LEAST_RETRY_MS + Math.floor(Math.random() * RETRY_SPREAD_MS);
 
   io.use((socket, next) => {
     const waitMs = isEnding ? retryAfterMs() : arrivals.admit(nowMs());
@@ -144,7 +122,7 @@ function refuseUndeclared(name: string): void {
 }
 
 /** An error that socket.io hands to the browser with its data. */
-function refusal(code: 'sign-in' | 'busy', text: string, retryAfterMs?: number): Error {
-  const data = liveConnectRefusal.parse({ code, text, ...(retryAfterMs !== undefined && { retryAfterMs }) });
+function refusal(code: 'sign-in' | 'busy', text: string, waitMs?: number): Error {
+  const data = liveConnectRefusal.parse({ code, text, ...(waitMs !== undefined && { retryAfterMs: waitMs }) });
   return Object.assign(new Error(text), { data });
 }

@@ -2,11 +2,11 @@ import { type SiteStateNow, type SiteStates } from '#shared/contract/site-state'
 import { nanosecondsOf } from '#shared/time/instant';
 import { type LeapSecondTable } from '#shared/time/leap-seconds';
 import { type Ground } from '../ground';
-import { taiOf } from '../ingest/server-time';
 import { atChange } from '../search/at-change';
 import { part, rowsOf, type Query } from '../search/query';
 import { leastComplete, streamsOf } from '../streams/completeness';
 import { leapSecondsInForce } from '../tables/leap-seconds-in-force';
+import { taiOf } from '../tables/present';
 
 const MINUTE_S = 60;
 const NS_PER_MS = 1e6;
@@ -46,9 +46,10 @@ export const ratesQuery = (networkId: number, minuteTaiS: number): Query =>
  * Events are counted by whole minutes: those of the last minute are the present one's and so much of the former one as lies within 60 s, taken
  * as even.
  */
-export function siteStatesOf({ db, nowMs }: Pick<Ground, 'db' | 'nowMs'>, networkId: number, leapSeconds: LeapSecondTable): SiteStates {
+export function siteStatesOf({ db, nowMs }: Pick<Ground, 'db' | 'nowMs'>, networkId: number): SiteStates {
   const atMs = nowMs();
   return atChange(db, networkId, () => {
+    const leapSeconds = leapSecondsInForce(db);
     const now = taiOf(atMs, leapSeconds);
     const minuteTaiS = Math.floor(now.taiS / MINUTE_S) * MINUTE_S;
     const formerPart = 1 - (now.taiS - minuteTaiS) / MINUTE_S;
@@ -73,10 +74,4 @@ export function siteStatesOf({ db, nowMs }: Pick<Ground, 'db' | 'nowMs'>, networ
 function delayMs({ taiS, ps, receivedAtMs }: LatestRow, leapSeconds: LeapSecondTable): number {
   const received = taiOf(receivedAtMs, leapSeconds);
   return Math.round(nanosecondsOf(received.taiS - taiS, received.ps - ps) / NS_PER_MS);
-}
-
-/** A reader that looks the leap seconds up once: what a change of them does to a delay is seen after a restart. */
-export function siteStatesReader(ground: Pick<Ground, 'db' | 'nowMs'>): (networkId: number) => SiteStates {
-  let leapSeconds: LeapSecondTable | undefined;
-  return (networkId) => siteStatesOf(ground, networkId, (leapSeconds ??= leapSecondsInForce(ground.db)));
 }

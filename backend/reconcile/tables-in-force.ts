@@ -2,13 +2,12 @@ import { constantOrientation } from '#shared/earth/earth-orientation';
 import { readFinalsFile } from '#shared/earth/finals-file';
 import { type OrientationTable } from '#shared/earth/orientation-table';
 import { type EarthRotation, earthRotation } from '#shared/earth/rotation';
-import { type Outcome } from '#shared/outcome';
 import { type Instant } from '#shared/time/instant';
-import { type LeapSecondTable, parseLeapSeconds, taiMinusUtcOnDay } from '#shared/time/leap-seconds';
+import { type LeapSecondTable, taiMinusUtcAt, taiMinusUtcOnDay } from '#shared/time/leap-seconds';
 import { SHIPPED_LEAP_SECONDS_LIST, shippedLeapSeconds } from '#shared/time/shipped-leap-seconds';
-import { taiMinusUtcAt } from '../command/ground-tables';
 import { type Db } from '../db';
 import { utcText } from '../ground';
+import { parsedList } from '../tables/leap-seconds-in-force';
 
 /** The tables of time and Earth that events rest on. */
 export interface TablesInForce {
@@ -22,13 +21,6 @@ export interface TablesInForce {
   readonly rotationFor: (runFrom: Instant) => EarthRotation;
 }
 
-function good<T>(outcome: Outcome<T>, what: string): T {
-  if (!outcome.ok) throw new Error(`${what}: ${outcome.problem.where}: ${outcome.problem.text}`);
-  return outcome.value;
-}
-
-const parsedLists = new Map<string, LeapSecondTable>();
-
 /**
  * A leap-second list of the database, parsed once.
  *
@@ -36,41 +28,40 @@ const parsedLists = new Map<string, LeapSecondTable>();
  */
 export function leapSecondsOf(db: Db, id: number): LeapSecondTable {
   if (id === 0) return shippedLeapSeconds();
-  const row = db.$client
-    .prepare<[number], { sha1: string; body: string }>('SELECT sha1, body FROM leap_second_tables WHERE id = ?')
-    .get(id);
-  if (!row) throw new Error(`there is no leap-second list ${id}`);
-  const known = parsedLists.get(row.sha1);
-  if (known) return known;
-  const table = good(parseLeapSeconds(row.body), `leap-second list ${id}`);
-  parsedLists.set(row.sha1, table);
-  return table;
+  const body = db.$client.prepare<[number], string>('SELECT body FROM leap_second_tables WHERE id = ?').pluck().get(id);
+  if (body === undefined) throw new Error(`there is no leap-second list ${id}`);
+  return parsedList(body);
 }
 
+/** What was read last, by connection: rows of tables never change, so the same ids are the same tables. */
+const lastRead = new WeakMap<Db, TablesInForce>();
+
 /**
- * Reads the tables of time and Earth that are in force.
+ * The tables of time and Earth that are in force: read again only where others are by now.
  *
  * @param db any connection
  * @returns the tables; where the database has no leap-second list, the one that came with the program
  */
 export function tablesInForce(db: Db): TablesInForce {
-  const list = db.$client.prepare<[], number>('SELECT id FROM leap_second_tables WHERE is_in_force = 1').pluck().get();
-  const leapSecondTableId = list ?? 0;
+  const idInForce = (table: 'leap_second_tables' | 'orientation_tables'): number | undefined =>
+    db.$client.prepare<[], number>(`SELECT id FROM ${table} WHERE is_in_force = 1`).pluck().get();
+  const leapSecondTableId = idInForce('leap_second_tables') ?? 0;
+  const orientationTableId = idInForce('orientation_tables') ?? null;
+  const last = lastRead.get(db);
+  if (last?.leapSecondTableId === leapSecondTableId && last.orientationTableId === orientationTableId) return last;
+  const tables = readTables(db, leapSecondTableId, orientationTableId);
+  lastRead.set(db, tables);
+  return tables;
+}
+
+function readTables(db: Db, leapSecondTableId: number, orientationTableId: number | null): TablesInForce {
   const leapSeconds = leapSecondsOf(db, leapSecondTableId);
-  const finals = db.$client
-    .prepare<[], { id: number; body: string }>('SELECT id, body FROM orientation_tables WHERE is_in_force = 1')
-    .get();
-  const orientation =
-    finals &&
-    good(
-      readFinalsFile(finals.body, (day) => taiMinusUtcOnDay(leapSeconds, day) ?? 0),
-      `Earth-orientation table ${finals.id}`,
-    );
+  const orientation = orientationTableId === null ? undefined : orientationOf(db, orientationTableId, leapSeconds);
   const rotations = new Map<number, EarthRotation>();
   return {
     leapSecondTableId,
     leapSeconds,
-    orientationTableId: finals?.id ?? null,
+    orientationTableId,
     orientation,
     rotationFor: (runFrom) => {
       const taiMinusUtcS = orientation ? 0 : taiMinusUtcAt(leapSeconds, runFrom);
@@ -81,6 +72,13 @@ export function tablesInForce(db: Db): TablesInForce {
       return made;
     },
   };
+}
+
+function orientationOf(db: Db, id: number, leapSeconds: LeapSecondTable): OrientationTable {
+  const body = db.$client.prepare<[number], string>('SELECT body FROM orientation_tables WHERE id = ?').pluck().get(id) ?? '';
+  const read = readFinalsFile(body, (day) => taiMinusUtcOnDay(leapSeconds, day) ?? 0);
+  if (!read.ok) throw new Error(`Earth-orientation table ${id}: ${read.problem.where}: ${read.problem.text}`);
+  return read.value;
 }
 
 /**

@@ -9,12 +9,10 @@ import { conflict, stale, unusable } from '../api/refusal';
 import { personOf, serve, type Served } from '../api/serve';
 import { change, type Tx } from '../audit/change';
 import { mayKeepTimeBy } from '../clocks/place-of-clock';
-import { type Db } from '../db';
-import { utcText, type Ground } from '../ground';
+import { utcText } from '../ground';
 import { openNetwork, placeOfNetwork } from '../networks/network-rows';
 import { noteSetup } from '../networks/note-setup';
-import { leapSecondsInForce } from '../tables/leap-seconds-in-force';
-import { presentInstant } from '../tables/present';
+import { presentOf } from '../tables/present';
 import { timeReader } from '../tables/times-given';
 import { addSiteState, makeSite } from './make-site';
 import { siteOfId, siteRow, sitesAfter } from './site-rows';
@@ -27,13 +25,13 @@ export const siteRoutes = (): Served[] => [
       const { db } = ground;
       const { cursor = 0, limit = USUAL_ITEMS } = asked.query;
       const { held } = personOf(asked);
-      const found = sitesAfter(db, asked.params.networkId, cursor, limit + 1, held, presentOf(db, ground));
+      const found = sitesAfter(db, asked.params.networkId, cursor, limit + 1, held, presentOf(ground));
       return pageFrom(found, limit, ({ id }) => id);
     },
   }),
   serve(SITE_ROUTES.readSite, {
     placeOf: ({ params: { siteId } }, { db }) => placeOfSite(db, siteId),
-    handle: ({ params: { siteId } }, ground) => siteOfId(ground.db, siteId, presentOf(ground.db, ground)),
+    handle: ({ params: { siteId } }, ground) => siteOfId(ground.db, siteId, presentOf(ground)),
   }),
   serve(SITE_ROUTES.makeSite, {
     placeOf: ({ params: { networkId } }, { db }) => placeOfNetwork(db, networkId),
@@ -44,7 +42,7 @@ export const siteRoutes = (): Served[] => [
       const state = { ...asked.body.state, from: times.readOrNull(asked.body.state.from, 'state.from') };
       return change(ground, actor, (tx, note) => {
         const { id, warnings } = makeSite({ tx, note, actor, nowMs: ground.nowMs() }, { ...asked.body, networkId, state });
-        return { ...siteOfId(tx, id, presentOf(tx, ground)), warnings: [...times.warnings, ...warnings] };
+        return { ...siteOfId(tx, id, presentOf(ground)), warnings: [...times.warnings, ...warnings] };
       });
     },
   }),
@@ -62,7 +60,7 @@ export const siteRoutes = (): Served[] => [
           .run();
         note({ action: 'site:changed', subjectKind: 'site', subjectId: siteId, networkId });
         noteSetup(tx, networkId, { what: 'site', id: siteId }, ground.nowMs());
-        return siteOfId(tx, siteId, presentOf(tx, ground));
+        return siteOfId(tx, siteId, presentOf(ground));
       }),
   }),
   serve(SITE_ROUTES.addSiteVersion, {
@@ -81,7 +79,7 @@ export const siteRoutes = (): Served[] => [
             text: `is ${state.clockId}; it must be a clock that one of your sites keeps time by, or one that you made and no site keeps time by: a coordinator shares others`,
           });
         const warnings = addSiteState({ tx, note, actor, nowMs: ground.nowMs() }, siteId, state, replaces);
-        return { ...siteOfId(tx, siteId, presentOf(tx, ground)), warnings: [...times.warnings, ...warnings] };
+        return { ...siteOfId(tx, siteId, presentOf(ground)), warnings: [...times.warnings, ...warnings] };
       });
     },
   }),
@@ -98,12 +96,10 @@ export const siteRoutes = (): Served[] => [
           .run();
         note({ action: 'site:closed', subjectKind: 'site', subjectId: siteId, networkId });
         noteSetup(tx, networkId, { what: 'site', id: siteId }, ground.nowMs());
-        return siteOfId(tx, siteId, presentOf(tx, ground));
+        return siteOfId(tx, siteId, presentOf(ground));
       }),
   }),
 ];
-
-const presentOf = (db: Pick<Db, 'select'>, { nowMs }: Pick<Ground, 'nowMs'>) => presentInstant(leapSecondsInForce(db), nowMs());
 
 /** The row of a site as the one who asks saw it, in a network that is open. */
 function unchanged(tx: Tx, siteId: number, version: number) {

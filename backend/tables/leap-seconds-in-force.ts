@@ -10,9 +10,15 @@ export function leapSecondsInForce(db: Pick<Db, 'select'>): LeapSecondTable {
   return row ? parsedList(row.body) : shippedLeapSeconds();
 }
 
-/** A list that was checked before it was kept. */
+/** Lists by their text: few, and asked for at every request that tells what holds at present. */
+const parsed = new Map<string, LeapSecondTable>();
+
+/** A list that was checked before it was kept; parsed once. */
 export function parsedList(body: string): LeapSecondTable {
+  const known = parsed.get(body);
+  if (known) return known;
   const list = parseLeapSeconds(body);
   if (!list.ok) throw new Error(`a leap-second list that was kept cannot be read: ${list.problem.where} ${list.problem.text}`);
+  parsed.set(body, list.value);
   return list.value;
 }

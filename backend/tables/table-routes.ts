@@ -23,7 +23,7 @@ import {
   orientationText,
   putOrientationTableInForce,
 } from './orientation-tables';
-import { presentInstant } from './present';
+import { presentOf } from './present';
 import { leapSecondWarnings, orientationWarnings } from './table-warnings';
 
 /** The tables of time and Earth that all networks rest on. */
@@ -92,8 +92,6 @@ export const tableRoutes = (): Served[] => [
     },
   }),
 ];
-
-const presentOf = ({ db, nowMs }: Pick<Ground, 'db' | 'nowMs'>) => presentInstant(leapSecondsInForce(db), nowMs());
 
 const withoutText = <T>({ text: _text, ...table }: T & { readonly text: string }) => table;
 

@@ -1,9 +1,9 @@
+import { S_PER_DAY } from '#shared/constants';
 import { type Warning } from '#shared/contract/setup-leaves';
 import { createTaiWriter } from '#shared/time/format';
 import { compareInstants, secondsBetween, type Instant } from '#shared/time/instant';
 import { type LeapSecondTable } from '#shared/time/leap-seconds';
 
-const S_PER_DAY = 86_400;
 const MJD_OF_1970 = 40_587;
 /** From so many days before a list expires, every screen says so. */
 const DAYS_AHEAD = 30;

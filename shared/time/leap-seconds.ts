@@ -169,6 +169,12 @@ export function utcDayAt(table: LeapSecondTable, taiS: number): { readonly day: 
   return { day, secondOfDay: utcS - day * S_PER_DAY };
 }
 
+/** TAI minus UTC in seconds at an instant; before 1972 the first value, since no list says another. */
+export function taiMinusUtcAt(table: LeapSecondTable, { taiS }: Pick<Instant, 'taiS'>): number {
+  const utc = utcDayAt(table, taiS);
+  return (utc && taiMinusUtcOnDay(table, utc.day)) ?? table.steps[0]?.taiMinusUtcS ?? 0;
+}
+
 /**
  * A warning when an instant is later than the expiry of the list, else none: UTC there is right only if no leap second has been announced.
  *

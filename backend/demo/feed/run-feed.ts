@@ -1,6 +1,6 @@
 import { once, setMaxListeners } from 'node:events';
 import { shippedLeapSeconds } from '#shared/time/shipped-leap-seconds';
-import { presentInstant } from '../../tables/present';
+import { taiOf } from '../../tables/present';
 import { VERSION } from '../../version';
 import { readDemoFile } from '../demo-file';
 import { SEED } from '../scenario';
@@ -30,7 +30,7 @@ export async function runFeed({ url, dataDir, signal, say }: FeedOptions): Promi
     return;
   }
   const leapSeconds = shippedLeapSeconds();
-  const now = () => presentInstant(leapSeconds, Date.now());
+  const now = () => taiOf(Date.now(), leapSeconds);
   const world = makeWorld(SEED, demo.firstTaiS, leapSeconds);
   const resumed = resume(readSession(dataDir), demo.firstTaiS, now().taiS);
   const queues = siteQueues(world, resumed);

@@ -6,7 +6,7 @@ import { earthRotation } from '#shared/earth/rotation';
 import { fixedSiteWorldline } from '#shared/earth/worldline';
 import { norm, subtract, type Vec3 } from '#shared/relativity/vector';
 import { type Worldline } from '#shared/relativity/worldline';
-import { taiMinusUtcOnDay, utcDayAt, type LeapSecondTable } from '#shared/time/leap-seconds';
+import { taiMinusUtcAt, type LeapSecondTable } from '#shared/time/leap-seconds';
 import { type Scale } from '#shared/time/scales';
 import { demoNetworkFile, emitterOf, type DemoEmitter } from '../scenario';
 import { randomFrom } from './random';
@@ -48,7 +48,7 @@ export function makeWorld(seed: number, firstTaiS: number, leapSeconds: LeapSeco
   const emitter = emitterOf(firstTaiS);
   const random = randomFrom(seed, TRUTH);
   const clockOf = trueClocks(file, leapSeconds, random);
-  const rotation = earthRotation(constantOrientation(-taiMinusUtcAt(leapSeconds, firstTaiS)));
+  const rotation = earthRotation(constantOrientation(-taiMinusUtcAt(leapSeconds, { taiS: firstTaiS })));
   const worldlineAt = (itrsM: Vec3): Worldline => fixedSiteWorldline(itrsM, rotation);
   const sites = file.sites.map((site): TrueSite => {
     const sigmaM = site.position_sigma_m ?? 0;
@@ -80,9 +80,4 @@ export const lightTimeS = (from: TrueSite, to: TrueSite): number => norm(subtrac
 function statedItrsM({ position: { geodetic, itrs_m } }: NetworkFile['sites'][number]): Vec3 {
   if (!geodetic) return itrs_m ?? [0, 0, 0];
   return geodeticToItrs({ latitudeDeg: geodetic.latitude_deg, longitudeDeg: geodetic.longitude_deg, heightM: geodetic.height_m ?? 0 });
-}
-
-function taiMinusUtcAt(table: LeapSecondTable, taiS: number): number {
-  const utc = utcDayAt(table, taiS);
-  return (utc && taiMinusUtcOnDay(table, utc.day)) ?? 0;
 }
