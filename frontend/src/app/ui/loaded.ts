@@ -4,7 +4,7 @@ import { ApiProblem, sentenceOf } from '../api/api-problem';
 /** What a screen knows of something that it asked for. */
 export type Loaded<T> =
   | { readonly kind: 'loading' }
-  | { readonly kind: 'failed'; readonly text: string; readonly id: string | undefined; readonly status: number }
+  | { readonly kind: 'failed'; readonly text: string; readonly id: string | undefined; readonly status: number | undefined }
   | { readonly kind: 'loaded'; readonly value: T };
 
 /** Something asked for, with its state as a signal. */
@@ -15,7 +15,10 @@ export class Loader<T> {
 
   constructor(private readonly ask: () => Promise<T>) {}
 
-  /** Asks, and again: what is there stays on screen meanwhile, and only the last answer counts. */
+  /**
+   * Asks, and again: what is there stays on screen meanwhile, also where the server does not answer (the banner tells its age), and only the last
+   * answer counts.
+   */
   async load(): Promise<void> {
     const turn = ++this.asked;
     if (untracked(this.now).kind === 'failed') this.now.set({ kind: 'loading' });
@@ -23,7 +26,9 @@ export class Loader<T> {
       (value): Loaded<T> => ({ kind: 'loaded', value }),
       (fault: unknown): Loaded<T> => ({ kind: 'failed', text: sentenceOf(fault), ...ofProblem(fault) }),
     );
-    if (turn === this.asked) this.now.set(state);
+    if (turn !== this.asked) return;
+    const isUnanswered = state.kind === 'failed' && state.status === 0;
+    if (!isUnanswered || untracked(this.now).kind !== 'loaded') this.now.set(state);
   }
 
   /** Changes what is there by what an answer said. */
@@ -38,4 +43,4 @@ export class Loader<T> {
   }
 }
 
-const ofProblem = (fault: unknown) => (fault instanceof ApiProblem ? { id: fault.id, status: fault.status } : { id: undefined, status: 0 });
+const ofProblem = (fault: unknown) => (fault instanceof ApiProblem ? { id: fault.id, status: fault.status } : { id: undefined, status: undefined });
