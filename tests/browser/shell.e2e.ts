@@ -146,6 +146,13 @@ test('a session that ended asks for the password in place, and what was typed st
   expect(faults.splice(0).every((text) => text.includes('401'))).toBe(true); // what the browser says of a refused request
 });
 
+test('the desk of a deployment without a network says so, and leads to the first steps', async () => {
+  await page.goto('/desk');
+  await expect(page.getByRole('main')).toContainText('No network yet');
+  await page.getByRole('link', { name: 'Begin the first steps' }).click();
+  await expect(page).toHaveURL(/first-steps$/);
+});
+
 test('an address that leads nowhere says so inside the application', async () => {
   await page.goto('/no/such/page');
   await heading('No such page');

@@ -45,7 +45,7 @@ export class DeskEvents {
 
   readonly events = this.held.asReadonly();
   /** Whether events are on their way and none is there yet. */
-  readonly isLoading = computed(() => this.asking() && this.held().columns.count === 0);
+  readonly isLoading = computed(() => (this.asking() || this.networks.sites.state().kind === 'loading') && this.held().columns.count === 0);
   readonly fault = this.told.asReadonly();
   /** The latest event of the network. */
   readonly edge = this.newest.asReadonly();
@@ -119,7 +119,7 @@ export class DeskEvents {
     const sites = this.sites();
     if (networkId === undefined || sites.length === 0) {
       this.held.set(NO_EVENTS);
-      this.asking.set(this.networks.sites.state().kind === 'loading');
+      this.asking.set(false);
       return;
     }
     const turn = ++this.turn;

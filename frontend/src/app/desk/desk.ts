@@ -13,7 +13,7 @@ import {
   viewChild,
 } from '@angular/core';
 import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
-import { Router } from '@angular/router';
+import { Router, RouterLink } from '@angular/router';
 import { type CoincidenceBrief } from '#shared/contract/coincidence';
 import { type IntervalClass } from '#shared/relativity/verdict';
 import { CommandStore } from '../commands/command-store';
@@ -22,6 +22,7 @@ import { MARK_KINDS } from '../diagrams/mark-shape';
 import { pngOf, standaloneSvg } from '../diagrams/picture-file';
 import { instantText } from '../instants/instant-parts';
 import { NetworkStore } from '../networks/network-store';
+import { SessionStore } from '../session/session-store';
 import { Preferences } from '../preferences/preferences';
 import { FrameChoice } from '../frames/frame-choice';
 import { Icon } from '../ui/icon';
@@ -75,6 +76,7 @@ const CLASSES = ['spacelike', 'timelike', 'undecided'] as const;
     Fault,
     Icon,
     IntervalMark,
+    RouterLink,
     SetTable,
     SiteStrip,
     Skeleton,
@@ -91,6 +93,7 @@ export class Desk {
   private readonly preferences = inject(Preferences);
   private readonly orders = inject(SetOrders);
   protected readonly networks = inject(NetworkStore);
+  protected readonly session = inject(SessionStore);
   protected readonly place = inject(DeskPlace);
   protected readonly data = inject(DeskEvents);
   protected readonly lists = inject(DeskLists);
