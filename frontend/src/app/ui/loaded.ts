@@ -43,4 +43,5 @@ export class Loader<T> {
   }
 }
 
-const ofProblem = (fault: unknown) => (fault instanceof ApiProblem ? { id: fault.id, status: fault.status } : { id: undefined, status: undefined });
+const ofProblem = (fault: unknown) =>
+  fault instanceof ApiProblem ? { id: fault.id, status: fault.status } : { id: undefined, status: undefined };
