@@ -1,5 +1,6 @@
 import { ChangeDetectionStrategy, Component, inject } from '@angular/core';
 import { Router } from '@angular/router';
+import { browserWords } from '#shared/contract/browser-words';
 import { type Session } from '#shared/contract/people';
 import { MY_ROUTES } from '#shared/contract/people-routes';
 import { ApiClient } from '../api/api-client';
@@ -10,7 +11,6 @@ import { ConfirmTyped } from '../ui/confirm-typed';
 import { Loader } from '../ui/loaded';
 import { Fault, Skeleton } from '../ui/states';
 import { ToastStore } from '../ui/toasts';
-import { browserWords } from './browser-words';
 
 /** Where someone is signed in, and how to end that. */
 @Component({
