@@ -124,7 +124,7 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
   'GET /me/sessions': { in: ALL_PEOPLE },
   'POST /me/sessions/:sessionId/end': { in: [], hidden: ALL_PEOPLE, path: () => '/me/sessions/99999/end' },
   'GET /me/preferences': { in: ALL_PEOPLE },
-  'PATCH /me/preferences': { in: ALL_PEOPLE },
+  'PATCH /me/preferences': { in: ALL_PEOPLE, body: () => ({ theme: 'dark', mails: { role: 'on' } }) },
   'POST /sign-out-everywhere': { in: ALL_PEOPLE },
   'GET /people': { in: COORDINATORS },
   'GET /people/:personId': { in: COORDINATORS, path: () => `/people/${world.people.analyst}` },

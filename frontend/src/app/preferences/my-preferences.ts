@@ -1,5 +1,5 @@
 import { effect, inject, Injectable, untracked } from '@angular/core';
-import { PREFERENCE_ROUTES, type PreferencesShown } from '#shared/contract/preference-routes';
+import { PREFERENCE_ROUTES, type Showing } from '#shared/contract/preference-routes';
 import { ApiClient } from '../api/api-client';
 import { SessionStore } from '../session/session-store';
 import { Preferences } from './preferences';
@@ -14,7 +14,7 @@ export class MyPreferences {
   private readonly session = inject(SessionStore);
   private readonly preferences = inject(Preferences);
   /** What the server knows of this browser's choices; undefined until it was asked for whoever is signed in. */
-  private told: PreferencesShown | undefined;
+  private told: Showing | undefined;
   private rest: ReturnType<typeof setTimeout> | undefined;
 
   constructor() {
@@ -33,7 +33,7 @@ export class MyPreferences {
     });
   }
 
-  private now(): Required<PreferencesShown> {
+  private now(): Showing {
     return { theme: this.preferences.theme(), scale: this.preferences.scale(), shortcuts: this.preferences.shortcuts() };
   }
 
@@ -54,7 +54,7 @@ export class MyPreferences {
   }
 
   /** Tells what changed; where the server is not reached, the browser keeps it all the same. */
-  private async tell({ theme, scale, shortcuts }: PreferencesShown): Promise<void> {
+  private async tell({ theme, scale, shortcuts }: Showing): Promise<void> {
     const { told } = this;
     if (!told) return;
     const body = {

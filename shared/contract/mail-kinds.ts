@@ -1,0 +1,24 @@
+/** A kind of mail that a person may do without. */
+interface OptionalMail {
+  readonly kind: string;
+  /** What holds until a person says otherwise. */
+  readonly usual: 'on' | 'off';
+  /** What it is called beside its switch. */
+  readonly name: string;
+  /** When it comes. */
+  readonly sentence: string;
+}
+
+/**
+ * Every kind of mail that a person may do without. One line here gives a kind its preference, its switch on the account page, and a name by
+ * which letters are sent; every other mail (invitations, links for a new password, word of a changed one) always comes.
+ */
+export const OPTIONAL_MAILS = [
+  { kind: 'new-browser', usual: 'on', name: 'New browser', sentence: 'Your account was entered from a browser not used for 30 days.' },
+  { kind: 'role', usual: 'on', name: 'Your roles', sentence: 'Someone gave you a role, changed until when you hold one, or ended it.' },
+] as const satisfies readonly OptionalMail[];
+
+export type MailKind = (typeof OPTIONAL_MAILS)[number]['kind'];
+
+/** The same kinds by name alone. */
+export const MAIL_KINDS = OPTIONAL_MAILS.map(({ kind }) => kind);
