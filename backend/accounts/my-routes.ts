@@ -7,12 +7,14 @@ import { absent, Refusal, stale } from '../api/refusal';
 import { personOf, serve, type Asked, type Served } from '../api/serve';
 import { change } from '../audit/change';
 import { utcText, type Ground } from '../ground';
+import { passwordChanged } from '../mail/notices';
 import { actorOf } from './actor';
 import { clearCookies } from './cookies';
 import { refuseWeakPassword } from './password-rules';
 import { meOf, rowOf } from './people-rows';
 import { setPassword } from './session-routes';
 import { endSession, endSessions } from './sessions';
+import { tell } from './tell';
 import { countAttempt } from './throttle';
 
 /** What everyone does with their own account. */
@@ -117,5 +119,6 @@ async function changeMyPassword(asked: PasswordAsked, ground: Ground): Promise<u
     const sessionsEnded = endSessions(tx, personId, 'new-password', nowMs(), sessionId);
     note({ action: 'my-password:changed', subjectKind: 'person', subjectId: personId, details: { by: 'password', sessionsEnded } });
   });
+  tell(ground, personId, (noticed) => passwordChanged(noticed, 'password'));
   return undefined;
 }

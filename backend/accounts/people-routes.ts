@@ -18,6 +18,7 @@ import { issueMailedToken, voidMailedTokens } from './mailed-tokens';
 import { othersCoordinate, peopleAfter, personOfId, rowOf } from './people-rows';
 import { ROLE_COLUMNS } from './roles-of';
 import { endSessions } from './sessions';
+import { tellOfRole } from './tell';
 
 /** What coordinators do with people and their roles. */
 export const peopleRoutes = (): Served[] => [
@@ -56,19 +57,26 @@ export const peopleRoutes = (): Served[] => [
   serve(PEOPLE_ROUTES.enablePerson, { placeOf: () => DEPLOYMENT, handle: (asked, ground) => setDisabled(asked, ground, false) }),
   serve(PEOPLE_ROUTES.giveRole, {
     placeIn: ({ body: { networkId } }) => placeOfRole(networkId),
-    handle: (asked, ground) =>
-      change(ground, actorOf(asked), (tx, note) => {
-        const { id: personId } = rowOf(tx, asked.params.personId);
-        return insertRole(tx, note, personId, asked.body, personOf(asked).personId, ground.nowMs());
-      }),
+    handle: (asked, ground) => {
+      const { personId: by } = personOf(asked);
+      const { personId } = asked.params;
+      const given = change(ground, actorOf(asked), (tx, note) => {
+        rowOf(tx, personId);
+        return insertRole(tx, note, personId, asked.body, by, ground.nowMs());
+      });
+      tellOfRole(ground, { personId, by }, 'given', given);
+      return given;
+    },
   }),
   serve(PEOPLE_ROUTES.changeRole, {
     placeOf: ({ params: { roleId } }, { db }) => placeOfHeld(db, roleId),
-    handle: (asked, ground) =>
-      change(ground, actorOf(asked), (tx, note) => {
+    handle: (asked, ground) => {
+      const { personId: by } = personOf(asked);
+      const { before, changed } = change(ground, actorOf(asked), (tx, note) => {
         const { expiresAt, version } = asked.body;
         refusePast(expiresAt, ground.nowMs());
-        const { personId, networkId, role, id } = heldRow(tx, asked.params.roleId);
+        const before = heldRow(tx, asked.params.roleId);
+        const { personId, networkId, role, id } = before;
         if (expiresAt !== null && networkId === null) refuseLast(tx, personId);
         const [changed] = tx
           .update(roles)
@@ -79,25 +87,33 @@ export const peopleRoutes = (): Served[] => [
         if (!changed) throw stale();
         noteRevoked(tx, { kind: 'role', personId });
         note({ action: 'role:changed', subjectKind: 'person', subjectId: personId, networkId, details: { roleId: id, role, expiresAt } });
-        return changed;
-      }),
+        return { before, changed };
+      });
+      if (changed.expiresAt !== before.expiresAt) tellOfRole(ground, { personId: before.personId, by }, 'changed', changed);
+      return changed;
+    },
   }),
   serve(PEOPLE_ROUTES.takeRole, {
     placeOf: ({ params: { roleId } }, { db }) => placeOfHeld(db, roleId),
-    handle: (asked, ground) =>
-      change(ground, actorOf(asked), (tx, note) => {
-        const { personId, networkId, siteId, role, id } = heldRow(tx, asked.params.roleId);
+    handle: (asked, ground) => {
+      const { personId: by } = personOf(asked);
+      const ended = change(ground, actorOf(asked), (tx, note) => {
+        const held = heldRow(tx, asked.params.roleId);
+        const { personId, networkId, siteId, role, id } = held;
         if (networkId === null) refuseLast(tx, personId);
         const taken = tx
           .update(roles)
-          .set({ takenAt: utcText(ground.nowMs()), takenBy: personOf(asked).personId, version: sql`${roles.version} + 1` })
+          .set({ takenAt: utcText(ground.nowMs()), takenBy: by, version: sql`${roles.version} + 1` })
           .where(and(eq(roles.id, id), eq(roles.version, asked.body.version)))
           .run();
         if (taken.changes === 0) throw stale();
         noteRevoked(tx, { kind: 'role', personId });
         note({ action: 'role:taken', subjectKind: 'person', subjectId: personId, networkId, details: { roleId: id, role, siteId } });
-        return undefined;
-      }),
+        return held;
+      });
+      tellOfRole(ground, { personId: ended.personId, by }, 'ended', ended);
+      return undefined;
+    },
   }),
 ];
 

@@ -1,4 +1,5 @@
 import { eq } from 'drizzle-orm';
+import { browserWords } from '#shared/contract/browser-words';
 import { SESSION_ROUTES } from '#shared/contract/people-routes';
 import { people } from '#schema/schema';
 import { callerOf } from '../api/caller';
@@ -7,14 +8,17 @@ import { serve, type Asked, type Served } from '../api/serve';
 import { change, type Tx } from '../audit/change';
 import { utcText, type Ground } from '../ground';
 import { reset, resetLink } from '../mail/letters';
+import { enteredFromNewBrowser, passwordChanged } from '../mail/notices';
 import { ACCESS_S, writeAccess, type Claimed } from './access-token';
 import { personAsActor, serverAsActor } from './actor';
 import { ACCESS_COOKIE, clearCookies, cookieOf, REFRESH_COOKIE, setCookie } from './cookies';
+import { isNewBrowser } from './known-browser';
 import { holderOfMailedToken, issueMailedToken, voidMailedTokens, type Purpose } from './mailed-tokens';
 import { isWeak } from './password-hash';
 import { refuseWeakPassword } from './password-rules';
 import { meOf } from './people-rows';
-import { beginSession, endSession, endSessions, IDLE_S, rotate, sessionOfRefresh } from './sessions';
+import { beginSession, endSession, endSessions, IDLE_S, keptBrowser, rotate, sessionOfRefresh } from './sessions';
+import { tell } from './tell';
 import { countAttempt, forgive } from './throttle';
 
 type AnyAsked = Asked<unknown, unknown, unknown>;
@@ -54,16 +58,23 @@ async function signIn(asked: AnyAsked & { body: { email: string; password: strin
   forgive(ground, account);
   const stronger = isWeak(stored) ? await passwords.hash(password) : undefined;
   const personId = known.id;
-  const { sessionId, refresh: token } = change(ground, personAsActor(personId, asked), (tx, note) => {
+  const userAgent = asked.exchange.header('user-agent') ?? '';
+  const {
+    sessionId,
+    refresh: token,
+    isNew,
+  } = change(ground, personAsActor(personId, asked), (tx, note) => {
     // What was true before the hash was computed must still be: neither a disabled person nor an old password gets in.
     const now = tx.select().from(people).where(eq(people.id, personId)).get();
     if (now?.passwordHash !== stored || now.disabledAt !== null) throw notSignedIn();
     if (stronger !== undefined) tx.update(people).set({ passwordHash: stronger }).where(eq(people.id, personId)).run();
-    const begun = beginSession(tx, personId, asked.exchange.header('user-agent') ?? '', nowMs());
+    const isNew = isNewBrowser(tx, now, userAgent, nowMs());
+    const begun = beginSession(tx, personId, userAgent, nowMs());
     note({ action: 'session:begun', subjectKind: 'session', subjectId: begun.sessionId });
-    return begun;
+    return { ...begun, isNew };
   });
   giveCookies(asked, ground, { personId, sessionId }, token);
+  if (isNew) tell(ground, personId, (noticed) => enteredFromNewBrowser(noticed, browserWords(keptBrowser(userAgent))));
   return meOf(db, personId, nowMs());
 }
 
@@ -157,6 +168,7 @@ async function choosePassword(
     });
   });
   forgive(ground, { kind: 'account', of: email });
+  if (purpose === 'reset') tell(ground, personId, (noticed) => passwordChanged(noticed, 'reset'));
   return undefined;
 }
 

@@ -34,6 +34,9 @@ export function liveSession({ db, nowMs }: Pick<Ground, 'db' | 'nowMs'>, { sessi
     .get();
 }
 
+/** What is kept of what a browser calls itself. */
+export const keptBrowser = (userAgent: string): string => userAgent.slice(0, MOST_BROWSER_CHARACTERS);
+
 /** Begins a session and gives its first refresh token; sessions that ended a month ago are forgotten meanwhile. */
 export function beginSession(tx: Tx, personId: number, browser: string, nowMs: number): { sessionId: number; refresh: string } {
   tx.delete(sessions)
@@ -46,7 +49,7 @@ export function beginSession(tx: Tx, personId: number, browser: string, nowMs: n
       createdAt: utcText(nowMs),
       lastUsedAt: utcText(nowMs),
       expiresAt: utcText(nowMs + LONGEST_S * 1000),
-      browser: browser.slice(0, MOST_BROWSER_CHARACTERS),
+      browser: keptBrowser(browser),
     })
     .returning({ sessionId: sessions.id })
     .get();

@@ -32,10 +32,18 @@ export function postOffice(smtpUrl: string, from: string, log: Logger): PostOffi
   });
   const onTheirWay = new Set<Promise<void>>();
   const closing = new AbortController();
-  const send = async ({ kind, personId, to, subject, text }: Letter): Promise<void> => {
+  const send = async ({ kind, personId, to, subject, text, html }: Letter): Promise<void> => {
     for (let tries = 0; ; tries += 1) {
       try {
-        await transport.sendMail({ from, to: { name: '', address: to }, subject, text, disableFileAccess: true, disableUrlAccess: true });
+        await transport.sendMail({
+          from,
+          to: { name: '', address: to },
+          subject,
+          text,
+          html,
+          disableFileAccess: true,
+          disableUrlAccess: true,
+        });
         log.info({ event: 'mail:sent', kind, personId }, 'mail sent');
         return;
       } catch (fault) {

@@ -10,7 +10,7 @@ const MOST_NAME_CHARACTERS = 200;
 const MOST_LABEL_CHARACTERS = 100;
 
 /** Control characters, lone surrogates, line ends, and marks that turn the direction of what follows: none belongs into one line of text. */
-const NOT_IN_A_LINE = /[\p{Cc}\p{Cs}\u2028\u2029\u061c\u200e\u200f\u202a-\u202e\u2066-\u2069]/u;
+export const NOT_IN_A_LINE = /[\p{Cc}\p{Cs}\u2028\u2029\u061c\u200e\u200f\u202a-\u202e\u2066-\u2069]/u;
 
 /** One line of text without spaces at its ends, of 1 to a number of characters. */
 export const line = (most: number) => {
