@@ -14,8 +14,18 @@ interface OptionalMail {
  * which letters are sent; every other mail (invitations, links for a new password, word of a changed one) always comes.
  */
 export const OPTIONAL_MAILS = [
-  { kind: 'new-browser', usual: 'on', name: 'New browser', sentence: 'Your account was entered from a browser not used for 30 days.' },
-  { kind: 'role', usual: 'on', name: 'Your roles', sentence: 'Someone gave you a role, changed until when you hold one, or ended it.' },
+  {
+    kind: 'new-browser',
+    usual: 'on',
+    name: 'New browser',
+    sentence: 'When someone signs in to your account from a browser not used for 30 days.',
+  },
+  {
+    kind: 'role',
+    usual: 'on',
+    name: 'Your roles',
+    sentence: 'When somebody else gives you a role, changes until when you hold it, or ends it.',
+  },
 ] as const satisfies readonly OptionalMail[];
 
 export type MailKind = (typeof OPTIONAL_MAILS)[number]['kind'];

@@ -220,6 +220,25 @@ test('what someone chose follows them to another browser, and signing out there 
   await button('UTC').click();
 });
 
+test('a kind of mail is switched off at once, stays so, and axe is silent about its switch', async () => {
+  await page.goto('/account');
+  const mails = page.locator('sw-my-mails');
+  const roles = mails.getByRole('group', { name: 'Your roles' });
+  await expect(button('On', roles)).toHaveAttribute('aria-pressed', 'true');
+  await expect(mails).toContainText('your password was changed always come');
+  await button('Off', roles).click();
+  await said('Mails off: Your roles.');
+  await page.reload();
+  await expect(button('Off', roles)).toHaveAttribute('aria-pressed', 'true');
+  await expect(button('On', mails.getByRole('group', { name: 'New browser' }))).toHaveAttribute('aria-pressed', 'true');
+  expect(await axe()).toEqual([]);
+  await page.setViewportSize(NARROW);
+  expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBe(NARROW.width);
+  await page.setViewportSize(WIDE);
+  await button('On', roles).click();
+  await said('Mails on: Your roles.');
+});
+
 test('two tabs whose session is due renew it one after the other, and both go on', async () => {
   const second = await context.newPage();
   await Promise.all([page.goto('/sites'), second.goto('/sites')]);

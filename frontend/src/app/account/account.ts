@@ -4,15 +4,16 @@ import { SCALES } from '#shared/time/scales';
 import { Preferences } from '../preferences/preferences';
 import { SessionStore } from '../session/session-store';
 import { Segmented } from '../ui/segmented';
+import { MyMails } from './my-mails';
 import { MyName } from './my-name';
 import { MyPassword } from './my-password';
 import { MySessions } from './my-sessions';
 import { RoleWords } from '../coordinate/role-words';
 
-/** What everyone sees and changes of their own: name, password, sessions, and how things are shown to them. */
+/** What everyone sees and changes of their own: name, password, sessions, how things are shown to them, and their mails. */
 @Component({
   selector: 'sw-account',
-  imports: [MyName, MyPassword, MySessions, RoleWords, Segmented],
+  imports: [MyMails, MyName, MyPassword, MySessions, RoleWords, Segmented],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './account.html',
   styleUrl: './account.scss',
