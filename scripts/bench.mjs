@@ -23,5 +23,5 @@ await build({
   external: ['./scripts/lib.mjs'], // it knows the checkout by where it lies
   logLevel: 'warning',
 });
-for (const name of ['finder', 'command', 'lists', 'stream', 'lists-streamed'])
+for (const name of ['finder', 'command', 'lists', 'stream', 'lists-streamed', 'slider', 'desk-live', 'first-load'])
   run(process.execPath, [`dist/bench/${name}.bench.js`], { stdout: 1 });

@@ -1,12 +1,10 @@
 import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { type Db } from '../../backend/db';
-import { fillCoincidences, fillEvents } from '../database/filled';
-import { insertRow } from '../support/network-rows';
-import { type Measured, type MeasuredServer, RATE_HZ, startMeasuredServer } from './measured-server';
+import { type MeasuredServer, RATE_HZ, startMeasuredServer } from './measured-server';
 import { median, percentile, ratioText } from './medians';
 import { startSitesProcess } from './sites-process';
+import { fillStored } from './stored-coincidences';
 
 const ROWS = Number(process.env['ROWS'] ?? 1_000_000);
 const ROUNDS = 6; // the first one warms up
@@ -23,29 +21,6 @@ const LISTS: readonly (readonly [name: string, query: string])[] = [
   ['by margin, first page', '&sort=margin'],
   ['by fold, first page', '&sort=fold'],
 ];
-
-/** So many events and as many coincidences, all searched and final, as they are long after they came. */
-function fill(db: Db, { versionId }: Measured): void {
-  const { $client: client } = db;
-  const table = client.prepare<[], number>('SELECT id FROM leap_second_tables WHERE is_in_force = 1').pluck().get();
-  client.exec(`INSERT INTO groundings (site_version_id, segment_id, reference_version_id, run_id, leap_second_table_id)
-    SELECT v.id, s.id, r.id, 1, ${table ?? 0} FROM site_versions v JOIN clock_segments s ON s.clock_id = v.clock_id, time_reference_versions r ORDER BY v.id`);
-  fillEvents(client, ROWS);
-  fillCoincidences(client, ROWS);
-  client.exec(`UPDATE coincidences SET state = 'final' WHERE state = 'open'`);
-  // The numbers of changes that the filled rows name; the last says that all has been searched.
-  const last = 2 + ROWS / 100;
-  const none = { ids: [] };
-  const body = JSON.stringify({ coincidences: { appeared: none, ended: none, final: none }, crowded: 0, searchedTo: last });
-  client
-    .prepare(
-      `WITH RECURSIVE n(i) AS (SELECT 1 UNION ALL SELECT i + 1 FROM n WHERE i < ?)
-       INSERT INTO changes (network_id, number, at_ms, kind, body) SELECT 1, i, i, 'records', ? FROM n`,
-    )
-    .run(last, body);
-  const job = { network_id: 1, kind: 'search-log', body: JSON.stringify({ ruleVersionId: versionId }), state: 'done' };
-  insertRow(db, 'jobs', { ...job, run_after_ms: 1, created_at_ms: 1, ended_at_ms: 1 });
-}
 
 /** The times of each list, asked in turn while something goes on. */
 async function askDuring({ client, networkId }: MeasuredServer, what: Promise<unknown>): Promise<readonly (readonly number[])[]> {
@@ -69,7 +44,7 @@ const pause = (ms: number): Promise<void> => new Promise((resolve) => setTimeout
 const folder = mkdtempSync(join(tmpdir(), 'skewline-lists-streamed-'));
 const sites = startSitesProcess();
 try {
-  const server = await startMeasuredServer(folder, (db, measured) => db.$client.transaction(() => fill(db, measured))());
+  const server = await startMeasuredServer(folder, (db, measured) => db.$client.transaction(() => fillStored(db, measured, ROWS))());
   await sites.tell({ is: 'begin', url: server.url, keys: server.keys, cookie: '', networkId: 0, bareUrl: '' });
   const idle = LISTS.map((): number[] => []);
   const busy = LISTS.map((): number[] => []);
