@@ -92,29 +92,30 @@ export class Diagram {
   private readonly themeTurns = signal(0);
   private lastSpokenMs = 0;
 
+  /** How many rows are within the box: all that each frame of a drag needs to know, however many there are. */
+  private readonly many = computed(() => {
+    const isIn = this.boxTest();
+    const { count } = this.plane();
+    let many = 0;
+    for (let row = 0; row < count; row++) if (isIn(row)) many++;
+    return many;
+  });
   /** The rows within the box. */
   private readonly shown = computed<readonly number[]>(() => {
-    const { box } = this.picture();
-    const { count, xMs, tMs } = this.plane();
-    const [x, y] = [this.x(), this.y()];
-    const [x0, kx, y0, ky] = [x(0), x(1) - x(0), y(0), y(1) - y(0)];
+    const isIn = this.boxTest();
+    const { count } = this.plane();
     const rows: number[] = [];
-    for (let row = 0; row < count; row++) {
-      const px = x0 + kx * (xMs[row] ?? 0);
-      const py = y0 + ky * (tMs[row] ?? 0);
-      if (px >= box.left - 1 && py >= box.top - 1 && px <= box.left + box.width + 1 && py <= box.top + box.height + 1) rows.push(row);
-    }
+    for (let row = 0; row < count; row++) if (isIn(row)) rows.push(row);
     return rows;
   });
   protected readonly drawn = computed(() => {
-    const many = this.shown().length;
+    const many = this.many();
     return many <= MOST_IN_SVG ? 'svg' : many <= MOST_MARKS ? 'canvas' : 'density';
   });
 
   protected readonly singles = computed(() => {
-    const rows = this.shown();
-    if (rows.length > MOST_NAMED) return [];
-    return rows
+    if (this.many() > MOST_NAMED) return [];
+    return this.shown()
       .filter((row) => row !== this.selected())
       .map((row) => {
         const { x, y } = this.markOf(row);
@@ -124,8 +125,8 @@ export class Diagram {
   });
   /** Marks of one kind as one path. */
   protected readonly groups = computed(() => {
+    if (this.many() <= MOST_NAMED || this.drawn() !== 'svg') return [];
     const rows = this.shown();
-    if (rows.length <= MOST_NAMED || this.drawn() !== 'svg') return [];
     const half = rows.length > 600 ? MARK_PX * 0.6 : MARK_PX * 0.85;
     return MARK_KINDS.flatMap((kind, number) =>
       [false, true].map((hollow) => ({
@@ -276,7 +277,7 @@ export class Diagram {
 
   private paint(): void {
     const canvas = this.canvas().nativeElement;
-    const inBox = this.shown().length;
+    const inBox = this.many();
     const { box } = this.picture();
     const context = canvas.getContext('2d');
     if (!context) return;
@@ -297,6 +298,20 @@ export class Diagram {
     this.themeTurns();
     return coloursAt(this.host);
   });
+
+  /** Whether a row's mark is within the box, or touches it. */
+  private boxTest(): (row: number) => boolean {
+    const { box } = this.picture();
+    const { xMs, tMs } = this.plane();
+    const [x, y] = [this.x(), this.y()];
+    const [x0, kx, y0, ky] = [x(0), x(1) - x(0), y(0), y(1) - y(0)];
+    const [left, top, right, bottom] = [box.left - 1, box.top - 1, box.left + box.width + 1, box.top + box.height + 1];
+    return (row) => {
+      const px = x0 + kx * (xMs[row] ?? 0);
+      const py = y0 + ky * (tMs[row] ?? 0);
+      return px >= left && py >= top && px <= right && py <= bottom;
+    };
+  }
 
   private markOf(row: number): PictureMark {
     const { xMs, tMs } = this.plane();
