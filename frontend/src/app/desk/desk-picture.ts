@@ -48,14 +48,17 @@ export class DeskPicture {
   private readonly columns = computed(() => this.data.events().columns);
   readonly book = computed(() => new PairBook(this.data.pairs()));
 
+  private readonly eventId = computed(() => this.place.address().event);
+  private readonly otherId = computed(() => this.place.address().other);
+
   /** The row of the event that the others are compared with; -1 where it is not there. */
-  readonly originRow = computed(() => this.data.events().rowOf.get(this.place.address().event ?? 0) ?? -1);
+  readonly originRow = computed(() => this.data.events().rowOf.get(this.eventId() ?? 0) ?? -1);
   readonly origin = computed(() => (this.originRow() < 0 ? undefined : this.data.events().briefs[this.originRow()]));
 
   /** The other end of the baseline: what the address says, else of the event's coincidences, else the nearest in time of another site. */
   readonly otherRow = computed(() => {
-    const [events, row, { other, event }] = [this.data.events(), this.originRow(), this.place.address()];
-    const said = events.rowOf.get(other ?? 0);
+    const [events, row, event] = [this.data.events(), this.originRow(), this.eventId()];
+    const said = events.rowOf.get(this.otherId() ?? 0);
     if (said !== undefined && said !== row) return said;
     if (row < 0) return -1;
     const site = this.columns().site[row];
@@ -143,12 +146,16 @@ export class DeskPicture {
   readonly widthPx = computed(() => this.size().widthPx);
   readonly heightPx = computed(() => this.size().heightPx);
 
-  private readonly sight = computed<Sight>(() => {
-    const [{ width, height }, spanMs] = [this.box(), this.spanMs()];
-    const pxPerMs = height / spanMs;
-    const { topMs = spanMs * ABOVE, leftMs } = this.place.address();
-    return { pxPerMs, topMs, leftMs: leftMs ?? (this.view() === 'baseline' ? this.baselineLeftMs(width / pxPerMs) : 0) };
-  });
+  /** The same object while nothing of it changes: a drag of the slider changes the address, and what stands on this is not computed anew. */
+  private readonly sight = computed<Sight>(
+    () => {
+      const [{ width, height }, spanMs] = [this.box(), this.spanMs()];
+      const pxPerMs = height / spanMs;
+      const { topMs = spanMs * ABOVE, leftMs } = this.place.address();
+      return { pxPerMs, topMs, leftMs: leftMs ?? (this.view() === 'baseline' ? this.baselineLeftMs(width / pxPerMs) : 0) };
+    },
+    { equal: (a, b) => a.pxPerMs === b.pxPerMs && a.topMs === b.topMs && a.leftMs === b.leftMs },
+  );
   readonly scales = computed(() => {
     if (this.view() !== 'sites') return oneScale(this.sight(), this.box());
     const { until, topMs = until ? 0 : this.spanMs() * EDGE_ROOM } = this.place.address();
