@@ -1,5 +1,5 @@
 import { InjectionToken } from '@angular/core';
-import { type Observable } from 'rxjs';
+import { Observable } from 'rxjs';
 import { type CoincidenceBrief } from '#shared/contract/coincidence';
 import { type EventBrief } from '#shared/contract/event-routes';
 import { type Instant } from '#shared/time/instant';
@@ -44,3 +44,46 @@ export function withRows<Row extends { readonly id: number }>(rows: readonly Row
     ...items.filter(({ id }) => !known.has(id)),
   ];
 }
+
+/** What two pieces of news come to, the second told after the first. */
+export function newsAfter(first: DeskNews, second: DeskNews): DeskNews {
+  const [was, is] = [first.coincidences, second.coincidences];
+  const told = new Set(is?.items.map(({ id }) => id));
+  return {
+    events: first.events && second.events && rowsAfter(first.events, second.events),
+    coincidences: was && is && { ...rowsAfter(was, is), final: [...was.final.filter((id) => !told.has(id)), ...is.final] },
+    hasRecords: first.hasRecords || second.hasRecords,
+    hasSetup: first.hasSetup || second.hasSetup,
+  };
+}
+
+function rowsAfter<Row extends { readonly id: number }>(first: Rows<Row>, second: Rows<Row>): Rows<Row> {
+  const over = new Set(second.items.map(({ id }) => id));
+  return { items: withRows(first.items, second), gone: [...first.gone.filter((id) => !over.has(id)), ...second.gone] };
+}
+
+/**
+ * News at most once in a time: the first at once, and what comes until then together, so that a busy network is drawn as often as it can be
+ * seen, and not as often as it sends.
+ */
+export const gathered =
+  (everyMs: number) =>
+  (news: Observable<DeskNews>): Observable<DeskNews> =>
+    new Observable((subscriber) => {
+      let waiting: DeskNews | undefined;
+      let timer: ReturnType<typeof setTimeout> | undefined;
+      const tell = (): void => {
+        const told = waiting;
+        waiting = undefined;
+        timer = told && setTimeout(tell, everyMs);
+        if (told) subscriber.next(told);
+      };
+      const heard = news.subscribe((one) => {
+        waiting = waiting ? newsAfter(waiting, one) : one;
+        if (timer === undefined) tell();
+      });
+      return () => {
+        heard.unsubscribe();
+        clearTimeout(timer);
+      };
+    });

@@ -37,7 +37,7 @@ import { DeskFrames } from './desk-frames';
 import { DeskLists } from './desk-lists';
 import { DeskPicture, GUTTER_PX } from './desk-picture';
 import { DeskPlace } from './desk-place';
-import { DESK_SOURCE } from './desk-source';
+import { DESK_SOURCE, gathered } from './desk-source';
 import { EventTable } from './event-table';
 import { plain, signed, withUnit } from './figures';
 import { LiveDeskSource } from './live-desk-source';
@@ -59,6 +59,7 @@ const SPANS_MS = {
 } as const;
 const FOLDS = [2, 3, 4, 5, 6, 8];
 const NARROW_PX = 700;
+const NEWS_EVERY_MS = 250;
 const AT_REST = { speedC: 0, frame: undefined };
 const CLASSES = ['spacelike', 'timelike', 'undecided'] as const;
 
@@ -164,7 +165,7 @@ export class Desk {
   constructor() {
     const destroyed = inject(DestroyRef);
     const source = inject(DESK_SOURCE);
-    source.news.pipe(takeUntilDestroyed()).subscribe((news) => {
+    source.news.pipe(gathered(NEWS_EVERY_MS), takeUntilDestroyed()).subscribe((news) => {
       if (news.hasRecords && !this.isPaused()) {
         this.data.hear(news);
         void this.lists.hear(news);
