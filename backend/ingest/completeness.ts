@@ -1,5 +1,6 @@
 import { compareInstants, type Instant } from '#shared/time/instant';
 import { type Db } from '../db';
+import { part, rowsOf } from '../search/query';
 
 interface CompleteRow {
   complete_tai_s: number | null;
@@ -12,10 +13,13 @@ interface CompleteRow {
  * @returns undefined while one of them has not said, or there is none
  */
 export function completenessOf(db: Db, networkId: number): Instant | undefined {
-  const query = `SELECT complete_tai_s, complete_ps FROM site_streams
-    WHERE site_id IN (SELECT id FROM sites WHERE network_id = ? AND closed_at IS NULL)`;
+  const query = part(
+    `SELECT complete_tai_s, complete_ps FROM site_streams
+     WHERE site_id IN (SELECT id FROM sites WHERE network_id = ? AND closed_at IS NULL)`,
+    networkId,
+  );
   let least: Instant | undefined;
-  for (const { complete_tai_s: taiS, complete_ps: ps } of db.$client.prepare<[number], CompleteRow>(query).all(networkId)) {
+  for (const { complete_tai_s: taiS, complete_ps: ps } of rowsOf<CompleteRow>(db, query)) {
     if (taiS === null || ps === null) return undefined;
     const said = { taiS, ps };
     if (!least || compareInstants(said, least) < 0) least = said;

@@ -35,9 +35,11 @@ interface Noted {
   readonly revoked: Revoked[];
 }
 
-const notedBy = new WeakMap<Tx, Noted>();
 /** What is noted in the transaction that a database has open. */
 const openIn = new WeakMap<Db, Noted>();
+/** What Drizzle hands to the work of a database's transactions: made once, since making it anew costs more than a small transaction. */
+const handles = new WeakMap<Db, Tx>();
+const databases = new WeakMap<Tx, Db>();
 const listenersOf = new WeakMap<Db, Set<CommitListener>>();
 
 /**
@@ -55,10 +57,7 @@ export function commit<T>(db: Db, work: (tx: Tx) => T): T {
   openIn.set(db, noted);
   let value: T;
   try {
-    value = inTransaction(db, (tx) => {
-      notedBy.set(tx, noted);
-      return work(tx);
-    });
+    value = inTransaction(db, work);
   } finally {
     if (outer) openIn.set(db, outer);
     else openIn.delete(db);
@@ -74,11 +73,21 @@ export function commit<T>(db: Db, work: (tx: Tx) => T): T {
 
 function inTransaction<T>(db: Db, work: (tx: Tx) => T): T {
   try {
-    return db.transaction(work, { behavior: 'immediate' });
+    const tx = handleOf(db);
+    return db.$client.transaction(() => work(tx)).immediate();
   } catch (fault) {
     if (isLostWrite(fault)) endBy(fault);
     throw fault;
   }
+}
+
+function handleOf(db: Db): Tx {
+  const known = handles.get(db);
+  if (known) return known;
+  const made = db.transaction((tx) => tx);
+  handles.set(db, made);
+  databases.set(made, db);
+  return made;
 }
 
 /** Thrown where nothing catches it. */
@@ -118,7 +127,8 @@ export const databaseOf = (tx: Tx): Db => notedIn(tx).db;
 export const noteRevoked = (tx: Tx, revoked: Revoked): number => notedIn(tx).revoked.push(revoked);
 
 function notedIn(tx: Tx): Noted {
-  const noted = notedBy.get(tx);
+  const db = databases.get(tx);
+  const noted = db && openIn.get(db);
   if (!noted) throw new Error('something was noted in a transaction that commit() of backend/writer/commit.ts did not begin');
   return noted;
 }
