@@ -7,15 +7,15 @@ export interface Gathered {
   readonly add: (stored: Stored) => void;
   readonly events: () => number;
   readonly isEmpty: () => boolean;
-  /** Each network's, as if one commit had brought it all; nothing is left. */
-  readonly take: () => readonly Stored[];
+  /** The oldest, until there are so many events: each network's as if one commit had brought it all. */
+  readonly take: (mostEvents: number) => readonly Stored[];
 }
 
 const bringsNewEventsAlone = ({ withdrawn, arrived }: Stored): boolean =>
   withdrawn.length === 0 && arrived.every(({ eventVersion }) => eventVersion === 1);
 
 export function gathered(): Gathered {
-  let networks = new Map<number, Stored[]>();
+  const networks = new Map<number, Stored[]>();
   let events = 0;
   return {
     canHold: bringsNewEventsAlone,
@@ -27,11 +27,17 @@ export function gathered(): Gathered {
     },
     events: () => events,
     isEmpty: () => networks.size === 0,
-    take: () => {
-      const all = [...networks.values()].map(asOne);
-      networks = new Map();
-      events = 0;
-      return all;
+    take: (mostEvents) => {
+      const taken = new Map<number, Stored[]>();
+      let count = 0;
+      for (const [networkId, commits] of networks) {
+        const until = commits.findIndex(({ arrived }) => (count += arrived.length) >= mostEvents);
+        taken.set(networkId, until < 0 ? commits : commits.splice(0, until + 1));
+        if (until < 0 || commits.length === 0) networks.delete(networkId);
+        if (until >= 0) break;
+      }
+      events -= count;
+      return [...taken.values()].map(asOne);
     },
   };
 }

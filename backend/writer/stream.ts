@@ -10,7 +10,9 @@ import { gathered } from './gathered';
 import { type Answers } from './questions';
 
 const LOOK_FOR_DUE_MS = 1_000; // readings of the future, whose time has come
-const MOST_GATHERED = 4 * MOST_GROUP_ROWS; // events that are searched at once, while more wait to be stored than a transaction takes
+const MOST_AT_ONCE = 4 * MOST_GROUP_ROWS; // events that are searched together
+/** Events that wait for the search while more wait to be stored than a transaction takes: what a site catches up with is stored first. */
+const MOST_GATHERED = 32 * MOST_GROUP_ROWS;
 
 /** Events whose search goes into their own transaction: so few that nobody waits long for their answer, and one commit costs more than it. */
 const MOST_ALONG = 100;
@@ -41,7 +43,7 @@ export function openStream(ground: Ground, fatal: (fault: unknown) => void): Str
     onStored: (stored: Stored): void => {
       if (unsearched.canHold(stored)) unsearched.add(stored);
       else {
-        searchGathered();
+        searchAllGathered();
         searchOne(stored);
       }
       rest.wake();
@@ -53,17 +55,21 @@ export function openStream(ground: Ground, fatal: (fault: unknown) => void): Str
       return true;
     },
     onInForce: (network: Parameters<CoincidenceSearch['onInForce']>[0]): void => {
-      searchGathered(); // it was computed by what was in force
+      searchAllGathered(); // it was computed by what was in force
       search.onInForce(network);
       rest.wake();
     },
   };
 
-  /** Answers whether there was anything. */
+  /** A piece of it; answers whether there was anything. */
   function searchGathered(): boolean {
-    const all = unsearched.take();
-    for (const stored of all) searchOne(stored);
-    return all.length > 0;
+    const some = unsearched.take(MOST_AT_ONCE);
+    for (const stored of some) searchOne(stored);
+    return some.length > 0;
+  }
+
+  function searchAllGathered(): void {
+    while (searchGathered());
   }
 
   function searchOne(stored: Stored): void {
@@ -81,7 +87,7 @@ export function openStream(ground: Ground, fatal: (fault: unknown) => void): Str
   ground.onCommitted(({ changes }) => {
     for (const { kind, networkId } of changes) {
       if (kind !== 'rule') continue;
-      searchGathered();
+      searchAllGathered();
       search.rulesChanged(networkId);
     }
     if (changes.length > 0) rest.wake();
@@ -111,7 +117,7 @@ export function openStream(ground: Ground, fatal: (fault: unknown) => void): Str
       clearInterval(due);
       rest.end();
       await ingest.whenIdle();
-      searchGathered();
+      searchAllGathered();
     },
   };
 }
