@@ -14,6 +14,7 @@ import { type Picture } from '../diagrams/picture';
 import { alongDirection, aroundEvent, boostPlane, emptyPlane, lightMsBetween, placeOf, type Plane } from '../diagrams/plane';
 import { instantParts } from '../instants/instant-parts';
 import { Preferences } from '../preferences/preferences';
+import { calmly } from '../ui/calmly';
 import { DeskEvents, PairBook, USUAL_SPAN_MS } from './desk-events';
 import { DeskLists } from './desk-lists';
 import { DeskPlace } from './desk-place';
@@ -31,6 +32,7 @@ const BOTTOM_PX = 46;
 export const GUTTER_PX = 84;
 const LANE_PX = 39;
 const AT_MOST_ACROSS = 0.45; // of the page is the diagram's
+const TOLD_EVERY_MS = 80;
 const AROUND_MS = 43; // light through the Earth and a little more
 
 /** Everything that the diagram and the table beside it draw, computed from what is held, the address and the size. */
@@ -211,14 +213,22 @@ export class DeskPicture {
     return Uint8Array.from({ length: count }, (_, row) => (site[row] === a || site[row] === b ? 0 : 1));
   });
 
+  /** The speed that the table tells of: during a drag somewhat behind the diagram, since nobody reads figures that change with each frame. */
+  readonly toldSpeed = calmly(this.speed, TOLD_EVERY_MS);
+  /** The time of a row in the frame that the table tells of, ms from the event. */
+  readonly toldMs = computed(() => {
+    const [{ tMs, xMs }, { gamma, gammaBeta }] = [this.rest(), this.toldSpeed()];
+    return (row: number): number => gamma * (tMs[row] ?? 0) - gammaBeta * (xMs[row] ?? 0);
+  });
+
   /** Which of the compared and the event have changed sides against the geocentric frame, by rows. */
   readonly turned = computed<ReadonlyMap<number, readonly number[]>>(() => {
-    if (this.speed().gammaBeta === 0) return new Map();
+    if (this.toldSpeed().gammaBeta === 0) return new Map();
     const rows = [...this.compared(), this.originRow()];
-    const [rest, now, mayTurn] = [this.rest(), this.plane(), this.mayTurn()];
+    const [rest, mayTurn] = [this.rest(), this.mayTurn()];
     const turned = turnedWith(
       rows.map((row) => rest.tMs[row] ?? 0),
-      rows.map((row) => now.tMs[row] ?? 0),
+      rows.map(this.toldMs()),
       (a, b) => mayTurn[a * rows.length + b] === 1,
     );
     return new Map(rows.map((row, i) => [row, (turned[i] ?? []).map((j) => rows[j] ?? -1)]));

@@ -34,13 +34,13 @@ export class EventTable {
   readonly picked = output<number>();
 
   protected readonly isBaseline = computed(() => this.picture.view() === 'baseline');
-  protected readonly isMoving = computed(() => this.picture.speed().gammaBeta !== 0);
+  protected readonly isMoving = computed(() => this.picture.toldSpeed().gammaBeta !== 0);
   /** Rows in the order of the frame that is shown, the newest first. */
   private readonly rows = computed(() => {
-    const { tMs } = this.picture.plane();
+    const toldMs = this.picture.toldMs();
     return [...this.picture.compared(), this.picture.originRow()]
       .filter((row) => row >= 0)
-      .sort((a, b) => (tMs[b] ?? 0) - (tMs[a] ?? 0) || b - a);
+      .sort((a, b) => toldMs(b) - toldMs(a) || b - a);
   });
   protected readonly rowPx = computed(() => {
     const fits = (this.picture.heightPx() - HEAD_PX) / Math.max(1, this.rows().length);
@@ -99,11 +99,11 @@ export class EventTable {
 
   protected readonly shown = computed(() => {
     const { briefs } = this.data.events();
-    const [rest, plane, kinds, turned] = [this.picture.rest(), this.picture.plane(), this.picture.kinds(), this.picture.turned()];
+    const [rest, toldMs, kinds, turned] = [this.picture.rest(), this.picture.toldMs(), this.picture.kinds(), this.picture.turned()];
     const [origin, book, cells] = [this.picture.origin(), this.picture.book(), this.frameCells()];
     const rings = new Set(this.picture.rings());
     const rows = this.rows();
-    const here = ranksOf(rows.map((row) => plane.tMs[row] ?? 0));
+    const here = ranksOf(rows.map(toldMs));
     const geocentric = cells[0];
     return rows.map((row, i) => {
       const brief = briefs[row];
@@ -124,7 +124,7 @@ export class EventTable {
         groups: parts?.groups ?? [],
         amplitude: brief?.amplitude?.toFixed(1) ?? '',
         dtMs: isOrigin ? '0' : signed(rest.tMs[row] ?? 0, 3),
-        timeHere: isOrigin ? '0' : signed(plane.tMs[row] ?? 0, 3),
+        timeHere: isOrigin ? '0' : signed(toldMs(row), 3),
         kind: kind === 'plain' || kind === 'selected' ? undefined : kind,
         dial: pair && {
           dtNs: pair.dtNs,
@@ -137,7 +137,7 @@ export class EventTable {
         turnedWith: siteList((turned.get(row) ?? []).map((other) => briefs[other]?.site ?? '')),
         hasTurnedWithOrigin: (turned.get(row) ?? []).includes(this.picture.originRow()),
         here: here[i] ?? 0,
-        hereLeads: isOrigin ? 'self' : (plane.tMs[row] ?? 0) > 0 ? 'origin' : 'row',
+        hereLeads: isOrigin ? 'self' : toldMs(row) > 0 ? 'origin' : 'row',
         cells: cells.map((column, k) => {
           const cell = column[i];
           const moved = k === 0 || cell?.rank === undefined || rankThere === undefined ? 0 : cell.rank - rankThere;
@@ -154,7 +154,7 @@ export class EventTable {
   protected readonly turnedPair = computed(() => {
     const [row, other] = [this.picture.originRow(), this.picture.otherRow()];
     if (!(this.picture.turned().get(row) ?? []).includes(other)) return '';
-    const aheadMs = this.picture.plane().tMs[other] ?? 0;
+    const aheadMs = this.picture.toldMs()(other);
     const [first, second] = aheadMs < 0 ? [this.picture.other(), this.picture.origin()] : [this.picture.origin(), this.picture.other()];
     return `${first?.site ?? ''} now comes ${withUnit(Math.abs(aheadMs).toFixed(3), 'ms')} before ${second?.site ?? ''}.`;
   });
