@@ -38,9 +38,7 @@ export class EventTable {
   /** Rows in the order of the frame that is shown, the newest first. */
   private readonly rows = computed(() => {
     const toldMs = this.picture.toldMs();
-    return [...this.picture.compared(), this.picture.originRow()]
-      .filter((row) => row >= 0)
-      .sort((a, b) => toldMs(b) - toldMs(a) || b - a);
+    return [...this.picture.compared(), this.picture.originRow()].filter((row) => row >= 0).sort((a, b) => toldMs(b) - toldMs(a) || b - a);
   });
   protected readonly rowPx = computed(() => {
     const fits = (this.picture.heightPx() - HEAD_PX) / Math.max(1, this.rows().length);
