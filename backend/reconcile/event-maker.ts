@@ -7,8 +7,8 @@ import { compareInstants, type Instant } from '#shared/time/instant';
 import { createTaiWriter } from '#shared/time/format';
 import { createReadingParser, type Reading, type ReadingFault, readingFaultText } from '#shared/time/reading';
 import { type SiteRecord } from '#shared/contract/site-record';
+import { readTaiPair, TAI_PAIR_RIGHT } from '#shared/time/tai-pair';
 import { type NetworkInForce, type RunInForce, runAt, type SiteInForce, type VersionInForce } from './network-in-force';
-import { readTaiPair, TAI_PAIR_RIGHT } from './tai-pair';
 
 /** Why a record of a site's stream is set aside by itself, whenever it comes. */
 export type EventFault = RecordFault | 'outside-ephemeris';

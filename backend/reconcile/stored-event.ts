@@ -3,10 +3,10 @@ import { KINDS, type Kind, SIGMA_SOURCES } from '#shared/reconcile/record';
 import { prepareClock, type PreparedSegment, restOfDaysSinceAt } from '#shared/time/correction';
 import { type LeapSecondTable } from '#shared/time/leap-seconds';
 import { createReadingParser, type Reading } from '#shared/time/reading';
+import { readTaiPair } from '#shared/time/tai-pair';
 import { type Db } from '../db';
 import { type ErrorRows } from './error-rows';
 import { leapSecondsOf } from './tables-in-force';
-import { readTaiPair } from './tai-pair';
 import { segmentById, type SiteVersion, versionById } from './version-rows';
 
 /** An event that stands, as the finder takes it, and what else is known of it. */

@@ -1,12 +1,12 @@
-import { type PairInFull } from '#shared/contract/pair-routes';
-import { toUnbounded } from '#shared/contract/unbounded';
-import { type ErrorTables, type EventColumns } from '#shared/relativity/events';
-import { intervalM2, properDistanceM, properTimeS } from '#shared/relativity/interval';
-import { frameDtNs, frameSigmaNs, orderFrom, turningOf } from '#shared/relativity/order';
-import { pairOf } from '#shared/relativity/pair';
-import { pairTerms } from '#shared/relativity/pair-terms';
-import { type FourVelocity } from '#shared/relativity/velocity';
-import { verdictOf } from '#shared/relativity/verdict';
+import { type PairInFull } from './pair-routes';
+import { toUnbounded } from './unbounded';
+import { type ErrorTables, type EventColumns } from '../relativity/events';
+import { intervalM2, properDistanceM, properTimeS } from '../relativity/interval';
+import { frameDtNs, frameSigmaNs, orderFrom, turningOf } from '../relativity/order';
+import { pairOf } from '../relativity/pair';
+import { pairTerms } from '../relativity/pair-terms';
+import { type FourVelocity } from '../relativity/velocity';
+import { verdictOf } from '../relativity/verdict';
 
 /** A set of events in their order, with what decides of their pairs. */
 export interface PairedSet {

@@ -1,6 +1,6 @@
-import { MAX_DECIMALS } from '#shared/time/format';
-import { PS_PER_S } from '#shared/time/instant';
-import { type Reading } from '#shared/time/reading';
+import { MAX_DECIMALS } from './format';
+import { PS_PER_S } from './instant';
+import { type Reading } from './reading';
 
 const PAIR = /^(-?\d{1,12}) (\d{1,12})$/;
 /** The years 0000 to 9999, as a reading in ISO 8601 has them. */
