@@ -110,6 +110,18 @@ Exit status: 0 every record is answered (those set aside are counted on stderr),
       await feed({ ...flags, log }, { env: process.env, input: process.stdin, signal, progress: terminalProgress(process.stderr), say });
     });
   skewline
+    .command('verify')
+    .summary('compute a certificate again, without a server')
+    .description(
+      'Computes every number of a certificate again from the verbatim readings in it, checks its hashes, its signatures and each claim, and prints what agrees and what does not. It needs nothing but the file, and writes nothing.',
+    )
+    .argument('<certificate>', 'the file, as a candidate gives it')
+    .addHelpText('after', '\nExit status: 0 all of it holds, 1 some of it does not, 2 no certificate can be read there.')
+    .action(async (path: string) => {
+      const { verifyFile } = await import('./command/verify-command');
+      verifyFile(path, (line) => void process.stdout.write(`${line}\n`));
+    });
+  skewline
     .command('user')
     .summary('people of a deployment')
     .command('add')

@@ -3,21 +3,26 @@ import { CODE_RIGHT, isCode } from '../reconcile/code';
 
 /**
  * Leaves of schemas whose message is not what was wrong but what would be right; the path and the value are put before it by
- * `firstProblem`.
+ * `firstProblem`. What they say of themselves with `meta` stands in the JSON Schema of what is made of them.
  */
 
 /** A finite number that passes a check, with its unit and limits in words. */
 export const numberThat = (right: string, check: (value: number) => boolean = () => true) =>
-  z.custom<number>((value) => typeof value === 'number' && Number.isFinite(value) && check(value), { error: right });
+  z
+    .custom<number>((value) => typeof value === 'number' && Number.isFinite(value) && check(value), { error: right })
+    .meta({ type: 'number' });
 
 export const notNegative = (unit: string) => numberThat(`a number of ${unit}, 0 or more`, (value) => value >= 0);
 
-export const text = (right: string) => z.custom<string>((value) => typeof value === 'string', { error: right });
+export const text = (right: string) => z.custom<string>((value) => typeof value === 'string', { error: right }).meta({ type: 'string' });
 
 export const oneOf = <const T extends string>(...allowed: readonly T[]) =>
-  z.custom<T>((value) => allowed.some((word) => word === value), { error: `one of ${allowed.map((word) => `"${word}"`).join(', ')}` });
+  z
+    .custom<T>((value) => allowed.some((word) => word === value), { error: `one of ${allowed.map((word) => `"${word}"`).join(', ')}` })
+    .meta({ enum: [...allowed] });
 
-export const code = () => z.custom<string>((value) => typeof value === 'string' && isCode(value), { error: `a code of ${CODE_RIGHT}` });
+export const code = () =>
+  z.custom<string>((value) => typeof value === 'string' && isCode(value), { error: `a code of ${CODE_RIGHT}` }).meta({ type: 'string' });
 
 export const listOf = <T extends z.ZodType>(item: T, what: string) => z.array(item, { error: `a list of ${what}` });
 

@@ -18,7 +18,7 @@ const SIGMAS_RIGHT = 'how many standard errors make a decision: a number from 0 
 const FRAMES_RIGHT = '1 to 20 codes of frames with commas between them';
 
 /** An event of the set, in the order of events. */
-const eventOfSet = z.strictObject({
+export const eventOfSet = z.strictObject({
   id: z.int(),
   name: z.string(),
   site: z.string(),
@@ -30,7 +30,7 @@ const eventOfSet = z.strictObject({
 });
 
 /** A frame as it is at the set's first event: its velocity in the geocentric frame, GCRS axes. */
-const frameAtSet = z.strictObject({ code: z.string(), gamma: z.number(), gammaBeta: vector() });
+export const frameAtSet = z.strictObject({ code: z.string(), gamma: z.number(), gammaBeta: vector() });
 
 /** One independent part of the error of a pair, in ns: of its time difference, or (`distance`) of its distance over c. */
 const pairTerm = z.strictObject({
