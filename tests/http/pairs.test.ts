@@ -6,21 +6,12 @@ import { MOST_EVENTS_PAIRED, type PairsOfSet } from '#shared/contract/pair-route
 import { fromUnbounded } from '#shared/contract/unbounded';
 import { roles } from '#schema/schema';
 import { reconcileFiles } from '../../backend/command/reconcile-command';
-import { openIngest } from '../../backend/ingest/ingest';
-import { root } from '../../scripts/lib.mjs';
 import { startApp, type RunningApp } from '../support/app';
 import { type Client } from '../support/client';
 import { newFolder } from '../support/folder';
-import { recordsOfLog } from '../support/ingest';
-import { insertNetwork } from '../support/network-rows';
 import { rowsOf, type Row } from '../support/results';
+import { CAIRNWAY, CAIRNWAY_LOGS, eventIdsOf, storeCairnway } from '../support/stored-example';
 import { makeWorld } from '../support/world';
-
-const FOLDER = join(root, 'examples', 'cairnway');
-const LOGS: readonly (readonly [site: string | undefined, path: string])[] = [
-  ...['KNF', 'CND', 'FRZ', 'BRW', 'TDW'].map((code) => [undefined, join(FOLDER, 'logs', `${code}.csv`)] as const),
-  ['OXB', join(FOLDER, 'shaft.csv')],
-];
 
 let app: RunningApp;
 let analyst: Client;
@@ -31,31 +22,18 @@ let results: (file: string) => readonly Row[];
 /** The example's records through the ingest into the database of a running server, and through the batch command into files. */
 beforeAll(async () => {
   app = await startApp();
-  const { db, nowMs, log } = app.ground;
+  const { db } = app.ground;
   const world = await makeWorld(app);
-  const network = insertNetwork(db, JSON.parse(readFileSync(join(FOLDER, 'network.json'), 'utf8')));
-  networkId = network.networkId;
+  ({ networkId } = await storeCairnway(app));
   db.insert(roles).values({ personId: world.people.analyst, role: 'analyst', networkId, givenAt: '2026-01-01T00:00:00.000Z' }).run();
   analyst = world.as('analyst');
-  const listener = { onStored: () => undefined, onInForce: () => undefined };
-  const ingest = openIngest({ db, log, nowMs, listener, fatal: () => undefined });
-  for (const [ofSite, path] of LOGS)
-    for (const [site, record] of recordsOfLog(path, ofSite)) {
-      const siteId = network.siteIds.get(site);
-      if (siteId !== undefined) void ingest.batch(siteId, [record]);
-    }
-  await ingest.whenIdle();
-  const names = db.$client.prepare<[], { id: number; name: string }>(
-    `SELECT t.id, s.code || ':' || iif(t.series = '', '', t.series || ':') || t.sequence AS name FROM events e JOIN triggers t ON t.id = e.trigger_id
-     JOIN sites s ON s.id = t.site_id`,
-  );
-  idOf = new Map(names.all().map(({ id, name }) => [name, id]));
+  idOf = eventIdsOf(app);
   const out = join(newFolder('pairs'), 'out');
   const progress = { begin: () => undefined, at: () => undefined, end: () => undefined };
   const given = {
-    network: join(FOLDER, 'network.json'),
+    network: join(CAIRNWAY, 'network.json'),
     out,
-    logs: LOGS.map(([site, path]) => (site === undefined ? path : `${site}=${path}`)),
+    logs: CAIRNWAY_LOGS.map(([site, path]) => (site === undefined ? path : `${site}=${path}`)),
     limit: 10_000,
   };
   await reconcileFiles(given, { signal: new AbortController().signal, progress, say: () => undefined });
