@@ -12,6 +12,8 @@ import { handOverTo } from './api/hand-over';
 import { registerRoutes } from './api/register';
 import { type Served } from './api/serve';
 import { auditRoutes } from './audit/trail';
+import { candidateRoutes } from './candidates/candidate-routes';
+import { reviewRoutes } from './candidates/review-routes';
 import { clockRoutes } from './clocks/clock-routes';
 import { referenceRoutes } from './clocks/reference-routes';
 import { frameRoutes } from './frames/frame-routes';
@@ -54,6 +56,8 @@ export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>)
   ...coincidenceRoutes(),
   ...pairRoutes(),
   ...setAsideRoutes(),
+  ...candidateRoutes(),
+  ...reviewRoutes(),
   ...streamRoutes(),
   ...siteStateRoutes(),
   ...auditRoutes(),

@@ -1,5 +1,5 @@
 import { frameDefinitions } from '#shared/contract/network-frames';
-import { statedVelocity, type StatedVelocity } from '#shared/contract/network-file';
+import { type NetworkFile, statedVelocity, type StatedVelocity } from '#shared/contract/network-file';
 import { type Outcome, problemOf, type Problem, valueOf } from '#shared/outcome';
 import { type FrameDefinition, GEOCENTRIC_CODE } from '#shared/relativity/frame-definition';
 import { type FrameResolver, resolveFrames } from '#shared/relativity/frame-resolver';
@@ -32,6 +32,8 @@ const FRAMES_QUERY = `SELECT f.id, f.code, f.name, p.code AS parent, v.kind, v.a
   LEFT JOIN frames AS p ON p.id = v.parent_id LEFT JOIN sites AS a ON a.id = v.from_site_id LEFT JOIN sites AS b ON b.id = v.to_site_id
   WHERE f.network_id = ? ORDER BY f.pinned IS NULL, f.pinned, f.id`;
 
+const frameRows = (db: Db, networkId: number): FrameRow[] => db.$client.prepare<[number], FrameRow>(FRAMES_QUERY).all(networkId);
+
 /** The velocity as the network file states it; the sites of a baseline stand in columns of their own. */
 function velocityOf(row: FrameRow): Outcome<StatedVelocity | undefined> {
   if (row.kind === 'barycentric') return valueOf(undefined);
@@ -47,16 +49,32 @@ function velocityOf(row: FrameRow): Outcome<StatedVelocity | undefined> {
     : problemOf('frame-velocity', where, `is stated as ${row.definition}; it must be a velocity as network files have it`);
 }
 
-function definitionOf(row: FrameRow): Outcome<FrameDefinition> {
+/** A frame as network files state it. */
+export type FileFrame = NonNullable<NetworkFile['frames']>[number];
+
+function fileFrameOf(row: FrameRow): Outcome<FileFrame> {
   const velocity = velocityOf(row);
   if (!velocity.ok) return velocity;
   const { code, name, at } = row;
   const parent = row.parent ?? GEOCENTRIC_CODE;
   const motion = velocity.value ? { velocity: velocity.value } : { kind: 'barycentric' as const };
-  const made = frameDefinitions({ frames: [{ code, name, at, parent, ...motion }] });
+  return valueOf({ code, name, at, parent, ...motion });
+}
+
+/** The frames of a network that are in force, as network files state them, in the order of `framesInForce`; those that cannot be are left out. */
+export const statedFrames = (db: Db, networkId: number): readonly FileFrame[] =>
+  frameRows(db, networkId).flatMap((row) => {
+    const frame = fileFrameOf(row);
+    return frame.ok ? [frame.value] : [];
+  });
+
+function definitionOf(row: FrameRow): Outcome<FrameDefinition> {
+  const frame = fileFrameOf(row);
+  if (!frame.ok) return frame;
+  const made = frameDefinitions({ frames: [frame.value] });
   if (!made.ok) return made;
   const [definition] = made.value;
-  return definition ? valueOf(definition) : problemOf('frame-velocity', `frames.${code}`, 'has no definition');
+  return definition ? valueOf(definition) : problemOf('frame-velocity', `frames.${row.code}`, 'has no definition');
 }
 
 /** Takes away what hangs on a parent that is not there, until nothing more falls. */
@@ -80,7 +98,7 @@ function withParents(definitions: readonly FrameDefinition[], leftOut: Problem[]
  */
 export function framesInForce(db: Db, network: NetworkInForce): Outcome<FramesInForce> {
   const leftOut: Problem[] = [];
-  const rows = db.$client.prepare<[number], FrameRow>(FRAMES_QUERY).all(network.id);
+  const rows = frameRows(db, network.id);
   const definitions = rows.flatMap((row) => {
     const made = definitionOf(row);
     if (made.ok) return [made.value];

@@ -110,6 +110,17 @@ export const POLICIES = {
   'completeness:read': at(...ROLES), // an operator has their sites, and how far the network is
   'change:list': at('coordinator', 'analyst', 'reviewer'),
 
+  'candidate:list': at('coordinator', 'analyst', 'reviewer'),
+  'candidate:read': at('coordinator', 'analyst', 'reviewer'),
+  'candidate:make': at('analyst'),
+  'candidate:change': at('analyst'), // who of them, and when, says candidate-moves.ts
+  'claim:edit': at('analyst'),
+  'candidate:submit': at('analyst'),
+  'reviewer:name': at('coordinator', 'analyst'),
+  'candidate:sign': at('reviewer'), // who is asked to, and neither wrote nor edited it
+  'my-reviews:read': signedIn,
+  'candidate:withdraw': at('coordinator', 'analyst'),
+
   'network:follow': at(...ROLES), // of what follows an operator has their sites', and no coincidences
   'network:missed': at(...ROLES),
   'network:leave': signedIn,

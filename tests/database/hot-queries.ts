@@ -1,5 +1,7 @@
 import { mendedQuery } from '../../backend/set-asides/set-aside-contents';
 import { type CoincidenceSort } from '#shared/contract/coincidence-routes';
+import { candidateListQuery, type CandidatesAsked } from '../../backend/candidates/candidate-list';
+import { reviewQueueQuery } from '../../backend/candidates/review-queue';
 import { membersQuery, pairsQuery } from '../../backend/coincidences/coincidence-brief';
 import {
   formerQuery,
@@ -61,6 +63,14 @@ const EVENTS_ASKED = { networkId: 1, siteIds: undefined, order: 'up', limit: PAG
 const SETS_ASKED = { networkId: 1, siteIds: [], ruleVersionIds: undefined, sort: 'time', order: 'up', limit: PAGE } as const;
 const SET_ASIDES_ASKED = { networkId: 1, siteIds: undefined, state: 'open', reason: undefined, order: 'up', limit: PAGE } as const;
 const AFTER_TIME = [CURSOR_S, 0, 0];
+
+/** A list of candidates from a cursor on, with its authors' names and how many events count. */
+const candidatesListed = (serves: string, index: string, asked: Partial<CandidatesAsked>): HotQuery =>
+  ofProduct(
+    serves,
+    [index, KEY, 'CORRELATED SCALAR SUBQUERY 1', KEY],
+    candidateListQuery({ networkId: 1, order: 'down', limit: PAGE, after: [Date.parse('2027-01-01T00:00:00.000Z'), 0], ...asked }),
+  );
 
 /** A list of coincidences that one index answers. */
 function sets(serves: string, indexes: string | readonly string[], asked: Partial<CoincidencesAsked>): HotQuery {
@@ -311,36 +321,16 @@ export const HOT_QUERIES: readonly HotQuery[] = [
     5000,
   ),
   // Candidates.
-  query(
-    'candidates of a state',
-    'candidates_by_state',
-    `SELECT id, title FROM candidates WHERE network_id = ? AND state = ? AND (updated_at, id) < (?, ?) ORDER BY updated_at DESC, id DESC LIMIT ${PAGE}`,
-    1,
-    'draft',
-    '2027',
-    0,
-  ),
-  query(
-    'candidates, the last touched first',
-    'candidates_by_update',
-    `SELECT id, title FROM candidates WHERE network_id = ? AND (updated_at, id) < (?, ?) ORDER BY updated_at DESC, id DESC LIMIT ${PAGE}`,
-    1,
-    '2027',
-    0,
-  ),
-  query(
-    "an analyst's candidates",
-    'candidates_of_author',
-    `SELECT id, title FROM candidates WHERE author_id = ? AND (updated_at, id) < (?, ?) ORDER BY updated_at DESC, id DESC LIMIT ${PAGE}`,
-    1,
-    '2027',
-    0,
-  ),
-  query(
+  candidatesListed('candidates of a state', 'candidates_by_state', { state: 'draft' }),
+  candidatesListed('candidates, the last touched first', 'candidates_by_update', {}),
+  candidatesListed("an analyst's candidates", 'candidates_of_author', { authorId: 2 }),
+  ofProduct(
     "a reviewer's queue",
-    ['reviewers_queue', KEY],
-    'SELECT c.id, r.named_at FROM reviewers r CROSS JOIN candidates c ON c.id = r.candidate_id WHERE r.released_at IS NULL AND r.person_id = ? ORDER BY r.named_at LIMIT 100',
-    2,
+    [
+      ...['reviewers_queue', KEY, 'LIST SUBQUERY 2', 'SCAN json_each VIRTUAL TABLE INDEX 1:', 'CREATE BLOOM FILTER', KEY],
+      ...['CORRELATED SCALAR SUBQUERY 1', 'signatures_standing'],
+    ],
+    reviewQueueQuery(2, [1], 0, PAGE),
   ),
   query('the comments of a candidate', 'comments_of_candidate', 'SELECT id, body FROM comments WHERE candidate_id = ? ORDER BY id', 17),
   query(

@@ -20,6 +20,8 @@ import { Client, type Answer, type Sending } from '../support/client';
 import { makeSetup, type Setup } from '../support/setup';
 import { makeWorld, PASSWORD, PERSONAS, type Persona, type World } from '../support/world';
 import { allRows } from '../support/rows';
+import { storeCandidate, type StoredCandidate } from '../support/stored-candidate';
+import { candidateWalk } from './candidate-walk';
 import { oddBodies } from './odd-bodies';
 import { setupWalk } from './setup-walk';
 
@@ -28,11 +30,13 @@ let world: World;
 let siteKey: string;
 let stored: OneOfEach;
 let setup: Setup;
+let candidate: StoredCandidate;
 beforeAll(async () => {
   app = await startApp();
   world = await makeWorld(app);
   stored = storeOneOfEach(app.ground.db, world.networks.first, [world.sites.alpha, world.sites.beta]);
   setup = makeSetup(app, world);
+  candidate = storeCandidate(app, world, [stored.event, stored.otherEvent]);
   const { key, prefix, hash } = newSiteKey();
   siteKey = key;
   app.ground.db
@@ -207,6 +211,10 @@ const EXPECTED: Readonly<Record<string, { in: readonly Asker[]; hidden?: readonl
   'POST /set-asides/:setAsideId/accept': decision('accept'),
   'POST /set-asides/:setAsideId/dismiss': decision('dismiss'),
   'POST /set-asides/:setAsideId/dismiss-conflict': decision('dismiss-conflict'),
+  ...candidateWalk(
+    () => world,
+    () => candidate,
+  ),
   'GET /sites/:siteId/series': { ...ofAlpha('/series'), in: SEE_ALPHA },
   'GET /sites/:siteId/gaps': { ...ofAlpha('/gaps'), in: SEE_ALPHA },
   'GET /sites/:siteId/live-spans': { ...ofAlpha('/live-spans'), in: SEE_ALPHA },

@@ -1,3 +1,4 @@
+import { CANDIDATE_ROUTES } from '#shared/contract/candidate-routes';
 import { CLOCK_ROUTES, REFERENCE_ROUTES } from '#shared/contract/clock-routes';
 import { COINCIDENCE_ROUTES } from '#shared/contract/coincidence-routes';
 import { EVENT_ROUTES } from '#shared/contract/event-routes';
@@ -7,6 +8,7 @@ import { PAIR_ROUTES } from '#shared/contract/pair-routes';
 import { MY_ROUTES, PEOPLE_ROUTES, SESSION_ROUTES, SITE_KEY_ROUTES } from '#shared/contract/people-routes';
 import { PREFERENCE_ROUTES } from '#shared/contract/preference-routes';
 import { AUDIT_ROUTES, HEALTH_ROUTES, KEPT_MAIL_ROUTES } from '#shared/contract/record-routes';
+import { REVIEW_ROUTES } from '#shared/contract/review-routes';
 import { type Route } from '#shared/contract/routes';
 import { RULE_ROUTES } from '#shared/contract/rule-routes';
 import { SET_ASIDE_ROUTES } from '#shared/contract/set-aside-routes';
@@ -35,6 +37,8 @@ export const DECLARED: readonly Route[] = [
   COINCIDENCE_ROUTES,
   PAIR_ROUTES,
   SET_ASIDE_ROUTES,
+  CANDIDATE_ROUTES,
+  REVIEW_ROUTES,
   STREAM_ROUTES,
   SITE_STATE_ROUTES,
   AUDIT_ROUTES,
