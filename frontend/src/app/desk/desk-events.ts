@@ -131,18 +131,21 @@ export class DeskEvents {
       if (turn !== this.turn) return;
       this.newest.set(latest?.at);
       const centre = view === 'sites' ? (until ?? latest?.at) : await this.instantOf(event);
+      const isLive = view === 'sites' && until === undefined;
       if (!centre) {
+        this.span = isLive ? { from: { taiS: 0, ps: 0 }, to: undefined } : undefined; // for the first event of all
         this.held.set(NO_EVENTS);
+        this.told.set('');
+        for (const news of this.meanwhile) this.takeIn(news);
         return;
       }
       const from = instantAfter(centre, -reachMs);
-      const isLive = view === 'sites' && until === undefined;
       const to = instantAfter(centre, view === 'sites' ? 0.001 : reachMs);
       const events = await this.source.events(networkId, from, to);
       if (turn !== this.turn) return;
       this.span = { from, to: isLive ? undefined : to };
       this.held.set(showEvents(events, sites));
-      for (const news of this.meanwhile) this.hear(news);
+      for (const news of this.meanwhile) this.takeIn(news);
       this.told.set('');
     } catch (fault) {
       if (turn === this.turn) this.told.set(sentenceOf(fault));
@@ -154,11 +157,12 @@ export class DeskEvents {
   /** Puts news over what is held; reads again what could not be told. */
   hear(news: DeskNews): void {
     if (this.asking() && this.meanwhile.length < MOST_KEPT) this.meanwhile.push(news);
-    const { events } = news;
-    if (events === undefined) {
-      if (!this.asking()) void this.load();
-      return;
-    }
+    if (news.events === undefined && !this.asking()) void this.load();
+    else this.takeIn(news);
+  }
+
+  private takeIn({ events }: DeskNews): void {
+    if (!events) return;
     if (!this.span || (events.items.length === 0 && events.gone.length === 0)) return;
     const latest = events.items.reduce((last, { at }) => (!last || compareInstants(at, last) > 0 ? at : last), this.newest());
     this.newest.set(latest);

@@ -58,6 +58,7 @@ const SPANS_MS = {
   baseline: [6, 20, 60, 200, 1_000],
 } as const;
 const FOLDS = [2, 3, 4, 5, 6, 8];
+const CHOSEN_PX = 48; // a button in its box: what is said of the chosen coincidence, in one line
 const NARROW_PX = 700;
 const NEWS_EVERY_MS = 250;
 const AT_REST = { speedC: 0, frame: undefined };
@@ -107,6 +108,7 @@ export class Desk {
   protected readonly views = VIEWS;
   protected readonly folds = FOLDS;
   protected readonly gutterPx = GUTTER_PX;
+  protected readonly chosenPx = CHOSEN_PX;
   protected readonly view = this.place.address;
   protected readonly isSites = computed(() => this.picture.view() === 'sites');
   protected readonly isBaseline = computed(() => this.picture.view() === 'baseline');

@@ -1,10 +1,11 @@
 import { CdkFixedSizeVirtualScroll, CdkVirtualForOf, CdkVirtualScrollViewport } from '@angular/cdk/scrolling';
-import { ChangeDetectionStrategy, Component, computed, effect, inject, output, signal, untracked, viewChild } from '@angular/core';
+import { afterRenderEffect, ChangeDetectionStrategy, Component, computed, effect, inject, input, output, signal, untracked, viewChild } from '@angular/core';
 import { NS_PER_LIGHT_M } from '#shared/constants';
 import { type CoincidenceBrief } from '#shared/contract/coincidence';
 import { IntervalDial } from '../diagrams/interval-dial';
 import { type Leader } from '../diagrams/picture';
 import { InstantPipe } from '../instants/instant-pipe';
+import { Preferences } from '../preferences/preferences';
 import { FrameGlyph } from '../ui/frame-glyph';
 
 import { IntervalMark } from '../ui/interval-mark';
@@ -19,6 +20,7 @@ import { columnsText, type ShownColumn, shownColumns, widthIn } from './set-colu
 import { SetOrders } from './set-orders';
 
 const ROW_PX = { wide: 42, narrow: 60 };
+const NARROW_HEIGHT_PX = 520;
 const NEAR_TOP_PX = 8;
 const MORE_BEFORE_END = 30;
 const WIDER_PX = 16;
@@ -57,6 +59,10 @@ export class SetTable {
   protected readonly place = inject(DeskPlace);
   protected readonly lists = inject(DeskLists);
   protected readonly picture = inject(DeskPicture);
+  /** The scale in which the first triggers are printed. */
+  protected readonly scale = inject(Preferences).scale;
+  /** Room that something below the table takes from it, px. */
+  readonly lessPx = input(0);
   private readonly viewport = viewChild(CdkVirtualScrollViewport);
   private readonly opened = signal<ReadonlySet<number>>(new Set());
   private readonly scrolledPx = signal(0);
@@ -83,8 +89,11 @@ export class SetTable {
   protected readonly chosenId = computed(() => this.place.address().set ?? 0);
   protected readonly pairsOf = this.orders.pairs;
 
+  /** As high as the diagram, less what stands below it. */
+  protected readonly heightPx = computed(() => (this.isNarrow() ? NARROW_HEIGHT_PX : this.picture.heightPx() - this.lessPx()));
+
   readonly leaders = computed<readonly Leader[]>(() => {
-    const [rowOf, scrolled, height] = [this.data.events().rowOf, this.scrolledPx(), this.picture.heightPx()];
+    const [rowOf, scrolled, height] = [this.data.events().rowOf, this.scrolledPx(), this.heightPx()];
     return this.rows()
       .map(({ set, isInner }, i) => ({
         row: isInner ? -1 : (rowOf.get(set.members[0]?.eventId ?? 0) ?? -1),
@@ -106,6 +115,14 @@ export class SetTable {
       // Chosen by its mark: its row comes into sight.
       const id = this.chosenId();
       untracked(() => this.show(id));
+    });
+    // The table may have become lower or higher: measured anew, and the chosen row stays in sight.
+    afterRenderEffect(() => {
+      this.heightPx();
+      untracked(() => {
+        this.viewport()?.checkViewportSize();
+        if (this.lessPx() > 0) this.show(this.chosenId());
+      });
     });
   }
 
