@@ -13,6 +13,7 @@ import { registerRoutes } from './api/register';
 import { type Served } from './api/serve';
 import { auditRoutes } from './audit/trail';
 import { candidateRoutes } from './candidates/candidate-routes';
+import { commentRoutes } from './candidates/comment-routes';
 import { reviewRoutes } from './candidates/review-routes';
 import { clockRoutes } from './clocks/clock-routes';
 import { referenceRoutes } from './clocks/reference-routes';
@@ -58,6 +59,7 @@ export const allRoutes = ({ db, keepsMails }: Pick<Ground, 'db' | 'keepsMails'>)
   ...setAsideRoutes(),
   ...candidateRoutes(),
   ...reviewRoutes(),
+  ...commentRoutes(),
   ...streamRoutes(),
   ...siteStateRoutes(),
   ...auditRoutes(),

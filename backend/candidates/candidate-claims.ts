@@ -1,7 +1,7 @@
 import { eq } from 'drizzle-orm';
 import { type ClaimDecided, type ClaimGiven, MOST_CLAIMS } from '#shared/contract/candidate-routes';
 import { numbersOf, proposedClaims, whyNotSupported } from '#shared/review/claims';
-import { claims } from '#schema/schema';
+import { claims, comments } from '#schema/schema';
 import { conflict } from '../api/refusal';
 import { type Db } from '../db';
 import { utcText } from '../ground';
@@ -34,8 +34,8 @@ export function proposeAnew({ tx, actor, nowMs }: Making, db: Db, candidateId: n
         .set({ numbers: JSON.stringify(numbersOf(ground.set, again)) })
         .where(eq(claims.id, claim.id))
         .run();
-    else if (claim.state === 'proposed') tx.delete(claims).where(eq(claims.id, claim.id)).run();
-    else if (claim.state !== 'dropped' && !ground.isOf(byIdOf(claim)))
+    else if (claim.state === 'proposed' && !isSpokenOf(tx, claim.id)) tx.delete(claims).where(eq(claims.id, claim.id)).run();
+    else if (claim.state === 'proposed' || (claim.state !== 'dropped' && !ground.isOf(byIdOf(claim))))
       tx.update(claims)
         .set({ state: 'dropped', editedBy: makerOf(actor), editedAt: utcText(nowMs) })
         .where(eq(claims.id, claim.id))
@@ -46,6 +46,10 @@ export function proposeAnew({ tx, actor, nowMs }: Making, db: Db, candidateId: n
       .values({ candidateId, ...columnsOf(ground.byId(claim)), state: 'proposed', numbers: JSON.stringify(numbersOf(ground.set, claim)) })
       .run();
 }
+
+/** Whether someone has commented on a claim, which then stays. */
+const isSpokenOf = (tx: Making['tx'], claimId: number): boolean =>
+  tx.select({ id: comments.id }).from(comments).where(eq(comments.claimId, claimId)).get() !== undefined;
 
 /**
  * Claims something that the program has not proposed.

@@ -40,6 +40,7 @@ function relationsOf(db: Rows, candidate: Judged, { personId, held }: Calling): 
   const relations: Relation[] = [];
   if (roles.includes('analyst')) relations.push(personId === authorId ? 'author' : 'analyst');
   if (roles.includes('reviewer') && isAsked(db, id, personId) && !hasEdited(db, candidate, personId)) relations.push('reviewer');
+  if (roles.includes('reviewer')) relations.push('reader');
   if (roles.includes('coordinator')) relations.push('coordinator');
   return relations;
 }

@@ -8,9 +8,10 @@ export interface Noticed {
 }
 
 /** An instant of the server's clock to the second, as people read it. */
-const timeWords = (at: string): string => `${at.slice(0, 10)} ${at.slice(11, 19)} UTC`;
+export const timeWords = (at: string): string => `${at.slice(0, 10)} ${at.slice(11, 19)} UTC`;
 
-const choice = (origin: string) => [
+/** Where a person says which mails they want. */
+export const choice = (origin: string) => [
   'Which of these mails you get is your choice, on the page of your account:',
   { page: `${origin}/account` },
 ];

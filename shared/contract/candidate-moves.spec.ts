@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { CANDIDATE_STATES, judgeMove, MOVE_NAMES, RELATIONS, stateBySignatures } from './candidate-moves';
 
+const EVERYONE = 'author analyst reviewer reader coordinator';
+
 /** Who may make each move from each state, written down by hand and apart from the table: `state+` is the state out of date. */
 const EXPECTED: Readonly<Record<string, Readonly<Record<string, string>>>> = {
   edit: {
@@ -36,6 +38,13 @@ const EXPECTED: Readonly<Record<string, Readonly<Record<string, string>>>> = {
     ...{ 'in-review': 'reviewer', 'in-review+': 'reviewer' },
     ...{ confirmed: 'reviewer', 'confirmed+': 'reviewer' },
     ...{ disputed: 'reviewer', 'disputed+': 'reviewer' },
+    ...{ withdrawn: '', 'withdrawn+': '' },
+  },
+  comment: {
+    ...{ draft: EVERYONE, 'draft+': EVERYONE },
+    ...{ 'in-review': EVERYONE, 'in-review+': EVERYONE },
+    ...{ confirmed: EVERYONE, 'confirmed+': EVERYONE },
+    ...{ disputed: EVERYONE, 'disputed+': EVERYONE },
     ...{ withdrawn: '', 'withdrawn+': '' },
   },
   withdraw: {

@@ -3,10 +3,10 @@ export const CANDIDATE_STATES = ['draft', 'in-review', 'confirmed', 'disputed', 
 export type CandidateState = (typeof CANDIDATE_STATES)[number];
 
 /**
- * What someone is to a candidate: its author; another analyst; one who is asked to review it and neither wrote nor edited it; a coordinator.
- * One person may be several of them.
+ * What someone is to a candidate: its author; another analyst; one who is asked to review it and neither wrote nor edited it; any reviewer of
+ * its network; a coordinator. One person may be several of them.
  */
-export const RELATIONS = ['author', 'analyst', 'reviewer', 'coordinator'] as const;
+export const RELATIONS = ['author', 'analyst', 'reviewer', 'reader', 'coordinator'] as const;
 export type Relation = (typeof RELATIONS)[number];
 
 /** Who may do something, and in which states: as long as the candidate's numbers stand, and once it is out of date. */
@@ -30,6 +30,7 @@ export const MOVES = {
   sign: { who: ['reviewer'], from: REVIEWED, fromOutOfDate: [] },
   /** Within ten minutes. */
   'withdraw-signature': { who: ['reviewer'], from: REVIEWED, fromOutOfDate: REVIEWED },
+  comment: { who: RELATIONS, from: ANY_BUT_WITHDRAWN, fromOutOfDate: ANY_BUT_WITHDRAWN },
   /** For good. */
   withdraw: { who: ['author', 'coordinator'], from: ANY_BUT_WITHDRAWN, fromOutOfDate: ANY_BUT_WITHDRAWN },
 } as const satisfies Readonly<Record<string, Move>>;

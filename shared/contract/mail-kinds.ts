@@ -26,6 +26,12 @@ export const OPTIONAL_MAILS = [
     name: 'Your roles',
     sentence: 'When somebody else gives you a role, changes until when you hold it, or ends it.',
   },
+  {
+    kind: 'mention',
+    usual: 'on',
+    name: 'Mentions',
+    sentence: 'When somebody mentions you in a comment on a candidate.',
+  },
 ] as const satisfies readonly OptionalMail[];
 
 export type MailKind = (typeof OPTIONAL_MAILS)[number]['kind'];

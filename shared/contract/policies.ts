@@ -118,6 +118,7 @@ export const POLICIES = {
   'candidate:submit': at('analyst'),
   'reviewer:name': at('coordinator', 'analyst'),
   'candidate:sign': at('reviewer'), // who is asked to, and neither wrote nor edited it
+  'comment:write': at('coordinator', 'analyst', 'reviewer'), // its author alone changes one
   'my-reviews:read': signedIn,
   'candidate:withdraw': at('coordinator', 'analyst'),
 

@@ -56,6 +56,15 @@ export function candidateWalk(world: () => World, stored: () => StoredCandidate)
       path: ofCandidate('/snapshots/1'),
     },
     'GET /candidates/:candidateId/certificate': read(ofCandidate('/certificate')),
+    'GET /candidates/:candidateId/comments': read(ofCandidate('/comments')),
+    'POST /candidates/:candidateId/comments': {
+      in: SEE_CANDIDATES,
+      hidden: OUTSIDE,
+      path: ofCandidate('/comments'),
+      body: () => ({ body: 'walk', claimId: 999_999 }),
+    },
+    'PATCH /comments/:commentId': move(['analyst'], () => `/comments/${stored().comment}`, { body: 'walk' }),
+    'POST /comments/:commentId/take-back': move(['analyst'], () => `/comments/${stored().comment}/take-back`),
     'GET /me/reviews': { in: Object.keys(PERSONAS) as Persona[] },
     'POST /candidates/:candidateId/withdraw': move(['chief', 'coordinator', 'analyst'], ofCandidate('/withdraw')),
   };

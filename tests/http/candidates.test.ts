@@ -49,7 +49,7 @@ describe('a candidate', () => {
     expect(claimOf(made, timelike).kind).toBe('before-in-every-frame');
     expect(claimOf(made, spacelike).kind).toBe('no-common-order');
     expect(await read(made.id)).toEqual(made);
-    expect(made.moves).toEqual(['edit', 'submit', 'name-reviewers', 'withdraw']);
+    expect(made.moves).toEqual(['edit', 'submit', 'name-reviewers', 'comment', 'withdraw']);
     expect([made.snapshot, made.reviewers, made.signatures, made.neededSignatures]).toEqual([null, [], [], 2]);
   });
 

@@ -1,6 +1,7 @@
 import { CANDIDATE_ROUTES } from '#shared/contract/candidate-routes';
 import { CLOCK_ROUTES, REFERENCE_ROUTES } from '#shared/contract/clock-routes';
 import { COINCIDENCE_ROUTES } from '#shared/contract/coincidence-routes';
+import { COMMENT_ROUTES } from '#shared/contract/comment-routes';
 import { EVENT_ROUTES } from '#shared/contract/event-routes';
 import { FRAME_ROUTES } from '#shared/contract/frame-routes';
 import { NETWORK_ROUTES, RUN_ROUTES } from '#shared/contract/network-routes';
@@ -39,6 +40,7 @@ export const DECLARED: readonly Route[] = [
   SET_ASIDE_ROUTES,
   CANDIDATE_ROUTES,
   REVIEW_ROUTES,
+  COMMENT_ROUTES,
   STREAM_ROUTES,
   SITE_STATE_ROUTES,
   AUDIT_ROUTES,

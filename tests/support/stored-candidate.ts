@@ -1,4 +1,4 @@
-import { claims, reviewers } from '#schema/schema';
+import { claims, comments, reviewers } from '#schema/schema';
 import { change } from '../../backend/audit/change';
 import { makeCandidate } from '../../backend/candidates/make-candidate';
 import { type RunningApp } from './app';
@@ -8,6 +8,8 @@ import { type World } from './world';
 export interface StoredCandidate {
   readonly candidate: number;
   readonly claim: number;
+  /** The author's. */
+  readonly comment: number;
 }
 
 /** Makes a candidate of two events of the first network. */
@@ -24,6 +26,11 @@ export function storeCandidate({ ground }: RunningApp, world: World, eventIds: r
     tx.insert(reviewers)
       .values({ candidateId: candidate, personId: world.people.reviewer, namedAt: '2026-01-01T00:00:00.000Z', namedBy: authorId })
       .run();
-    return { candidate, claim: tx.select({ id: claims.id }).from(claims).get()!.id };
+    const comment = tx
+      .insert(comments)
+      .values({ candidateId: candidate, isQuestion: false, authorId, body: 'Both?', createdAt: '2026-01-01T00:00:00.000Z' })
+      .returning({ id: comments.id })
+      .get();
+    return { candidate, comment: comment.id, claim: tx.select({ id: claims.id }).from(claims).get()!.id };
   });
 }

@@ -12,7 +12,7 @@ import { MyMails } from './my-mails';
 
 const PATH = '/api/me/preferences';
 const NOT_SAID = { theme: null, scale: null, shortcuts: null };
-const both = (newBrowser: 'on' | 'off', role: 'on' | 'off') => ({ ...NOT_SAID, mails: { 'new-browser': newBrowser, role } });
+const both = (newBrowser: 'on' | 'off', role: 'on' | 'off') => ({ ...NOT_SAID, mails: { 'new-browser': newBrowser, role, mention: 'on' } });
 
 @Component({
   selector: 'sw-mails-and-toasts',
@@ -52,6 +52,7 @@ describe('the mails that someone gets', () => {
     expect(await Promise.all((await loader.getAllHarnesses(SegmentedHarness)).map((one) => one.label()))).toEqual([
       'New browser',
       'Your roles',
+      'Mentions',
     ]);
     expect(await (await switchOf('New browser')).chosen()).toBe('Off');
     expect(await (await switchOf('Your roles')).chosen()).toBe('On');
