@@ -1,11 +1,9 @@
-import { createHash } from 'node:crypto';
 import { verifyCertificate } from '#shared/contract/verify-certificate';
+import { sha256 } from '../candidates/sha256';
 import { earthBarycentricVelocityMS } from '../frames/ephemeris';
 import { VERSION } from '../version';
 import { readOption } from './readable-file';
 import { UsageProblem } from './usage-problem';
-
-const sha256 = (text: string): string => createHash('sha256').update(text).digest('hex');
 
 /**
  * Checks a certificate without a server: everything in it is computed again from the verbatim readings.
