@@ -100,6 +100,7 @@ export class Desk {
   protected readonly data = inject(DeskEvents);
   protected readonly lists = inject(DeskLists);
   protected readonly picture = inject(DeskPicture);
+  private readonly element = inject<ElementRef<HTMLElement>>(ElementRef).nativeElement;
   private readonly work = viewChild<ElementRef<HTMLElement>>('work');
   private readonly eventTable = viewChild(EventTable);
   private readonly setTable = viewChild(SetTable);
@@ -190,7 +191,9 @@ export class Desk {
       if (!host) return;
       const sizes = new ResizeObserver(() => this.measure(host));
       sizes.observe(host);
-      sizes.observe(document.body); // what stands above may come later
+      sizes.observe(document.body);
+      // What stands above the page may come later, and go.
+      for (const one of this.element.parentElement?.children ?? []) if (one !== this.element) sizes.observe(one);
       onCleanup(() => sizes.disconnect());
     });
     afterNextRender(() => {

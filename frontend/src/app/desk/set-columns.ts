@@ -12,7 +12,7 @@ export interface SetColumn {
 /** The columns that every network has, in their usual order; one for each pinned frame follows. */
 export const SET_COLUMNS: readonly SetColumn[] = [
   { name: 'time', head: 'First trigger', widthPx: 144, sort: 'time' },
-  { name: 'sites', head: 'Sites', widthPx: 106 },
+  { name: 'sites', head: 'Sites', widthPx: 100 },
   { name: 'fold', head: 'Fold', widthPx: 48, sort: 'fold', isRight: true },
   { name: 'span', head: 'Span', widthPx: 92, sort: 'span', isRight: true },
   { name: 'interval', head: 'Interval nearest light', widthPx: 204, sort: 'margin' },

@@ -28,14 +28,15 @@ export class SetOrders {
   private readonly api = inject(ApiClient);
   private readonly networks = inject(NetworkStore);
   private readonly kept = signal<ReadonlyMap<number, SetPairs>>(new Map());
-  private readonly asked = new Set<number>();
+  /** For which frames each was asked. */
+  private readonly asked = new Map<number, string>();
   private waiting: { readonly set: CoincidenceBrief; readonly frames: readonly string[] }[] = [];
   private running = 0;
   readonly pairs = this.kept.asReadonly();
 
   /** Asks for what is not there yet of the rows that are seen now. */
   want(sets: readonly CoincidenceBrief[], frames: readonly string[]): void {
-    this.waiting = sets.filter(({ id, fold }) => !this.asked.has(id) && fold <= 50).map((set) => ({ set, frames }));
+    this.waiting = sets.filter(({ id, fold }) => this.asked.get(id) !== frames.join() && fold <= 50).map((set) => ({ set, frames }));
     this.go();
   }
 
@@ -48,7 +49,7 @@ export class SetOrders {
     while (this.running < MOST_AT_ONCE) {
       const next = this.waiting.shift();
       if (!next) return;
-      this.asked.add(next.set.id);
+      this.asked.set(next.set.id, next.frames.join());
       this.running++;
       void this.ask(next.set, next.frames).finally(() => {
         this.running--;
@@ -64,9 +65,10 @@ export class SetOrders {
       // The client writes what a query holds as text; the types say what the server reads it as.
       const answer = await this.api.call(PAIR_ROUTES.readPairs, { params: { networkId }, query: query as never });
       const pairs = setPairs(answer);
-      if (pairs) this.kept.update((kept) => new Map([...[...kept].slice(-MOST_KEPT), [id, pairs]]));
+      // Not what was asked before the frames changed: it may come after what was asked since.
+      if (pairs && this.asked.get(id) === frames.join()) this.kept.update((kept) => new Map([...[...kept].slice(-MOST_KEPT), [id, pairs]]));
     } catch {
-      this.asked.delete(id); // of an event that is gone since; the row goes with the next news
+      if (this.asked.get(id) === frames.join()) this.asked.delete(id); // of an event that is gone since; the row goes with the next news
     }
   }
 }
