@@ -1,6 +1,8 @@
 const CAPTION_PX = 40;
 const SIDE_PX = 16;
 const DENSITY = 2;
+/** What leads from a mark to the table beside it: to nothing, where the drawing stands alone. */
+const LEADERS = '.leader, .to-edge';
 const SVG = 'http://www.w3.org/2000/svg';
 const KEPT = [
   ...['fill', 'fill-opacity', 'stroke', 'stroke-width', 'stroke-dasharray', 'stroke-linejoin', 'stroke-linecap', 'opacity', 'paint-order'],
@@ -22,6 +24,7 @@ export function standaloneSvg(svg: SVGSVGElement, canvas: HTMLCanvasElement | un
   from.forEach((element, i) => {
     const style = getComputedStyle(element);
     const target = to[i];
+    if (element.matches(LEADERS)) target?.remove();
     for (const name of KEPT) target?.setAttribute(name, style.getPropertyValue(name));
     for (const name of ['class', 'tabindex', 'role', 'aria-hidden', 'aria-label']) target?.removeAttribute(name);
   });
@@ -69,7 +72,7 @@ export async function pngOf(svg: SVGSVGElement, canvas: HTMLCanvasElement | unde
   context.setTransform(home);
   if (canvas && canvas.width > 0) context.drawImage(canvas, canvas.offsetLeft, canvas.offsetTop, canvas.offsetWidth, canvas.offsetHeight);
   for (const element of svg.querySelectorAll<SVGGraphicsElement>('path, circle, rect, text')) {
-    if (element.closest('defs')) continue;
+    if (element.closest('defs') || element.matches(LEADERS)) continue;
     context.save();
     clipTo(context, element, svg);
     const own = element.getScreenCTM();
