@@ -150,7 +150,7 @@ test('a rule is stated with a fixed width for some sites and a period left out, 
   await button('State the rule', form).click();
   await said('Rule near made.');
   const row = page.locator('tbody tr').filter({ hasText: 'near' });
-  await expect(row).toContainText('within 1000000 ns');
+  await expect(row).toContainText('within 1\u202f000\u202f000 ns');
   await expect(row).toContainText('ORL, TAW');
   await button('Activate', row).click();
   await said('Rule near finds coincidences now.');

@@ -29,6 +29,10 @@ import { ToastStore } from '../ui/toasts';
       max-width: 560px;
       margin-top: 14px;
     }
+
+    .add {
+      margin-top: 14px;
+    }
   `,
 })
 export class References {

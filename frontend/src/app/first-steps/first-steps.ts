@@ -72,7 +72,7 @@ export class FirstSteps {
   protected readonly heading = computed(() => {
     if (!this.networks.network()) return 'No network yet';
     const count = this.sites().length;
-    return count === 0 ? 'No sites yet' : count === 1 ? 'One site' : 'No triggers yet';
+    return count === 0 ? 'No sites yet' : count === 1 ? 'One site' : `${count} sites`;
   });
 
   constructor() {
