@@ -18,6 +18,9 @@ import { moveCandidate } from './moved';
 
 const SORT = 'touched';
 
+/** Steps of a page: each holds the whole candidate, of many events a quarter of a megabyte. */
+const MOST_STEPS = 20;
+
 /** Candidates: listed, made, read, changed, withdrawn, and their history. */
 export const candidateRoutes = (): Served[] => [
   serve(CANDIDATE_ROUTES.listCandidates, {
@@ -91,7 +94,9 @@ export const candidateRoutes = (): Served[] => [
   }),
   serve(CANDIDATE_ROUTES.listCandidateSteps, {
     placeOf: ({ params: { candidateId } }, { db }) => placeOfCandidate(db, candidateId),
-    handle: ({ params: { candidateId }, query: { cursor, limit = USUAL_ITEMS } }, { db }) =>
-      pageFrom(stepsOf(db, candidateId, cursor, limit + 1), limit, ({ version }) => version),
+    handle: ({ params: { candidateId }, query: { cursor, limit = MOST_STEPS } }, { db }) => {
+      const most = Math.min(limit, MOST_STEPS);
+      return pageFrom(stepsOf(db, candidateId, cursor, most + 1), most, ({ version }) => version);
+    },
   }),
 ];

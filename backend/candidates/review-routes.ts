@@ -12,6 +12,7 @@ import { placeOfNetwork } from '../networks/network-rows';
 import { candidateRow, placeOfCandidate } from './candidate-rows';
 import { certificateOf, snapshotOf } from './certificate-of';
 import { moveCandidate, type MoveAsked } from './moved';
+import { outOfDatesOf } from './out-of-date';
 import { refuseMove } from './relations';
 import { nameReviewers, releaseReviewer, reviewersOfNetwork } from './reviewers';
 import { reviewQueueOf } from './review-queue';
@@ -53,6 +54,11 @@ export const reviewRoutes = (): Served[] => [
   serve(REVIEW_ROUTES.readCertificate, {
     placeOf: ({ params: { candidateId } }, { db }) => placeOfCandidate(db, candidateId),
     handle: ({ params: { candidateId } }, { db }) => db.transaction(() => certificateOf(db, candidateId)),
+  }),
+  serve(REVIEW_ROUTES.listOutOfDates, {
+    placeOf: ({ params: { candidateId } }, { db }) => placeOfCandidate(db, candidateId),
+    handle: ({ params: { candidateId }, query: { cursor = 0, limit = USUAL_ITEMS } }, { db }) =>
+      pageFrom(outOfDatesOf(db, candidateId, cursor, limit + 1), limit, ({ id }) => id),
   }),
   serve(REVIEW_ROUTES.listMyReviews, {
     handle: (asked, { db }) => {

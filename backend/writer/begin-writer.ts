@@ -1,6 +1,7 @@
 import { setTimeout as sleep } from 'node:timers/promises';
 import { problemOf, valueOf, type Outcome } from '#shared/outcome';
 import { checkTrailAtStart } from '../audit/check-trail';
+import { watchSnapshots } from '../candidates/snapshot-watch';
 import { closeDb, openDb, UnusableDatabase, type Db } from '../db';
 import { seedDemo } from '../demo/seed';
 import { type Ground } from '../ground';
@@ -58,6 +59,7 @@ export async function beginWriter(sources: WriterSources, tell: TellNews): Promi
   });
   const answers = makeAnswers(ground, stream);
   const stopCheck = checkTrailAtStart(ground);
+  const stopWatch = watchSnapshots(ground);
   const underWay = new Set<Promise<unknown>>();
   let closing = false;
   const answerOne = async <K extends QuestionKind>(kind: K, body: Questions[K]['body']): Promise<Questions[K]['answer']> => {
@@ -84,6 +86,7 @@ export async function beginWriter(sources: WriterSources, tell: TellNews): Promi
     close: async () => {
       closing = true;
       stopCheck();
+      stopWatch();
       await Promise.all(underWay);
       await stream.close();
       await Promise.race([leave(), sleep(LEAVE_MS, undefined, { ref: false })]);

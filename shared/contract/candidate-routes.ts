@@ -250,7 +250,7 @@ export const CANDIDATE_ROUTES = {
     body: record({ version: version() }),
     answer: candidateInFull,
   }),
-  /** Every step, the latest first. */
+  /** Every step, the latest first, at most 20 at once. */
   listCandidateSteps: route('GET', '/candidates/:candidateId/steps', {
     policy: 'candidate:read',
     params: candidateParams,

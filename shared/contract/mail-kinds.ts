@@ -32,6 +32,12 @@ export const OPTIONAL_MAILS = [
     name: 'Mentions',
     sentence: 'When somebody mentions you in a comment on a candidate.',
   },
+  {
+    kind: 'out-of-date',
+    usual: 'on',
+    name: 'Out of date',
+    sentence: 'When the numbers of a candidate change that you wrote, signed or are asked to review.',
+  },
 ] as const satisfies readonly OptionalMail[];
 
 export type MailKind = (typeof OPTIONAL_MAILS)[number]['kind'];

@@ -33,6 +33,26 @@ const snapshotInFull = z.strictObject({
   body: snapshotBody,
 });
 
+/** Why a snapshot went out of date. */
+const CAUSES = ['clock-record', 'site', 'rule', 'frame', 'time-table', 'earth-table', 'late-record', 'conflict'] as const;
+
+/** What is another now, at a path such as `FRZ:17 BRW:4.marginSigma`. */
+const numberChanged = z.strictObject({
+  where: z.string(),
+  was: z.union([z.number(), z.string()]).nullable(),
+  is: z.union([z.number(), z.string()]).nullable(),
+});
+
+/** That a snapshot was found to be computed from what is another now, and what that changed. */
+const outOfDate = z.strictObject({
+  id: z.int(),
+  /** The number of the snapshot. */
+  snapshot: z.int(),
+  at: utc(),
+  cause: z.enum(CAUSES),
+  differences: z.array(numberChanged),
+});
+
 /** A candidate that someone is asked to review. */
 const asked = z.strictObject({
   id: z.int(),
@@ -119,10 +139,19 @@ export const REVIEW_ROUTES = {
     params: candidateParams,
     answer: z.strictObject({ fileName: z.string(), text: z.string() }),
   }),
+  /** Each time that a snapshot of it went out of date, in their order. */
+  listOutOfDates: route('GET', '/candidates/:candidateId/out-of-dates', {
+    policy: 'candidate:read',
+    params: candidateParams,
+    query: record(pageQuery),
+    answer: pageOf(outOfDate),
+  }),
   /** What one is asked to review, in every network, the longest asked first. */
   listMyReviews: route('GET', '/me/reviews', { policy: 'my-reviews:read', query: record(pageQuery), answer: pageOf(asked) }),
 };
 
 export type SnapshotInFull = z.infer<typeof snapshotInFull>;
+export type NumberChanged = z.infer<typeof numberChanged>;
+export type OutOfDate = z.infer<typeof outOfDate>;
 export type ReviewAsked = z.infer<typeof asked>;
 export type Signing = z.infer<(typeof REVIEW_ROUTES)['signCandidate']['body']>;

@@ -1,6 +1,7 @@
 import { mendedQuery } from '../../backend/set-asides/set-aside-contents';
 import { type CoincidenceSort } from '#shared/contract/coincidence-routes';
 import { candidateListQuery, type CandidatesAsked } from '../../backend/candidates/candidate-list';
+import { standingSnapshotsQuery } from '../../backend/candidates/out-of-date';
 import { reviewQueueQuery } from '../../backend/candidates/review-queue';
 import { membersQuery, pairsQuery } from '../../backend/coincidences/coincidence-brief';
 import {
@@ -331,6 +332,11 @@ export const HOT_QUERIES: readonly HotQuery[] = [
       ...['CORRELATED SCALAR SUBQUERY 1', 'signatures_standing'],
     ],
     reviewQueueQuery(2, [1], 0, PAGE),
+  ),
+  ofProduct(
+    'candidates whose snapshot rests on what is another now',
+    ['candidates_by_state', 'CORRELATED SCALAR SUBQUERY 1', KEY, KEY],
+    standingSnapshotsQuery(1, 'changed'),
   ),
   query('the comments of a candidate', 'comments_of_candidate', 'SELECT id, body FROM comments WHERE candidate_id = ? ORDER BY id', 17),
   query(

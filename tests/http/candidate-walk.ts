@@ -65,6 +65,7 @@ export function candidateWalk(world: () => World, stored: () => StoredCandidate)
     },
     'PATCH /comments/:commentId': move(['analyst'], () => `/comments/${stored().comment}`, { body: 'walk' }),
     'POST /comments/:commentId/take-back': move(['analyst'], () => `/comments/${stored().comment}/take-back`),
+    'GET /candidates/:candidateId/out-of-dates': read(ofCandidate('/out-of-dates')),
     'GET /me/reviews': { in: Object.keys(PERSONAS) as Persona[] },
     'POST /candidates/:candidateId/withdraw': move(['chief', 'coordinator', 'analyst'], ofCandidate('/withdraw')),
   };

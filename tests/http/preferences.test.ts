@@ -14,7 +14,12 @@ afterAll(async () => {
   await app.close();
 });
 
-const NOTHING_SAID = { theme: null, scale: null, shortcuts: null, mails: { 'new-browser': 'on', role: 'on', mention: 'on' } };
+const NOTHING_SAID = {
+  theme: null,
+  scale: null,
+  shortcuts: null,
+  mails: { 'new-browser': 'on', role: 'on', mention: 'on', 'out-of-date': 'on' },
+};
 
 describe('how a person likes things', () => {
   it('is nothing until they say so, and then theirs in every session and nobody else\u2019s', async () => {
@@ -40,10 +45,10 @@ describe('how a person likes things', () => {
   it('holds which mails they want, each kind for itself, and what they never said is as usual', async () => {
     const here = world.as('coordinator');
     const off = await here.patch('/me/preferences', { mails: { role: 'off' } });
-    expect(off.body).toEqual({ ...NOTHING_SAID, mails: { 'new-browser': 'on', role: 'off', mention: 'on' } });
+    expect(off.body).toEqual({ ...NOTHING_SAID, mails: { 'new-browser': 'on', role: 'off', mention: 'on', 'out-of-date': 'on' } });
     await here.patch('/me/preferences', { scale: 'GPS' });
     await here.patch('/me/preferences', { mails: { 'new-browser': 'off' } });
-    const said = { ...NOTHING_SAID, scale: 'GPS', mails: { 'new-browser': 'off', role: 'off', mention: 'on' } };
+    const said = { ...NOTHING_SAID, scale: 'GPS', mails: { 'new-browser': 'off', role: 'off', mention: 'on', 'out-of-date': 'on' } };
     expect((await here.get('/me/preferences')).body).toEqual(said);
     const { body } = app.ground.db.select().from(preferences).where(eq(preferences.personId, world.people.coordinator)).get()!;
     expect(JSON.parse(body)).toEqual({ scale: 'GPS', mails: { 'new-browser': 'off', role: 'off' } });
@@ -56,7 +61,7 @@ describe('how a person likes things', () => {
     const unknown = await here.patch('/me/preferences', { mails: { 'password-changed': 'off' } });
     expect(unknown.status).toBe(400);
     expect(unknown.body).toMatchObject({ where: 'mails.password-changed' });
-    expect(unknown.text).toContain('known here: new-browser, role, mention');
+    expect(unknown.text).toContain('known here: new-browser, role, mention, out-of-date');
     expect((await here.patch('/me/preferences', { mails: { role: 'daily' } })).body).toMatchObject({ status: 400, where: 'mails.role' });
     expect((await here.patch('/me/preferences', { mails: ['role'] })).body).toMatchObject({ status: 400, where: 'mails' });
     expect((await here.get('/me/preferences')).body).toEqual(NOTHING_SAID);

@@ -4,8 +4,7 @@ import { type Role } from '#shared/contract/roles';
 import { roles } from '#schema/schema';
 import { startApp, type RunningApp } from './app';
 import { type Answer } from './client';
-import { type NetworkRows } from './network-rows';
-import { storeCairnway } from './stored-example';
+import { storeCairnway, type StoredExample } from './stored-example';
 import { makeWorld, type Persona, type World } from './world';
 
 /** Who is what in the example's network. */
@@ -26,7 +25,7 @@ export type EventPair = readonly [number, number];
 export interface CandidateWorld {
   readonly app: RunningApp;
   readonly world: World;
-  readonly network: NetworkRows;
+  readonly network: StoredExample;
   readonly networkId: number;
   readonly frameId: number;
   /** As many events as a candidate may count. */

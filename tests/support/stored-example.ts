@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { openIngest } from '../../backend/ingest/ingest';
+import { type Ingest, openIngest } from '../../backend/ingest/ingest';
 import { root } from '../../scripts/lib.mjs';
 import { type RunningApp } from './app';
 import { recordsOfLog } from './ingest';
@@ -15,8 +15,13 @@ export const CAIRNWAY_LOGS: readonly (readonly [site: string | undefined, path: 
   ['OXB', join(CAIRNWAY, 'shaft.csv')],
 ];
 
+/** The example's network, and what took its records. */
+export interface StoredExample extends NetworkRows {
+  readonly ingest: Ingest;
+}
+
 /** Puts the example's network and, through the ingest, its records into the database of a running server. */
-export async function storeCairnway({ ground: { db, nowMs, log } }: RunningApp): Promise<NetworkRows> {
+export async function storeCairnway({ ground: { db, nowMs, log } }: RunningApp): Promise<StoredExample> {
   const network = insertNetwork(db, JSON.parse(readFileSync(join(CAIRNWAY, 'network.json'), 'utf8')));
   const listener = { onStored: () => undefined, onInForce: () => undefined };
   const ingest = openIngest({ db, log, nowMs, listener, fatal: () => undefined });
@@ -26,7 +31,7 @@ export async function storeCairnway({ ground: { db, nowMs, log } }: RunningApp):
       if (siteId !== undefined) void ingest.batch(siteId, [record]);
     }
   await ingest.whenIdle();
-  return network;
+  return { ...network, ingest };
 }
 
 /** Ids of the events that stand, by their names. */

@@ -12,7 +12,10 @@ import { MyMails } from './my-mails';
 
 const PATH = '/api/me/preferences';
 const NOT_SAID = { theme: null, scale: null, shortcuts: null };
-const both = (newBrowser: 'on' | 'off', role: 'on' | 'off') => ({ ...NOT_SAID, mails: { 'new-browser': newBrowser, role, mention: 'on' } });
+const both = (newBrowser: 'on' | 'off', role: 'on' | 'off') => ({
+  ...NOT_SAID,
+  mails: { 'new-browser': newBrowser, role, mention: 'on', 'out-of-date': 'on' },
+});
 
 @Component({
   selector: 'sw-mails-and-toasts',
@@ -53,6 +56,7 @@ describe('the mails that someone gets', () => {
       'New browser',
       'Your roles',
       'Mentions',
+      'Out of date',
     ]);
     expect(await (await switchOf('New browser')).chosen()).toBe('Off');
     expect(await (await switchOf('Your roles')).chosen()).toBe('On');
