@@ -14,7 +14,7 @@ import { certificateOf, snapshotOf } from './certificate-of';
 import { moveCandidate, type MoveAsked } from './moved';
 import { outOfDatesOf } from './out-of-date';
 import { refuseMove } from './relations';
-import { nameReviewers, releaseReviewer, reviewersOfNetwork } from './reviewers';
+import { colleaguesOf, nameReviewers, releaseReviewer } from './reviewers';
 import { reviewQueueOf } from './review-queue';
 import { signCandidate, withdrawSignature } from './sign-candidate';
 import { submitCandidate } from './submit-candidate';
@@ -25,10 +25,10 @@ export const reviewRoutes = (): Served[] => [
     placeOf: ({ params: { candidateId } }, { db }) => placeOfCandidate(db, candidateId),
     handle: (asked, ground) => moveCandidate(asked, ground, 'submit', (moving) => submitCandidate(ground.db, ground.version, moving)),
   }),
-  serve(REVIEW_ROUTES.listReviewers, {
+  serve(REVIEW_ROUTES.listColleagues, {
     placeOf: ({ params: { networkId } }, { db }) => placeOfNetwork(db, networkId),
     handle: ({ params: { networkId }, query: { cursor = 0, limit = USUAL_ITEMS } }, { db, nowMs }) =>
-      pageFrom(reviewersOfNetwork(db, networkId, { afterId: cursor, most: limit + 1, nowMs: nowMs() }), limit, ({ id }) => id),
+      pageFrom(colleaguesOf(db, networkId, { afterId: cursor, most: limit + 1, nowMs: nowMs() }), limit, ({ id }) => id),
   }),
   serve(REVIEW_ROUTES.nameReviewers, {
     placeOf: ({ params: { candidateId } }, { db }) => placeOfCandidate(db, candidateId),

@@ -1,7 +1,8 @@
-import { and, asc, eq, gt, isNull } from 'drizzle-orm';
-import { type CandidateInFull } from '#shared/contract/candidate-routes';
+import { and, asc, eq, gt, inArray, isNull, or } from 'drizzle-orm';
+import { type Colleague } from '#shared/contract/review-routes';
+import { rolesAt } from '#shared/contract/roles';
 import { people, reviewers, roles, signatures } from '#schema/schema';
-import { holdsAt } from '../accounts/roles-of';
+import { holdsAt, rolesOf } from '../accounts/roles-of';
 import { absent, conflict, unusable } from '../api/refusal';
 import { type Db } from '../db';
 import { utcText } from '../ground';
@@ -9,22 +10,34 @@ import { type Moved, type Moving } from './moved';
 import { hasEdited } from './relations';
 import { somebody } from './review-rows';
 
-/** The reviewers of a network, from behind an id on. */
-export const reviewersOfNetwork = (
-  db: Pick<Db, 'selectDistinct'>,
+const SEE_CANDIDATES = ['coordinator', 'analyst', 'reviewer'] as const;
+
+/** Those who see candidates of a network, in the order in which they came, from behind an id on. */
+export const colleaguesOf = (
+  db: Pick<Db, 'select' | 'selectDistinct'>,
   networkId: number,
   { afterId, most, nowMs }: { readonly afterId: number; readonly most: number; readonly nowMs: number },
-): CandidateInFull['author'][] =>
+): Colleague[] =>
   db
     .selectDistinct({ id: people.id, name: people.name })
     .from(roles)
     .innerJoin(people, eq(people.id, roles.personId))
     .where(
-      and(eq(roles.networkId, networkId), eq(roles.role, 'reviewer'), holdsAt(nowMs), isNull(people.disabledAt), gt(people.id, afterId)),
+      and(
+        inArray(roles.role, SEE_CANDIDATES),
+        or(eq(roles.networkId, networkId), isNull(roles.networkId)),
+        holdsAt(nowMs),
+        isNull(people.disabledAt),
+        gt(people.id, afterId),
+      ),
     )
     .orderBy(asc(people.id))
     .limit(most)
-    .all();
+    .all()
+    .map((person) => {
+      const held = rolesAt(rolesOf(db, person.id, nowMs), { kind: 'network', networkId });
+      return { ...person, roles: SEE_CANDIDATES.filter((role) => held.includes(role)) };
+    });
 
 /**
  * Asks people to review a candidate.
@@ -33,8 +46,8 @@ export const reviewersOfNetwork = (
  */
 export function nameReviewers({ making: { tx, nowMs }, row, caller }: Moving, personIds: readonly number[]): Moved {
   for (const [at, personId] of personIds.entries()) {
-    const [found] = reviewersOfNetwork(tx, row.networkId, { afterId: personId - 1, most: 1, nowMs });
-    if (found?.id !== personId)
+    const [found] = colleaguesOf(tx, row.networkId, { afterId: personId - 1, most: 1, nowMs });
+    if (found?.id !== personId || !found.roles.includes('reviewer'))
       throw unusable({ where: `personIds[${at}]`, text: `is ${personId}; it must be the id of a reviewer of this network` });
     if (hasEdited(tx, row, personId)) throw conflict(`${found.name} wrote or edited the candidate: nobody reviews their own work.`);
     const asked = { namedAt: utcText(nowMs), namedBy: caller.personId, releasedAt: null };

@@ -53,6 +53,9 @@ const outOfDate = z.strictObject({
   differences: z.array(numberChanged),
 });
 
+/** Someone who sees candidates of a network, with the roles by which they do. */
+const colleague = somebody.extend({ roles: z.array(z.enum(['coordinator', 'analyst', 'reviewer'])) });
+
 /** A candidate that someone is asked to review. */
 const asked = z.strictObject({
   id: z.int(),
@@ -78,12 +81,12 @@ export const REVIEW_ROUTES = {
     body: seenVersion,
     answer: candidateInFull,
   }),
-  /** Those who may be named: reviewers of the network. */
-  listReviewers: route('GET', '/networks/:networkId/reviewers', {
+  /** Those who see candidates of the network, by what they may be: named as reviewers, mentioned in comments. */
+  listColleagues: route('GET', '/networks/:networkId/colleagues', {
     policy: 'candidate:read',
     params: z.strictObject({ networkId: idText }),
     query: record(pageQuery),
-    answer: pageOf(somebody),
+    answer: pageOf(colleague),
   }),
   nameReviewers: route('POST', '/candidates/:candidateId/reviewers', {
     policy: 'reviewer:name',
@@ -151,6 +154,7 @@ export const REVIEW_ROUTES = {
 };
 
 export type SnapshotInFull = z.infer<typeof snapshotInFull>;
+export type Colleague = z.infer<typeof colleague>;
 export type NumberChanged = z.infer<typeof numberChanged>;
 export type OutOfDate = z.infer<typeof outOfDate>;
 export type ReviewAsked = z.infer<typeof asked>;

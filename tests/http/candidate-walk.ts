@@ -39,7 +39,7 @@ export function candidateWalk(world: () => World, stored: () => StoredCandidate)
       },
     ),
     'POST /candidates/:candidateId/submit': move(['analyst'], ofCandidate('/submit')),
-    'GET /networks/:networkId/reviewers': read(ofNetwork('/reviewers')),
+    'GET /networks/:networkId/colleagues': read(ofNetwork('/colleagues')),
     'POST /candidates/:candidateId/reviewers': move(['chief', 'coordinator', 'analyst'], ofCandidate('/reviewers'), { personIds: [1] }),
     'POST /candidates/:candidateId/reviewers/:personId/release': move(
       ['chief', 'coordinator', 'analyst'],

@@ -2,7 +2,7 @@ import { createHash } from 'node:crypto';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { type CandidateInFull, type CandidateStep } from '#shared/contract/candidate-routes';
 import { type Certificate, certificate, snapshotBody } from '#shared/contract/certificate';
-import { type ReviewAsked, type SnapshotInFull } from '#shared/contract/review-routes';
+import { type Colleague, type ReviewAsked, type SnapshotInFull } from '#shared/contract/review-routes';
 import { signatureSha256 } from '#shared/contract/signature-hash';
 import { verifyCertificate } from '#shared/contract/verify-certificate';
 import { canonicalJson } from '#shared/review/canonical';
@@ -108,8 +108,15 @@ describe('submitting', () => {
 describe('reviewers', () => {
   it('are named by the author or a coordinator from those of the network, and released', async () => {
     const candidate = await claimed();
-    const { items } = good<{ items: { id: number }[] }>(await cast.world.as('analyst').get(`/networks/${cast.networkId}/reviewers`));
-    expect(items.map(({ id }) => id)).toEqual([person('reviewer'), person('otherOperator'), person('nobodySpecial')].sort((a, b) => a - b));
+    const { items } = good<{ items: Colleague[] }>(await cast.world.as('analyst').get(`/networks/${cast.networkId}/colleagues`));
+    const rolesOf = (persona: Persona): readonly string[] | undefined => items.find(({ id }) => id === person(persona))?.roles;
+    expect([rolesOf('otherOperator'), rolesOf('chief'), rolesOf('operator')]).toEqual([
+      ['analyst', 'reviewer'],
+      ['coordinator'],
+      undefined,
+    ]);
+    const reviewers = items.filter(({ roles }) => roles.includes('reviewer')).map(({ id }) => id);
+    expect(reviewers).toEqual([person('reviewer'), person('otherOperator'), person('nobodySpecial')].sort((a, b) => a - b));
     refused(await post('analyst', candidate, 'reviewers', { personIds: [person('operator')] }), 400, 'personIds[0]');
     refused(await post('otherCoordinator', candidate, 'reviewers', { personIds: [person('reviewer')] }), 403);
     const named = good<CandidateInFull>(await post('coordinator', candidate, 'reviewers', { personIds: [person('reviewer')] }));
