@@ -120,6 +120,18 @@ test('a new state of a site that came too late says what was changed meanwhile, 
   await expect(page.getByText('Orrel Fell')).toBeVisible();
 });
 
+test('the palette finds a site by its code and by its name', async () => {
+  for (const typed of ['orl', 'fell']) {
+    await page.goto('/network');
+    await expect(page.getByRole('heading', { level: 1 })).toBeVisible();
+    await page.keyboard.press('Control+k');
+    await page.getByRole('combobox', { name: 'Find a page, site or command' }).fill(typed);
+    await expect(page.getByRole('option')).toHaveText([/ORL, Orrel Fell/]);
+    await page.keyboard.press('Enter');
+    await page.waitForURL('**/sites/1');
+  }
+});
+
 test('a time reference is named, and its error changed', async () => {
   await page.goto('/network');
   await button('Name a time reference').click();

@@ -118,7 +118,7 @@ test('the theme is there before the first paint, and stays', async () => {
 
 test('the palette finds a page by its words, and single keys can be switched off', async () => {
   await page.keyboard.press('Control+k');
-  await page.getByRole('combobox', { name: 'Find a page or a command' }).fill('audit');
+  await page.getByRole('combobox', { name: 'Find a page, site or command' }).fill('audit');
   await page.keyboard.press('Enter');
   await heading('Audit trail');
   await page.keyboard.press('?');

@@ -6,7 +6,7 @@ export interface Command {
   /** The act, as a button would say it. */
   readonly title: string;
   /** Under which heading the lists have it. */
-  readonly section: 'Go to' | 'This page' | 'Everywhere';
+  readonly section: 'Go to' | 'This page' | 'Everywhere' | 'Site';
   readonly icon?: IconName;
   /** One key, or two one after the other with a blank between them: `t`, `g d`. */
   readonly key?: string;

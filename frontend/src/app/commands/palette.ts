@@ -3,7 +3,7 @@ import { ChangeDetectionStrategy, Component, computed, inject, linkedSignal, sig
 import { Icon } from '../ui/icon';
 import { type Command, CommandStore, findCommands } from './command-store';
 
-/** Every command by its words, and beside it its key. */
+/** Every command by its words, and beside it its key; sites by their codes and names. */
 @Component({
   selector: 'sw-palette',
   imports: [Icon],

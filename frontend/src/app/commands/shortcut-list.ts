@@ -21,7 +21,7 @@ import { CommandStore } from './command-store';
       </label>
       <dl>
         <div>
-          <dt>Find a page or a command</dt>
+          <dt>Find a page, site or command</dt>
           <dd><kbd>Ctrl K</kbd></dd>
         </div>
         @for (command of withKey(); track command.key) {

@@ -5,6 +5,7 @@ import { type Command, CommandStore } from '../commands/command-store';
 import { Keys } from '../commands/keys';
 import { Palette } from '../commands/palette';
 import { ShortcutList } from '../commands/shortcut-list';
+import { siteCommands } from '../commands/site-commands';
 import { ConnectionStore } from '../connection/connection-store';
 import { OfflineBanner } from '../connection/offline-banner';
 import { LiveStore } from '../live/live-store';
@@ -89,7 +90,7 @@ export class Shell {
 
   protected openPalette(): void {
     if (this.dialog.isOpen) return;
-    void this.dialog.open(Palette, { ariaLabel: 'Find a page or a command', panelClass: 'high-pane', autoFocus: 'input' });
+    void this.dialog.open(Palette, { ariaLabel: 'Find a page, site or command', panelClass: 'high-pane', autoFocus: 'input' });
   }
 
   protected openShortcuts(): void {
@@ -131,6 +132,7 @@ export class Shell {
       },
       { title: 'List all shortcuts', section: 'Everywhere', icon: 'keyboard-command-key', key: '?', run: () => this.openShortcuts() },
       { title: 'Sign out', section: 'Everywhere', icon: 'logout', run: () => this.signOut() },
+      ...(this.session.may('site:read') ? siteCommands(this.networks.sites.value() ?? [], (path) => this.router.navigateByUrl(path)) : []),
     ];
   }
 }
