@@ -1,6 +1,7 @@
 import { createServer, type Server } from 'node:http';
 import { type AddressInfo } from 'node:net';
 import { pino } from 'pino';
+import { hasPeople } from './accounts/people-rows';
 import { makeApp } from './app';
 import { readConfig, type Config } from './config';
 import { type DataLock } from './data-lock';
@@ -73,6 +74,7 @@ async function begin(): Promise<void> {
   say(`Skewline is at ${urlOf(server)}\n`);
   const { dataDir, demo } = config;
   if (demo) endDemo = showDemo({ dataDir, deploymentId: ground.deploymentId, db, url: urlOf(server), say });
+  else if (!hasPeople(db)) say('Nobody can sign in yet: npx skewline user add --email ... --name ... lets the first coordinator in.\n');
 }
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, end);
 

@@ -14,6 +14,10 @@ export function meOf(db: Rows, personId: number, nowMs: number): Me {
   return { id, email, name, version, roles: rolesOf(db, personId, nowMs) };
 }
 
+/** Whether there is anyone who has chosen a password. */
+export const hasPeople = (db: Rows): boolean =>
+  db.select({ id: people.id }).from(people).where(isNotNull(people.passwordHash)).limit(1).get() !== undefined;
+
 /** The row of a person; refused as absent when there is none. */
 export function rowOf(db: Rows, personId: number): PersonRow {
   const row = db.select().from(people).where(eq(people.id, personId)).get();

@@ -287,11 +287,12 @@ describe('the end', () => {
     socket.destroy();
   });
 
-  it('prints one URL and nothing else on the way', async () => {
+  it('prints one URL, how the first coordinator gets in while nobody can sign in, and nothing else on the way', async () => {
     const server = await startServer({ DATA_DIR: newFolder('words') });
     await fetch(server.url, { headers: { accept: 'text/html' } });
     const { stdout, stderr } = await server.stop();
-    expect(stdout).toBe(`Skewline is at ${server.url}\n`);
+    const nobody = 'Nobody can sign in yet: npx skewline user add --email ... --name ... lets the first coordinator in.';
+    expect(stdout).toBe(`Skewline is at ${server.url}\n${nobody}\n`);
     expect(stderr).toBe('');
   });
 });
