@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { linesOfLabels, placeBeside } from './labels';
+import { linesOfLabels, placeBeside, placeWords } from './labels';
 
 describe('labels above a diagram', () => {
   it('stand on one line while they do not touch', () => {
@@ -27,5 +27,25 @@ describe('labels beside marks', () => {
     const areas = placed.flatMap((one) => (one ? [{ left: one.anchor === 'start' ? one.x : one.x - 24, top: one.y }] : []));
     for (const [i, a] of areas.entries())
       for (const b of areas.slice(i + 1)) expect(Math.abs(a.left - b.left) >= 24 || Math.abs(a.top - b.top) >= 12).toBe(true);
+  });
+});
+
+describe('the words of a picture', () => {
+  const box = { left: 0, top: 0, width: 200, height: 100 };
+  const word = (x: number, y: number, turnDeg = 0) => ({ kind: 'mark', text: 'ten digits', x, y, turnDeg }) as const;
+
+  it('stand at their first place that touches no mark and no word, also one that is turned', () => {
+    const [first, turned] = [word(20, 14), word(20, 90, -45)];
+    expect(placeWords([[first], [word(30, 18), turned], [word(34, 80), word(120, 80)]], [], [], box)).toEqual([
+      first,
+      turned,
+      word(120, 80),
+    ]);
+    expect(placeWords([[first, word(20, 80)]], [], [{ x: 60, y: 10 }], box)).toEqual([word(20, 80)]);
+    expect(placeWords([[first]], [word(40, 20)], [], box)).toEqual([]);
+  });
+
+  it('are left out where they would leave the box', () => {
+    expect(placeWords([[word(160, 40)], [word(20, 6)], [word(20, 98, 45)]], [], [], box)).toEqual([]);
   });
 });

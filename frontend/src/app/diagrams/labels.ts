@@ -1,3 +1,5 @@
+import { type PictureWord, widthOfWords } from './picture';
+
 /** A label on one line: where its middle would stand, and how wide it is, px. */
 export interface LineLabel {
   readonly at: number;
@@ -76,6 +78,52 @@ export function placeBeside(
         return { x: anchor === 'start' ? left : left + width, y: y + up, anchor };
       }
     return undefined;
+  });
+}
+
+const LARGEST_WORDS_PX = 12;
+/** From a word's line to its middle, px. */
+const HALF_UP_PX = 4;
+/** Words whose middles are nearer than a line is high touch. */
+const APART_PX = 13;
+const STEP_PX = 6;
+
+/**
+ * Places the words of a picture, each at the first of its places where it is in the box and touches no mark and no word placed before.
+ *
+ * @param wanted the most important first, each with its places, the best first
+ * @param kept words that stand already
+ * @param marks points that no word may hide, px
+ * @returns those that found a place, where they stand
+ */
+export function placeWords(
+  wanted: readonly (readonly PictureWord[])[],
+  kept: readonly PictureWord[],
+  marks: readonly { readonly x: number; readonly y: number }[],
+  box: { readonly left: number; readonly top: number; readonly width: number; readonly height: number },
+): PictureWord[] {
+  const taken = [...marks, ...kept.flatMap(middleOf)];
+  return wanted.flatMap((places) => {
+    for (const word of places) {
+      const middle = middleOf(word);
+      const isInBox = middle.every(({ x, y }) => isWithin({ left: x - 3, top: y - 7, right: x + 3, bottom: y + 7 }, box));
+      if (!isInBox || middle.some(({ x, y }) => taken.some((other) => Math.hypot(other.x - x, other.y - y) < APART_PX))) continue;
+      taken.push(...middle);
+      return [word];
+    }
+    return [];
+  });
+}
+
+/** Points along the middle of words, turned as they are, px. */
+function middleOf({ x, y, text, anchor = 'start', turnDeg = 0 }: PictureWord): { readonly x: number; readonly y: number }[] {
+  const width = widthOfWords(text, LARGEST_WORDS_PX);
+  const from = anchor === 'start' ? 0 : anchor === 'end' ? -width : -width / 2;
+  const [cos, sin] = [Math.cos((turnDeg * Math.PI) / 180), Math.sin((turnDeg * Math.PI) / 180)];
+  const steps = Math.max(1, Math.ceil((width - STEP_PX) / STEP_PX));
+  return Array.from({ length: steps + 1 }, (_, i) => {
+    const along = from + STEP_PX / 2 + ((width - STEP_PX) * i) / steps;
+    return { x: x + along * cos + HALF_UP_PX * sin, y: y + along * sin - HALF_UP_PX * cos };
   });
 }
 

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { pairPicture, type PairPictureGiven, pairScales, spread } from './pair-picture';
+import { pairPicture, type PairPictureGiven, pairScales } from './pair-picture';
+import { spread } from './pair-picture-words';
 
 const BOX = { left: 50, top: 6, width: 440, height: 470 };
 
@@ -86,6 +87,54 @@ describe('the picture of a pair', () => {
     const frames = [{ name: 'slow', alongC: -4e-4 }, { name: 'Geocentric', alongC: 0 }, { name: 'fast', alongC: 0.3 }]; // prettier-ignore
     const words = pairPicture(given({ xMs: 36, tMs: 14, frames })).words;
     expect(words.filter(({ kind }) => kind === 'edge').map(({ text }) => text).sort()).toEqual(['\u03b2 0', '\u03b2 0.30']); // prettier-ignore
+  });
+});
+
+describe('the words of a pair in a narrow picture', () => {
+  const box = { left: 44, top: 6, width: 248, height: 251 }; // of a screen of 390 px
+  const CHARACTER_PX = 5.2; // narrower than any font of the pictures is on average, so that what touches here touches on the screen
+  const frames = [-0.3, 0, 0.0012, 0.3].map((alongC) => ({ name: String(alongC), alongC }));
+
+  it('touch nowhere, whatever the pair', () => {
+    let seen = 0;
+    for (const kind of ['spacelike', 'timelike', 'undecided'] as const)
+      for (const [xMs, tMs] of [
+        [0.9, 0.05],
+        [36, 14],
+        [14, 36],
+        [3, 2.9],
+        [2.9, 3],
+        [1, 0],
+        [0, 1],
+        [1e-3, 40],
+      ] as const)
+        // prettier-ignore
+        for (const errorMs of [0.01, 0.1, 0.3, 0.9].map((part) => part * Math.max(xMs, tMs))) {
+          const asked = { box, xMs, tMs, errorMs, class: kind, frames, errorText: '\u00b1 874 \u00b5s (3 \u03c3)', turningC: xMs > tMs ? tMs / xMs : undefined };
+          const { words } = pairPicture(given({ ...asked, ...pairScales(box, xMs, tMs, errorMs) }));
+          const areas = words.map(({ text, x, y, anchor, turnDeg = 0 }) => {
+            const width = text.length * CHARACTER_PX;
+            const from = anchor === 'end' ? -width : anchor === 'middle' ? -width / 2 : 0;
+            const turn = (turnDeg * Math.PI) / 180;
+            // Its middle line, 4 px above its foot.
+            return Array.from({ length: 21 }, (_, i) => ({
+              x: x + (from + (width * i) / 20) * Math.cos(turn) + 4 * Math.sin(turn),
+              y: y + (from + (width * i) / 20) * Math.sin(turn) - 4 * Math.cos(turn),
+            }));
+          });
+          for (const [i, a] of areas.entries())
+            for (const b of areas.slice(i + 1)) {
+              seen++;
+              const nearest = Math.min(...a.flatMap((p) => b.map((q) => Math.hypot(p.x - q.x, p.y - q.y))));
+              expect(nearest, words.map(({ text }) => text).join(' | ')).toBeGreaterThan(9); // of lines some 12 px high
+            }
+        }
+    expect(seen).toBeGreaterThan(500);
+  });
+
+  it('keep the error and the sites where there is room', () => {
+    const texts = pairPicture(given({ box, xMs: 36, tMs: 14, ...pairScales(box, 36, 14, 0.5) })).words.map(({ text }) => text);
+    expect(texts).toEqual(expect.arrayContaining(['AAA', 'BBB', '\u00b1 1 ms', '\u03b2 0', 'same s\u00b2']));
   });
 });
 

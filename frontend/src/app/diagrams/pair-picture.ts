@@ -1,7 +1,8 @@
 import { scaleLinear } from 'd3';
 import { type IntervalClass } from '#shared/relativity/verdict';
 import { type Box, type Scale } from './one-scale';
-import { pathThrough, type Picture, type PictureLine, type PictureWord, round, type Tick, widthOfWords } from './picture';
+import { pairWords } from './pair-picture-words';
+import { pathThrough, type Picture, type PictureLine, round, type Tick } from './picture';
 import { plainTicks } from './time-ticks';
 
 /** A frame of the network as it moves along the baseline. */
@@ -33,9 +34,6 @@ export interface PairPictureGiven {
 
 const FAR_MS = 1e10;
 const CURVE_STEPS = 120;
-const LABEL_PX = 15;
-/** Worldlines nearer than this are one line on the screen. */
-const ONE_LINE_PX = 12;
 const CAP_PX = 5;
 const NARROW_PX = 340;
 
@@ -98,7 +96,7 @@ export function pairPicture(given: PairPictureGiven): Picture {
   return {
     box,
     lines,
-    words: [...siteWords(given), ...edgeWords(given)],
+    words: pairWords(given),
     xTicks,
     yTicks,
     xTitle: `Distance along the baseline, light-${unit.name}${isNarrow ? `; time up, ${unit.name}` : ''}`,
@@ -129,127 +127,3 @@ function curveOf({ xMs, tMs, x, y }: PairPictureGiven): [number, number][] {
     return square > 0 ? [other, at] : [at, other];
   });
 }
-
-function siteWords({ box, x, y, names, sites, xMs, tMs, errorText, class: kind }: PairPictureGiven): PictureWord[] {
-  const [right, bottom] = [box.left + box.width, box.top + box.height];
-  const isRoomy = x(xMs) + 12 + widthOfWords(sites[1], 12) < right;
-  const isOneLine = x(xMs) - x(0) < ONE_LINE_PX;
-  const words: PictureWord[] = isOneLine
-    ? [{ kind: 'site', text: sites[0] === sites[1] ? sites[0] : sites.join(', '), x: x(0) - 8, y: box.top + 18, anchor: 'end' }]
-    : [
-        { kind: 'site', text: sites[0], x: x(0) - 8, y: box.top + 18, anchor: 'end' },
-        isRoomy
-          ? { kind: 'site', text: sites[1], x: x(xMs) + 8, y: bottom - 9 }
-          : { kind: 'site', text: sites[1], x: x(xMs) - 8, y: bottom - 9, anchor: 'end' },
-      ];
-  if (y(0) - box.top > 80 && right - x(0) > 150)
-    words.push({ kind: 'cone', text: `${names[0]} can be the cause`, x: x(0) + 10, y: box.top + 42 });
-  const lightPx = 0.62 * Math.min(right - x(0), y(0) - box.top);
-  if (lightPx > 90)
-    words.push({
-      kind: 'light',
-      text: `light from ${names[0]}`,
-      x: x(0) + lightPx - 4,
-      y: y(0) - lightPx - 6,
-      turnDeg: -45,
-      anchor: 'middle',
-    });
-  const isTight = x(xMs) + 14 + widthOfWords(errorText, 11) > right;
-  words.push(
-    isTight
-      ? { kind: 'mark', text: errorText, x: right - 6, y: y(tMs) + 28, anchor: 'end' }
-      : { kind: 'mark', text: errorText, x: x(xMs) + 12, y: y(tMs) + 18 },
-  );
-  return [...words, ...sameWords({ box, x, y, xMs, tMs, kind })];
-}
-
-/** What the curve is called, where there is room beside it. */
-function sameWords({
-  box,
-  x,
-  y,
-  xMs,
-  tMs,
-  kind,
-}: {
-  box: Box;
-  x: Scale;
-  y: Scale;
-  xMs: number;
-  tMs: number;
-  kind: IntervalClass;
-}): PictureWord[] {
-  const square = (xMs - tMs) * (xMs + tMs);
-  const text = 'same s\u00b2';
-  const style = kind === 'spacelike' ? 'spacelike' : kind === 'timelike' ? 'cone' : 'note';
-  if (square > 0) {
-    const at = y(0) + 0.4 * (box.top + box.height - y(0));
-    const across = x(Math.hypot(Math.sqrt(square), y.invert(at)));
-    return across - 60 > box.left ? [{ kind: style, text, x: across - 8, y: at, anchor: 'end' }] : [];
-  }
-  const at = box.left + box.width * 0.1;
-  const down = y(Math.hypot(Math.sqrt(-square), x.invert(at)));
-  return down > box.top + 16 ? [{ kind: style, text, x: at, y: down - 8 }] : [];
-}
-
-/** The frames' speeds where their lines leave the box; of lines that leave it at one place the slowest frame's alone. */
-function edgeWords({ box, x, y, frames, turningC, class: kind }: PairPictureGiven): PictureWord[] {
-  const right = box.left + box.width;
-  const [, rightMs = 0] = x.domain();
-  const [topMs = 0, bottomMs = 0] = y.domain();
-  const texts = [
-    ...[...frames].sort((a, b) => Math.abs(a.alongC) - Math.abs(b.alongC)).map(({ alongC }) => ({ alongC, text: `\u03b2 ${betaText(alongC)}`, isTurning: false })), // prettier-ignore
-  ];
-  const kept: typeof texts = turningC === undefined ? [] : [{ alongC: turningC, text: turningC.toFixed(3), isTurning: true }];
-  const atOf = (alongC: number): number => y(alongC * rightMs);
-  for (const one of texts)
-    if (kept.every(({ alongC, isTurning }) => isTurning || Math.abs(atOf(alongC) - atOf(one.alongC)) > 6)) kept.push(one);
-  const leavesRight = ({ alongC }: { readonly alongC: number }): boolean => alongC * rightMs <= topMs && alongC * rightMs >= bottomMs;
-  const edge = spread(kept.filter(leavesRight).map((one) => ({ ...one, at: atOf(one.alongC) })));
-  const words = edge.map(({ text, isTurning, at }): PictureWord => ({
-    kind: !isTurning ? 'edge' : kind === 'undecided' ? 'note' : 'edge-turning',
-    text,
-    x: right + 8,
-    y: at + 4,
-  }));
-  const rest = [topMs, bottomMs].flatMap((endMs) => {
-    const leaving = kept.filter((one) => !leavesRight(one) && one.alongC * endMs > 0);
-    return leaving.map(({ text, isTurning, alongC }, i): PictureWord => {
-      // It leaves at the top or the bottom: its words stand along it, the flattest line's above it and the steepest one's below.
-      const isBelow = (i === leaving.length - 1 && i > 0) === endMs < 0;
-      const share = i > 0 && i < leaving.length - 1 ? 0.36 : 0.6;
-      const atX = (share * endMs) / alongC;
-      const aside = isBelow ? 14 : -6;
-      return {
-        kind: !isTurning ? 'instant' : kind === 'undecided' ? 'note' : 'spacelike',
-        text,
-        x: x(atX),
-        y: y(share * endMs) + aside,
-        turnDeg: (-Math.atan(alongC) * 180) / Math.PI,
-        anchor: 'middle',
-      };
-    });
-  });
-  return [...words, ...rest];
-}
-
-/** Labels moved down or up so far that none touches another; their order stays. */
-export function spread<T extends { readonly at: number }>(labels: readonly T[]): T[] {
-  const placed = [...labels].sort((a, b) => a.at - b.at);
-  for (let pass = 0; pass < 60; pass++) {
-    let moved = false;
-    for (let i = 1; i < placed.length; i++) {
-      const [above, below] = [placed[i - 1], placed[i]];
-      if (!above || !below) continue;
-      const lacks = LABEL_PX - (below.at - above.at);
-      if (lacks <= 0.01) continue;
-      placed[i - 1] = { ...above, at: above.at - lacks / 2 };
-      placed[i] = { ...below, at: below.at + lacks / 2 };
-      moved = true;
-    }
-    if (!moved) break;
-  }
-  return placed;
-}
-
-const betaText = (alongC: number): string => (alongC === 0 ? '0' : `${alongC < 0 ? '\u2212' : ''}${Math.abs(alongC).toFixed(2)}`);
