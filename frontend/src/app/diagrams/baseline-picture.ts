@@ -1,5 +1,5 @@
 import { type Speed } from '#shared/relativity/speed';
-import { placeBeside } from './labels';
+import { placeBeside, placeWords } from './labels';
 import { type Box, type Scale } from './one-scale';
 import { lightConeAt, pathThrough, type Picture, type PictureLine, type PictureWord, round, widthOfWords } from './picture';
 import { type Plane } from './plane';
@@ -27,6 +27,7 @@ export interface BaselineGiven {
 }
 
 const TRAIL_STEPS = 16;
+const NARROW_PX = 340;
 
 /**
  * The picture along a pair's baseline in a frame that moves along it: light, the worldlines of both sites, the lines of what is one instant in
@@ -56,12 +57,8 @@ export function baselinePicture(given: BaselineGiven): Picture {
       const at = (xMs: number): number => (k * everyMs) / gamma - velocityC * xMs;
       lines.push({ kind: k === 0 ? 'instant' : 'instant-other', path: through([[leftMs, at(leftMs)], [rightMs, at(rightMs)]]) }); // prettier-ignore
     }
-    const beside = x.invert(x(0) + Math.sign(velocityC) * 0.28 * box.width);
-    const atX = isIn(beside, x) ? beside : (leftMs + rightMs) / 2;
-    const turnDeg = (Math.atan(velocityC) * 180) / Math.PI;
-    words.push({ kind: 'instant', text: box.width < 340 ? 'geocentric instant' : 'one instant in the geocentric frame', x: x(atX) + 4, y: y(-velocityC * atX) - 6, turnDeg, anchor: 'middle' }); // prettier-ignore
   }
-  words.push({ kind: 'here', text: isMoving ? 'one instant here' : 'one geocentric instant', x: box.left + 6, y: y(0) - 6 });
+  words.push(...instantWords(given, velocityC));
   // A worldline at x in the geocentric frame is x' = x / gamma - v t' here.
   const across = (xMs: number, tMs: number): number => xMs / gamma - velocityC * tMs;
   const [topMs = 0, bottomMs = 0] = y.domain();
@@ -112,6 +109,26 @@ export function baselinePicture(given: BaselineGiven): Picture {
     yTitle: isMoving ? `Time in this frame after ${originName}, t\u2032, ms` : `Time after ${originName}, ms`,
     slanted: isMoving,
   };
+}
+
+/** What is one instant in the geocentric frame, and in the frame that is shown: beside the cone of the origin, where there is room. */
+function instantWords({ box, x, y }: BaselineGiven, velocityC: number): PictureWord[] {
+  const turnDeg = (Math.atan(velocityC) * 180) / Math.PI;
+  const side = Math.sign(velocityC);
+  const texts = box.width < NARROW_PX ? ['geocentric instant'] : ['one instant in the geocentric frame', 'geocentric instant'];
+  const along = texts.flatMap((text) =>
+    [0.28, 0.2, -0.28, -0.2].map((part): PictureWord => {
+      const atX = x(0) + side * part * box.width;
+      return { kind: 'instant', text, x: atX + 4, y: y(-velocityC * x.invert(atX)) - 6, turnDeg, anchor: 'middle' };
+    }),
+  );
+  const text = side === 0 ? 'one geocentric instant' : 'one instant here';
+  const here: PictureWord[] = [
+    { kind: 'here', text, x: box.left + 6, y: y(0) - 6 },
+    { kind: 'here', text, x: box.left + box.width - 6, y: y(0) - 6, anchor: 'end' },
+  ];
+  const cone = [-18, -9, 0, 9, 18].map((acrossPx) => ({ x: x(0) + acrossPx, y: y(0) - Math.abs(acrossPx) }));
+  return placeWords(side === 0 ? [here] : [along, here], [], cone, box);
 }
 
 /** Where frames from rest to a rapidity place an event. */
