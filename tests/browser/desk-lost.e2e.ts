@@ -51,9 +51,15 @@ test('a server that goes under the desk and comes back on the same data brings w
   const banner = page.locator('sw-offline-banner');
   await expect(banner).toContainText(/The server was last reached at \d{4}-\d\d-\d\d \d\d:\d\d:\d\d UTC/, { timeout: NOTICED_MS });
   expect(await heldCount(page)).toBeGreaterThan(100); // what was there stays to be read
+  const strip = page.locator('sw-site-strip');
+  await expect(strip.locator('li').first()).toContainText(/not known since \d\d:\d\d:\d\d/);
+  await expect(strip.getByRole('img', { name: 'streaming' })).toHaveCount(0);
+  const ages = await strip.innerText();
+  await expect.poll(() => strip.innerText()).not.toBe(ages); // they grow though nothing comes
 
   const second = await startServer({ DATA_DIR: dataDir, DEMO: 'on', PORT: new URL(first.url).port });
   await expect(banner.getByRole('button')).toHaveCount(0, { timeout: FOUND_MS });
+  await expect(strip).not.toContainText('not known', { timeout: FOUND_MS });
   await expect.poll(async () => (await listed(page)).filter(({ id }) => id > latest.id).length, { timeout: AGAIN_MS }).toBeGreaterThan(10);
   // As many as the server has: what was missed is there, and nothing twice.
   await expect
