@@ -17,7 +17,7 @@ test('a server that is gone is told with the age of what is shown, and found aga
   await enter(page, demoAccount(dataDir, 'coordinator'));
   await page.getByRole('link', { name: 'Sites' }).first().click();
   await expect(page.getByRole('main')).toContainText('Ombra Pan');
-  await page.evaluate(() => (document.title = 'not reloaded'));
+  await page.evaluate(() => (document.documentElement.dataset['since'] = 'before'));
   await first.stop();
 
   const banner = page.locator('sw-offline-banner');
@@ -29,11 +29,21 @@ test('a server that is gone is told with the age of what is shown, and found aga
     expect((await new AxeBuilder({ page }).withTags(WCAG).analyze()).violations).toEqual([]);
   }
 
+  // A part of the application that was not fetched yet.
+  await page.getByRole('main').focus();
+  await page.keyboard.press('g');
+  await page.keyboard.press('r');
+  const toast = page.locator('sw-toasts');
+  await expect(toast).toContainText('cannot be loaded while the server is away');
+  await expect(page.getByRole('main')).toContainText('Ombra Pan');
+
   const second = await startServer({ DATA_DIR: dataDir, DEMO: 'on', PORT: new URL(first.url).port });
   await expect(banner.getByRole('button')).toHaveCount(0, { timeout: FOUND_MS });
   await expect(page.locator('sw-connection-mark')).not.toContainText('Offline');
-  await page.getByRole('link', { name: 'Rules' }).first().click();
+  await expect(page.getByRole('heading', { level: 1 })).toHaveText('Rules');
+  await expect(toast).not.toContainText('cannot be loaded');
   await expect(page.locator('tbody tr').first()).toBeVisible();
+  expect(await page.evaluate(() => document.documentElement.dataset['since'])).toBe('before'); // not reloaded
   await context.close();
   await second.stop();
 });

@@ -8,6 +8,7 @@ import { ShortcutList } from '../commands/shortcut-list';
 import { siteCommands } from '../commands/site-commands';
 import { ConnectionStore } from '../connection/connection-store';
 import { OfflineBanner } from '../connection/offline-banner';
+import { WaitingPage } from '../connection/waiting-page';
 import { LiveStore } from '../live/live-store';
 import { MyPreferences } from '../preferences/my-preferences';
 import { Preferences } from '../preferences/preferences';
@@ -71,6 +72,7 @@ export class Shell {
   constructor() {
     inject(AskPassword).whenSessionEnds();
     inject(ConnectionStore).watch();
+    inject(WaitingPage); // says and opens from here on what could not be fetched
     inject(LiveStore); // follows the network from here on
     inject(MyPreferences); // follow the person from here on
     inject(CommandStore).offer(() => this.commands());

@@ -24,19 +24,20 @@ export class ToastStore {
     this.add({ text, fault: false, undo });
   }
 
-  /** Says that an act failed, until it is closed. */
-  fail(text: string): void {
-    this.add({ text, fault: true, undo: undefined });
+  /** Says that an act failed, until it is closed; returns by which id. */
+  fail(text: string): number {
+    return this.add({ text, fault: true, undo: undefined });
   }
 
   close(id: number): void {
     this.shown.update((all) => all.filter((one) => one.id !== id));
   }
 
-  private add(toast: Omit<Toast, 'id'>): void {
+  private add(toast: Omit<Toast, 'id'>): number {
     const id = ++this.lastId;
     this.shown.update((all) => [...all.slice(1 - MOST_TOASTS), { ...toast, id }]);
     if (!toast.fault) setTimeout(() => this.close(id), UNDO_MS);
+    return id;
   }
 }
 
