@@ -10,6 +10,7 @@ import { SessionStore } from '../session/session-store';
 import { Term } from '../terms/term';
 import { numberControl, textControl } from '../ui/controls';
 import { Field } from '../ui/field';
+import { FigurePipe } from '../ui/figure';
 import { Loader } from '../ui/loaded';
 import { Meanwhile } from '../ui/meanwhile';
 import { MeanwhileNote } from '../ui/meanwhile-note';
@@ -21,7 +22,7 @@ import { ToastStore } from '../ui/toasts';
 /** What the clocks of a network are compared with, and the form that names another or changes its error. */
 @Component({
   selector: 'sw-references',
-  imports: [Fault, Field, InstantMark, MeanwhileNote, ReactiveFormsModule, Skeleton, Term],
+  imports: [Fault, Field, FigurePipe, InstantMark, MeanwhileNote, ReactiveFormsModule, Skeleton, Term],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './references.html',
   styles: `

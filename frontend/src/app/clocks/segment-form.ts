@@ -8,6 +8,7 @@ import { typedInstant } from '../instants/typed-instant';
 import { Preferences } from '../preferences/preferences';
 import { numberControl, textControl } from '../ui/controls';
 import { Field } from '../ui/field';
+import { FigurePipe } from '../ui/figure';
 import { Meanwhile } from '../ui/meanwhile';
 import { MeanwhileNote } from '../ui/meanwhile-note';
 import { numberIn } from '../ui/number-typed';
@@ -26,7 +27,7 @@ export interface ClockTold {
 /** The form that adds a segment to a clock record, or states one anew. */
 @Component({
   selector: 'sw-segment-form',
-  imports: [Field, MeanwhileNote, ReactiveFormsModule],
+  imports: [Field, FigurePipe, MeanwhileNote, ReactiveFormsModule],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './segment-form.html',
 })

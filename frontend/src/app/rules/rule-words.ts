@@ -1,6 +1,7 @@
 import { type Rule } from '#shared/contract/rule-routes';
 import { type Scale } from '#shared/time/scales';
 import { instantText } from '../instants/instant-parts';
+import { figureText } from '../ui/figure';
 import { type Words } from '../ui/meanwhile';
 import { windowWords } from './window-words';
 
@@ -15,7 +16,7 @@ export function ruleWords({ name, isActive, now }: Rule, scale: Scale, codeOf: (
     'Least number of sites': String(now.minimumFold),
     'Decides at': `${now.sigmas} sigma`,
     'Least amplitude': now.leastAmplitude === null ? 'none' : String(now.leastAmplitude),
-    'Dead time': `${now.deadTimeNs} ns`,
+    'Dead time': `${figureText(now.deadTimeNs)} ns`,
     'Crowded beyond': `${now.crowdLimit} sets`,
     Sites: now.siteIds.length === 0 ? 'all' : now.siteIds.map(codeOf).join(', '),
     'Left out': now.exclusions.length === 0 ? 'nothing' : now.exclusions.map(span).join('; '),

@@ -7,15 +7,17 @@ import { InstantMark } from '../instants/instant';
 import { NetworkStore } from '../networks/network-store';
 import { SessionStore } from '../session/session-store';
 import { Term } from '../terms/term';
+import { FigurePipe } from '../ui/figure';
 import { Loader } from '../ui/loaded';
 import { Fault, Skeleton } from '../ui/states';
 import { ToastStore } from '../ui/toasts';
 import { Told } from '../ui/told';
+import { siteCodes } from './site-codes';
 
 /** The clock record by which a site keeps time: every segment in force, and the forms that change them. */
 @Component({
   selector: 'sw-site-clock',
-  imports: [Fault, InstantMark, SegmentForm, Skeleton, Term, Told],
+  imports: [Fault, FigurePipe, InstantMark, SegmentForm, Skeleton, Term, Told],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './site-clock.html',
   styles: `
@@ -48,7 +50,7 @@ export class SiteClock {
   /** The other sites that keep time by it. */
   protected also({ siteIds }: Clock): string {
     const others = siteIds.filter((id) => id !== this.siteId());
-    return others.map((id) => this.networks.sites.value()?.find((site) => site.id === id)?.code ?? String(id)).join(', ');
+    return siteCodes(others, this.networks.sites.value() ?? []);
   }
 
   protected changed(told: ClockTold): void {

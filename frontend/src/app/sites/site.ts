@@ -8,6 +8,7 @@ import { Preferences } from '../preferences/preferences';
 import { SessionStore } from '../session/session-store';
 import { PageTitle } from '../shell/page-title';
 import { Term } from '../terms/term';
+import { FigurePipe } from '../ui/figure';
 import { Loader } from '../ui/loaded';
 import { Fault, Skeleton } from '../ui/states';
 import { ToastStore } from '../ui/toasts';
@@ -21,7 +22,7 @@ import { fromWords } from './state-words';
 /** One site: what its readings are reconciled by, its clock record, and the keys by which it sends. */
 @Component({
   selector: 'sw-site',
-  imports: [Fault, InstantMark, SiteClock, SiteKeys, SiteStateForm, Skeleton, Term, Told],
+  imports: [Fault, FigurePipe, InstantMark, SiteClock, SiteKeys, SiteStateForm, Skeleton, Term, Told],
   changeDetection: ChangeDetectionStrategy.OnPush,
   templateUrl: './site.html',
   styleUrl: './site.scss',

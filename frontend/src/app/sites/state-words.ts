@@ -1,6 +1,7 @@
 import { type Site, type SiteVersion } from '#shared/contract/site-routes';
 import { type Scale } from '#shared/time/scales';
 import { instantText } from '../instants/instant-parts';
+import { figureText } from '../ui/figure';
 import { type Words } from '../ui/meanwhile';
 import { placeText } from './place-text';
 
@@ -17,7 +18,7 @@ export function siteWords({ name, versions }: Pick<Site, 'name' | 'versions'>, s
 const stateWords = (state: SiteVersion, scale: Scale): string =>
   [
     fromWords(state, scale),
-    `at ${placeText(state.position)} \u00b1 ${state.positionSigmaM} m`,
+    `at ${placeText(state.position)} \u00b1 ${figureText(state.positionSigmaM)} m`,
     `writes ${state.scale} by ${state.clockId === null ? 'an exact clock' : `clock ${state.clockId}`}`,
-    `delay ${state.delayNs} \u00b1 ${state.delaySigmaNs} ns`,
+    `delay ${figureText(state.delayNs)} \u00b1 ${figureText(state.delaySigmaNs)} ns`,
   ].join(', ');

@@ -1,5 +1,6 @@
 import { type AbstractControl, type ValidationErrors } from '@angular/forms';
 import type * as z from 'zod';
+import { groupedDigits } from './figure';
 
 /**
  * The one validator of all forms: a control holds what a schema of the contract takes, or says what would be right.
@@ -9,10 +10,12 @@ import type * as z from 'zod';
  */
 export function zodValidator(schema: z.ZodType, before: (typed: unknown) => unknown = (typed) => typed) {
   return ({ value }: AbstractControl<unknown>): ValidationErrors | null => {
-    const result = schema.safeParse(before(value));
+    const given = before(value);
+    const result = schema.safeParse(given);
+    if (!result.success && given === undefined) return { zod: 'It is missing.' };
     return result.success ? null : { zod: rightOf(result.error.issues[0]?.message ?? '') };
   };
 }
 
 /** What would be right, as a sentence under the field. */
-export const rightOf = (right: string): string => `It must be ${right.replace(/[.]$/, '')}.`;
+export const rightOf = (right: string): string => `It must be ${groupedDigits(right.replace(/[.]$/, ''))}.`;
