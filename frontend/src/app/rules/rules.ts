@@ -6,6 +6,7 @@ import { ApiClient } from '../api/api-client';
 import { sentenceOf } from '../api/api-problem';
 import { NetworkStore } from '../networks/network-store';
 import { SessionStore } from '../session/session-store';
+import { siteCodes } from '../sites/site-codes';
 import { Term } from '../terms/term';
 import { Icon } from '../ui/icon';
 import { Loader } from '../ui/loaded';
@@ -53,7 +54,7 @@ export class Rules {
 
   protected siteWords({ now: { siteIds } }: Rule): string {
     if (siteIds.length === 0) return 'all';
-    return siteIds.map((id) => this.networks.sites.value()?.find((site) => site.id === id)?.code ?? String(id)).join(', ');
+    return siteCodes(siteIds, this.networks.sites.value() ?? []);
   }
 
   protected stated({ rule, warnings }: RuleTold): void {
