@@ -48,7 +48,7 @@ const NARROW_PX = 460;
 /** Height of what stands above the speeds at the edge. */
 const NOTE_PX = 50;
 const MARGINS = { left: 52, top: 6, right: 84, bottom: 44 };
-const NARROW_MARGINS = { left: 44, top: 6, right: 58, bottom: 44 };
+const NARROW_MARGINS = { left: 44, top: 6, right: 62, bottom: 44 };
 
 /** Any two events whatever: what can be said of their order, and what it rests on. */
 @Component({
