@@ -18,6 +18,7 @@ import { calmly } from '../ui/calmly';
 import { DeskEvents, PairBook, USUAL_SPAN_MS } from './desk-events';
 import { DeskLists } from './desk-lists';
 import { DeskPlace } from './desk-place';
+import { firstSpanMs } from './first-span';
 import { instantOfRow, kindsAgainst } from './shown-events';
 
 /** Most events in the table beside the event that they are compared with: with it, most whose pairs are computed at once. */
@@ -26,6 +27,7 @@ const USUAL_SIGMAS = 3;
 const LIMITS = { leastPxPerMs: 0.02, mostPxPerMs: 4e5 };
 const ABOVE = 0.72; // of the box lies above the event: of 60 ms what light needs through the Earth
 const EDGE_ROOM = 0.03; // of the span, above the latest event
+const LEAST_LEFT = 0.05; // of the width, before the event at one end of a baseline
 const LEFT = { sites: 86, sitesNarrow: 78, wide: 64, narrow: 48 };
 const TOP_PX = 44;
 const BOTTOM_PX = 46;
@@ -46,7 +48,12 @@ export class DeskPicture {
   readonly room = signal({ widthPx: 0, heightPx: 0, isNarrow: false });
 
   readonly view = computed(() => this.place.address().view);
-  readonly spanMs = computed(() => this.place.address().spanMs ?? USUAL_SPAN_MS[this.view()]);
+  readonly spanMs = computed(() => this.place.address().spanMs ?? this.firstMs() ?? USUAL_SPAN_MS[this.view()]);
+  /** Along a baseline, what fits its two ends. */
+  private readonly firstMs = computed(() => {
+    const row = this.view() === 'baseline' ? this.otherRow() : -1;
+    return row < 0 ? undefined : firstSpanMs(this.baselineMs(), this.alongPlane().tMs[row] ?? 0);
+  });
   private readonly columns = computed(() => this.data.events().columns);
   readonly book = computed(() => new PairBook(this.data.pairs()));
 
@@ -383,7 +390,7 @@ export class DeskPicture {
 
   private baselineLeftMs(widthMs: number): number {
     const reachMs = this.baselineMs();
-    return -Math.max(3, (widthMs - reachMs) * 0.62);
+    return -Math.max(LEAST_LEFT * widthMs, (widthMs - reachMs) * 0.62);
   }
 
   /** What a mark is called. */
