@@ -211,6 +211,35 @@ test('is worked by the keyboard alone', async () => {
   await expect(page.getByRole('slider')).toHaveAttribute('aria-valuenow', '0.03');
 });
 
+test('gives the focus to what the keyboard opened', async () => {
+  await page.goto('/desk');
+  const grid = page.getByRole('grid', { name: 'Coincidences' });
+  await expect(page.locator('sw-set-table [role=row].row').first()).toBeVisible();
+  await grid.focus();
+  await page.keyboard.press('Enter'); // chooses
+  await expect(page.locator('sw-set-table [role=row][aria-selected=true]')).toBeVisible();
+  await page.keyboard.press('Enter'); // opens
+  await expect(page.locator('sw-event-table tr.chosen')).toBeFocused();
+  await page.keyboard.press('1');
+  await expect(grid).toBeFocused();
+});
+
+test('opens a baseline at a span that parts its two ends', async () => {
+  const { first, other } = turningPair();
+  const members = pairs.pairs.filter(({ a }) => a === 1);
+  for (const { b, dtNs, distanceM } of members) {
+    await page.goto(`/desk?view=baseline&event=${first.id}&other=${pairs.events[b - 1]!.id}`);
+    await expect(page.locator('sw-event-table tr.other')).toBeVisible();
+    const spanMs = Number(await page.getByLabel('Span of time').inputValue());
+    const largerMs = Math.max(Math.abs(dtNs) / 1e6, distanceM / 299_792.458);
+    expect(spanMs / largerMs).toBeGreaterThan(3);
+    expect(spanMs / largerMs).toBeLessThan(10);
+  }
+  await page.goto(`/desk?view=baseline&event=${first.id}&other=${other.id}&span=60`);
+  await expect(page.locator('sw-event-table tr.other')).toBeVisible();
+  await expect(page.getByLabel('Span of time')).toHaveValue('60');
+});
+
 test('exports the table so that it comes back, and the diagram as a picture', async () => {
   await openEvent();
   await expect(page.locator('sw-event-table tr.chosen')).toBeVisible();

@@ -46,6 +46,7 @@ export class DeskEvents {
   readonly events = this.held.asReadonly();
   /** Whether events are on their way and none is there yet. */
   readonly isLoading = computed(() => (this.asking() || this.networks.sites.state().kind === 'loading') && this.held().columns.count === 0);
+  readonly isReading = this.asking.asReadonly();
   readonly fault = this.told.asReadonly();
   /** The latest event of the network. */
   readonly edge = this.newest.asReadonly();

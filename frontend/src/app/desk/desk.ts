@@ -1,5 +1,6 @@
 import { CdkMenu, CdkMenuItem, CdkMenuTrigger } from '@angular/cdk/menu';
 import {
+  afterEveryRender,
   afterNextRender,
   ChangeDetectionStrategy,
   Component,
@@ -204,6 +205,18 @@ export class Desk {
       window.addEventListener('resize', measure);
       destroyed.onDestroy(() => window.removeEventListener('resize', measure));
     });
+    let before = this.opened();
+    let isDue = false;
+    afterEveryRender(() => {
+      const now = this.opened();
+      isDue ||= now !== before;
+      before = now;
+      if (!isDue) return;
+      // Only what was lost is given: what was worked may be there still. What is being read may yet take it away again.
+      const isLost = (): boolean => document.activeElement === document.body;
+      if (isLost()) this.focusOpened();
+      isDue = this.data.isReading() || isLost();
+    });
     const frames = inject(DeskFrames);
     inject(FrameChoice).offer(frames.offered);
     inject(CommandStore).offer(() => [
@@ -325,6 +338,18 @@ export class Desk {
         const brief = briefs[row];
         return brief ? [{ brief, seen: this.picture.book().of(origin?.id ?? 0, brief.id) }] : [];
       });
+  }
+
+  /** What is shown, by its name: when it changes the focus may be lost with what it was on. */
+  private opened(): string {
+    const { view, event } = this.place.address();
+    return `${view} ${event ?? ''}`;
+  }
+
+  private focusOpened(): void {
+    if (!this.isSites()) this.eventTable()?.focusOrigin();
+    else if (this.lists.maySee()) this.setTable()?.focus();
+    else this.work()?.nativeElement.querySelector<SVGElement>('sw-diagram > svg')?.focus({ preventScroll: true });
   }
 
   private firstEvent(): number | undefined {

@@ -114,6 +114,7 @@ export class EventTable {
       const kind = MARK_KINDS[kinds[row] ?? 0] ?? 'plain';
       return {
         row,
+        id: brief?.id ?? 0,
         isOrigin,
         isOther: row === this.picture.stressedRow(),
         name: brief?.name ?? '',
@@ -172,6 +173,11 @@ export class EventTable {
   });
 
   protected readonly abs = Math.abs;
+
+  /** Gives the focus to the row of the event that the others are compared with. */
+  focusOrigin(): void {
+    this.scroller().nativeElement.querySelector<HTMLElement>('tr.chosen')?.focus({ preventScroll: true });
+  }
 
   protected scrolled(): void {
     this.scrolledPx.set(this.scroller().nativeElement.scrollTop);

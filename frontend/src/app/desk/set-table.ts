@@ -5,6 +5,7 @@ import {
   Component,
   computed,
   effect,
+  ElementRef,
   inject,
   input,
   output,
@@ -75,6 +76,7 @@ export class SetTable {
   protected readonly scale = inject(Preferences).scale;
   /** Room that something below the table takes from it, px. */
   readonly lessPx = input(0);
+  private readonly host = inject<ElementRef<HTMLElement>>(ElementRef).nativeElement;
   private readonly viewport = viewChild(CdkVirtualScrollViewport);
   private readonly opened = signal<ReadonlySet<number>>(new Set());
   private readonly scrolledPx = signal(0);
@@ -148,6 +150,11 @@ export class SetTable {
     this.range.set({ start, end });
     this.lists.isAtEdge.set(px < NEAR_TOP_PX);
     if (end > this.rows().length - MORE_BEFORE_END) void this.lists.more();
+  }
+
+  /** Gives the focus to the table, which is at the chosen row. */
+  focus(): void {
+    this.host.querySelector<HTMLElement>('[role=grid]')?.focus({ preventScroll: true });
   }
 
   protected toTop(): void {
