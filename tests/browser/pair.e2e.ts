@@ -198,6 +198,29 @@ for (const colorScheme of ['light', 'dark'] as const)
       }
     });
 
+test('has no words of its picture on one another at 390 px', async () => {
+  await page.setViewportSize(SIZES[1]!);
+  for (let at = 0; at < set.pairs.length; at++) {
+    await page.goto(`/pair/${idsAt(at).join('/')}?set=${set.id}`);
+    await expect(page.locator('sw-diagram .word').first()).toBeVisible();
+    const touching = await page.locator('sw-diagram .word:not([transform*=rotate])').evaluateAll((words) => {
+      const areas = words.map((word) => ({ text: word.textContent, area: word.getBoundingClientRect() }));
+      const [acrossPx, overPx] = [0, 4]; // lines are higher than their letters
+      return areas.flatMap(({ text, area: a }, i) =>
+        areas
+          .slice(i + 1)
+          .filter(
+            ({ area: b }) =>
+              Math.min(a.right, b.right) - Math.max(a.left, b.left) > acrossPx &&
+              Math.min(a.bottom, b.bottom) - Math.max(a.top, b.top) > overPx,
+          )
+          .map((other) => `${text} and ${other.text}`),
+      );
+    });
+    expect(touching).toEqual([]);
+  }
+});
+
 test('says that an event stands twice in the address, and nothing was said in the console until here', async () => {
   await page.goto('/pair/1/1');
   await expect(heading()).toHaveText('The same event twice');
