@@ -135,7 +135,7 @@ test('the palette finds a site by its code and by its name', async () => {
 test('the audit trail tells in words, and names a site by its code', async () => {
   await page.goto('/audit');
   const rows = page.locator('sw-audit tbody tr');
-  await expect(rows.filter({ hasText: 'site made' }).first()).toContainText('site ORL');
+  await expect(rows.filter({ hasText: 'site made' }).last()).toContainText('site ORL');
   await expect(rows.filter({ hasText: 'role given' }).first()).toContainText('role coordinator, does not expire');
 });
 
