@@ -7,7 +7,7 @@ export const openBrowser = (): Promise<Browser> => chromium.launch({ executableP
 const RENEWED_AT = 'skewline-renewed-at-ms';
 
 /** A window of the browser, with nothing stored but that the analyst of a measured server has just signed in. */
-export const signedIn = (browser: Browser, { url, client }: MeasuredServer): Promise<BrowserContext> =>
+export const signedIn = (browser: Browser, { url, client }: Pick<MeasuredServer, 'url' | 'client'>): Promise<BrowserContext> =>
   browser.newContext({
     baseURL: url,
     viewport: { width: 1440, height: 900 },

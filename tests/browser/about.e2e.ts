@@ -110,7 +110,7 @@ test('an address that leads nowhere says so and leads back', async ({ page, watc
   expect(watch.faults).toEqual([]);
 });
 
-test('an injected script does not run', async ({ page }) => {
+test('17: an injected script does not run', async ({ page }) => {
   await page.goto('/about');
   const outcome = await page.evaluate(() => {
     const box = document.createElement('div');

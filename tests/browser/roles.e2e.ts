@@ -1,5 +1,8 @@
+import { readFileSync } from 'node:fs';
+import { join } from 'node:path';
 import { AxeBuilder } from '@axe-core/playwright';
 import { expect, type Page, test as base } from '@playwright/test';
+import { SiteClient } from '../../backend/site-client/site-client';
 import { newFolder } from '../support/folder';
 import { type RunningServer, startServer } from '../support/server';
 import { demoAccount, enter } from './demo-account';
@@ -90,6 +93,23 @@ test('a malformed record of the demo is read as it came, refused as it came, and
   await expect(page.getByText('Record dismissed: it stays set aside for good.')).toBeVisible();
   await page.goto(`${url}&state=dismissed`);
   await expect(detail).toContainText('The logger was restarted.');
+});
+
+test('20: what a site wrote is shown as text, whatever it wrote', async ({ page, demo: { dataDir, server } }) => {
+  const wrote = `<img src=x onerror="document.title='taken'"> {{ 7 * 7 }}`;
+  const { keys } = JSON.parse(readFileSync(join(dataDir, 'demo.json'), 'utf8')) as { keys: Record<string, string> };
+  const client = new SiteClient({ url: server.url, key: keys['GIL']!, software: 'test' });
+  await client.push({ series: '', sequence: '9000001', kind: '', reading: wrote, readingForm: 'iso', sigmaNs: '', amplitude: '' });
+  await client.finish();
+  await enter(page, demoAccount(dataDir, 'coordinator'));
+  const answer = await page.request.get('api/networks/1/set-asides?limit=200');
+  const { items } = (await answer.json()) as { items: { id: number; sequence: string | null }[] };
+  const { id } = items.find(({ sequence }) => sequence === '9000001')!;
+  await page.goto(`/set-asides?open=${id}`);
+  const detail = page.locator('sw-set-aside-detail');
+  await expect(detail).toContainText(wrote);
+  await expect(page.locator('main img')).toHaveCount(0);
+  await expect(page).not.toHaveTitle('taken');
 });
 
 for (const colorScheme of ['light', 'dark'] as const)

@@ -21,7 +21,7 @@ export interface StoredExample extends NetworkRows {
 }
 
 /** Puts the example's network and, through the ingest, its records into the database of a running server. */
-export async function storeCairnway({ ground: { db, nowMs, log } }: RunningApp): Promise<StoredExample> {
+export async function storeCairnway({ ground: { db, nowMs, log } }: Pick<RunningApp, 'ground'>): Promise<StoredExample> {
   const network = insertNetwork(db, JSON.parse(readFileSync(join(CAIRNWAY, 'network.json'), 'utf8')));
   const listener = { onStored: () => undefined, onInForce: () => undefined };
   const ingest = openIngest({ db, log, nowMs, listener, fatal: () => undefined });

@@ -14,14 +14,14 @@ const sheet = {
 } as const;
 
 describe('an exported table', () => {
-  it('lets no text be a formula', () => {
+  it('35: lets no text be a formula', () => {
     for (const [name] of sheet.rows) {
       const first = csvOf({ columns: [], rows: [[name]] }).split('\r\n')[1] ?? '';
       expect(first.replace(/^"/, '')).not.toMatch(/^[=+\-@\t]/);
     }
   });
 
-  it('comes back with identical values', () => {
+  it('35: comes back with identical values', () => {
     const [head, ...rows] = readCsv(csvOf(sheet));
     expect(head).toEqual(sheet.columns);
     expect(rows.map(([name]) => name)).toEqual(sheet.rows.map(([name]) => name));
