@@ -6,7 +6,7 @@ import { instant, listOf, oneOf, record, text } from './leaves';
 import { partAt, partQuery, wordText } from './list-query';
 import { idText, pageOf, pageQuery } from './page';
 import { MOST_EVENTS_PAIRED } from './pair-routes';
-import { line, utc, version } from './people';
+import { line, utc, version, versionSeen } from './people';
 import { route } from './routes';
 import { edit, flag, idOf } from './setup-leaves';
 
@@ -216,7 +216,7 @@ export const CANDIDATE_ROUTES = {
   proposeClaims: route('POST', '/candidates/:candidateId/claims/propose', {
     policy: 'claim:edit',
     params: candidateParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: candidateInFull,
   }),
   /** Claims what the program has not proposed; refused where the numbers do not carry it. */
@@ -247,7 +247,7 @@ export const CANDIDATE_ROUTES = {
   withdrawCandidate: route('POST', '/candidates/:candidateId/withdraw', {
     policy: 'candidate:withdraw',
     params: candidateParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: candidateInFull,
   }),
   /** Every step, the latest first, at most 20 at once. */

@@ -2,7 +2,7 @@ import * as z from 'zod';
 import { code, instant, listOf, oneOf, record } from './leaves';
 import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
-import { utc, version } from './people';
+import { utc, version, versionSeen } from './people';
 import { route } from './routes';
 import { edit, between, idOf, nameOrEmpty, setupNote, timeGiven, withWarnings } from './setup-leaves';
 
@@ -141,7 +141,7 @@ export const CLOCK_ROUTES = {
   endSegment: route('POST', '/clocks/:clockId/segments/:segment/end', {
     policy: 'clock-segment:end',
     params: segmentParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: clock.extend(explained),
   }),
 };

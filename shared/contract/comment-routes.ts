@@ -2,7 +2,7 @@ import * as z from 'zod';
 import { candidateParams, passage, somebody } from './candidate-routes';
 import { listOf, record } from './leaves';
 import { idText, pageOf, pageQuery } from './page';
-import { utc, version } from './people';
+import { utc, version, versionSeen } from './people';
 import { route } from './routes';
 import { flag, idOf } from './setup-leaves';
 
@@ -78,7 +78,7 @@ export const COMMENT_ROUTES = {
   takeCommentBack: route('POST', '/comments/:commentId/take-back', {
     policy: 'comment:write',
     params: commentParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: comment,
   }),
 };

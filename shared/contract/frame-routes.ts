@@ -3,7 +3,7 @@ import { type StatedVelocity } from './network-file';
 import { code, instant, numberThat, oneOf, record, triple } from './leaves';
 import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
-import { utc, version } from './people';
+import { utc, versionSeen } from './people';
 import { route } from './routes';
 import { edit, idOf, nameOrEmpty, wholeNumber } from './setup-leaves';
 
@@ -176,7 +176,7 @@ export const FRAME_ROUTES = {
   closeFrame: route('POST', '/frames/:frameId/close', {
     policy: 'frame:close',
     params: frameParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: frameWithHistory,
   }),
 };

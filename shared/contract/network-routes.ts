@@ -1,7 +1,7 @@
 import * as z from 'zod';
 import { code, instant, numberThat, record } from './leaves';
 import { idText, pageOf, pageQuery } from './page';
-import { utc, version } from './people';
+import { utc, versionSeen } from './people';
 import { route } from './routes';
 import { edit, flag, nameOrEmpty, setupName, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
 
@@ -78,7 +78,7 @@ export const NETWORK_ROUTES = {
   closeNetwork: route('POST', '/networks/:networkId/close', {
     policy: 'network:close',
     params: networkParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: network,
   }),
 };

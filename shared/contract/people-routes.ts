@@ -14,6 +14,7 @@ import {
   siteKey,
   utc,
   version,
+  versionSeen,
 } from './people';
 import { idText, pageOf, pageQuery } from './page';
 import { record } from './leaves';
@@ -77,13 +78,13 @@ export const PEOPLE_ROUTES = {
   disablePerson: route('POST', '/people/:personId/disable', {
     policy: 'person:disable',
     params: personParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: person,
   }),
   enablePerson: route('POST', '/people/:personId/enable', {
     policy: 'person:enable',
     params: personParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: person,
   }),
   giveRole: route('POST', '/people/:personId/roles', {
@@ -102,7 +103,7 @@ export const PEOPLE_ROUTES = {
   takeRole: route('POST', '/roles/:roleId/take', {
     policy: 'role:take',
     params: z.strictObject({ roleId: idText }),
-    body: record({ version: version() }),
+    body: versionSeen(),
   }),
 };
 

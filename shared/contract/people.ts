@@ -122,6 +122,8 @@ export const siteKey = z.strictObject({
 export const personName = () => line(MOST_NAME_CHARACTERS);
 export const keyLabel = () => line(MOST_LABEL_CHARACTERS);
 export const version = () => z.int({ error: 'the version that you saw' }).positive('the version that you saw');
+/** A body that says nothing but what was seen of that which is to be changed. */
+export const versionSeen = () => record({ version: version() });
 
 export type Me = z.infer<typeof me>;
 export type Person = z.infer<typeof person>;

@@ -4,7 +4,7 @@ import { CANDIDATE_STATES } from './candidate-moves';
 import { snapshotBody } from './certificate';
 import { listOf, oneOf, record, text } from './leaves';
 import { idText, pageOf, pageQuery } from './page';
-import { givenPassword, utc, version } from './people';
+import { givenPassword, utc, version, versionSeen } from './people';
 import { route } from './routes';
 import { idOf, wholeNumber } from './setup-leaves';
 
@@ -21,8 +21,6 @@ interface Decision {
 }
 const hasReason = ({ decision: decided, reason: why }: Decision): boolean => decided === 'confirm' || why.trim() !== '';
 const REASON_FAULT = { path: ['reason'], error: 'a reason, since it is disputed' };
-
-const seenVersion = record({ version: version() });
 
 /** A snapshot as it was frozen, under the hash of its canonical JSON. */
 const snapshotInFull = z.strictObject({
@@ -78,7 +76,7 @@ export const REVIEW_ROUTES = {
   submitCandidate: route('POST', '/candidates/:candidateId/submit', {
     policy: 'candidate:submit',
     params: candidateParams,
-    body: seenVersion,
+    body: versionSeen(),
     answer: candidateInFull,
   }),
   /** Those who see candidates of the network, by what they may be: named as reviewers, mentioned in comments. */
@@ -100,7 +98,7 @@ export const REVIEW_ROUTES = {
   releaseReviewer: route('POST', '/candidates/:candidateId/reviewers/:personId/release', {
     policy: 'reviewer:name',
     params: z.strictObject({ candidateId: idText, personId: idText }),
-    body: seenVersion,
+    body: versionSeen(),
     answer: candidateInFull,
   }),
   /** Asks for the password again; a later signature on the same snapshot stands in the place of the former. */
@@ -127,7 +125,7 @@ export const REVIEW_ROUTES = {
   withdrawSignature: route('POST', '/candidates/:candidateId/signatures/:signatureId/withdraw', {
     policy: 'candidate:sign',
     params: z.strictObject({ candidateId: idText, signatureId: idText }),
-    body: seenVersion,
+    body: versionSeen(),
     answer: candidateInFull,
   }),
   /** By its number of the candidate, 1, 2, 3, ... */

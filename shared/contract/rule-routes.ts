@@ -2,7 +2,7 @@ import * as z from 'zod';
 import { code, instant, listOf, numberThat, record } from './leaves';
 import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
-import { utc, version } from './people';
+import { utc, versionSeen } from './people';
 import { route } from './routes';
 import { edit, between, idOf, nameOrEmpty, setupNote, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
 
@@ -102,8 +102,6 @@ export const rule = z.strictObject({
   now: ruleState,
 });
 
-const versionSeen = record({ version: version() });
-
 /** Coincidences are found by the rules that are active. What one says is stated anew as another version, whole. */
 export const RULE_ROUTES = {
   listRules: route('GET', '/networks/:networkId/rules', {
@@ -134,11 +132,16 @@ export const RULE_ROUTES = {
     body: edit({ name: nameOrEmpty().optional(), state: ruleStateGiven.optional() }),
     answer: rule.extend(withWarnings),
   }),
-  activateRule: route('POST', '/rules/:ruleId/activate', { policy: 'rule:activate', params: ruleParams, body: versionSeen, answer: rule }),
+  activateRule: route('POST', '/rules/:ruleId/activate', {
+    policy: 'rule:activate',
+    params: ruleParams,
+    body: versionSeen(),
+    answer: rule,
+  }),
   deactivateRule: route('POST', '/rules/:ruleId/deactivate', {
     policy: 'rule:deactivate',
     params: ruleParams,
-    body: versionSeen,
+    body: versionSeen(),
     answer: rule,
   }),
 };

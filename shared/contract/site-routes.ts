@@ -3,7 +3,7 @@ import { SCALES } from '../time/scales';
 import { code, instant, numberThat, oneOf, record, triple } from './leaves';
 import { networkParams } from './network-routes';
 import { idText, pageOf, pageQuery } from './page';
-import { utc, version } from './people';
+import { utc, version, versionSeen } from './people';
 import { route } from './routes';
 import { edit, between, flag, idOf, nameOrEmpty, setupNote, timeGiven, wholeNumber, withWarnings } from './setup-leaves';
 
@@ -160,7 +160,7 @@ export const SITE_ROUTES = {
   closeSite: route('POST', '/sites/:siteId/close', {
     policy: 'site:close',
     params: siteParams,
-    body: record({ version: version() }),
+    body: versionSeen(),
     answer: site,
   }),
 };
