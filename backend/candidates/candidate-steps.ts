@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, gt, isNull, lt } from 'drizzle-orm';
+import { and, asc, desc, eq, gt, isNull, lt, type SQL } from 'drizzle-orm';
 import { type CandidateClaim, type CandidateInFull, type CandidateSignature, type CandidateStep } from '#shared/contract/candidate-routes';
 import { candidateEditors, candidates, candidateVersions, people, reviewers } from '#schema/schema';
 import { Refusal } from '../api/refusal';
@@ -113,16 +113,17 @@ const stepOf = ({ byId, byName, ...row }: StepRow): CandidateInFull['lastStep'] 
   action: row.action,
 });
 
-/** The last step of a candidate's history. */
-export function lastStepOf(db: Pick<Db, 'select'>, candidateId: number): CandidateInFull['lastStep'] {
-  const row = db
+/** Steps of a candidate, those that also hold to a condition, with who took each; without their bodies, which may be large. */
+const stepRows = (db: Pick<Db, 'select'>, candidateId: number, also?: SQL) =>
+  db
     .select(STEP_COLUMNS)
     .from(candidateVersions)
     .leftJoin(people, eq(people.id, candidateVersions.byId))
-    .where(eq(candidateVersions.candidateId, candidateId))
-    .orderBy(desc(candidateVersions.version))
-    .limit(1)
-    .get();
+    .where(and(eq(candidateVersions.candidateId, candidateId), also));
+
+/** The last step of a candidate's history. */
+export function lastStepOf(db: Pick<Db, 'select'>, candidateId: number): CandidateInFull['lastStep'] {
+  const row = stepRows(db, candidateId).orderBy(desc(candidateVersions.version)).limit(1).get();
   if (!row) throw new Error(`candidate ${candidateId} has no history`);
   return stepOf(row);
 }
@@ -152,11 +153,7 @@ function toldIn(body: string | undefined): Told {
 export function refuseStale(db: Pick<Db, 'select'>, candidateId: number, seenVersion: number): void {
   const { version } = candidateRow(db, candidateId);
   if (version === seenVersion) return;
-  const since = db
-    .select(STEP_COLUMNS)
-    .from(candidateVersions)
-    .leftJoin(people, eq(people.id, candidateVersions.byId))
-    .where(and(eq(candidateVersions.candidateId, candidateId), gt(candidateVersions.version, seenVersion)))
+  const since = stepRows(db, candidateId, gt(candidateVersions.version, seenVersion))
     .orderBy(asc(candidateVersions.version))
     .limit(MOST_STEPS_TOLD)
     .all()
